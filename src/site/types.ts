@@ -1,6 +1,9 @@
 import type { Area } from '../density/types.js';
 import type { Target } from '../detection/types.js';
+import type { MainField } from '../field/types.js';
 import type { Crs, DatumShift, Datum } from '../geodesy/types.js';
+
+export type { MainField };
 
 /** What all stages share: the frame, the ground, the main field and the casing that is looked for. */
 export interface Site {
@@ -21,17 +24,4 @@ export interface Site {
   shiftFrom(datum: Datum): DatumShift;
   /** From the frame's datum to WGS 84, for RFC 7946 output. */
   readonly toWgs84: DatumShift;
-}
-
-/** The main field at the middle of the parcel on the date of the work. */
-export interface MainField {
-  readonly totalNT: number;
-  /** Positive down. */
-  readonly inclinationDeg: number;
-  /** From true north, positive east. */
-  readonly declinationDeg: number;
-  /** Grid convergence: grid north seen from true north, positive east; direction in the frame is declination less this. */
-  readonly convergenceDeg: number;
-  /** Unit vector of the field in the frame: easting, northing, up. */
-  readonly unit: readonly [number, number, number];
 }
