@@ -4,6 +4,8 @@ export interface TextTable {
   readonly source: string;
   readonly names: readonly string[];
   readonly rows: number;
-  /** Line of the file on which each row starts is row + `headerLines`; messages name the row. */
+  /** Texts by column name; messages name the row, counted from 1 after the header. */
   readonly columns: ReadonlyMap<string, readonly string[]>;
+  /** What the user has to know about how the file was read: an encoding that was taken, blank lines left out. */
+  readonly notes?: readonly string[];
 }
