@@ -37,8 +37,8 @@ export interface ObjectSchema extends Schema {
 /** A thing that one operation hands to the next, by its role: `records`, `plan`, `readings`, `residual`, … */
 export interface Slot {
   readonly title: string;
-  /** `json` for a value of our own record types, `grid` for a Grid (role `transform` and others of a caller's own). */
-  readonly form: 'records' | 'plan' | 'readings' | 'grid' | 'anomalies' | 'findings' | 'html' | 'json';
+  /** Type of the value: a stage's record type, a Grid, a Layer, an HTML text, or any JSON value. */
+  readonly form: 'records' | 'plan' | 'readings' | 'grid' | 'layer' | 'anomalies' | 'findings' | 'html' | 'json';
   /** An input that the operation can do without. */
   readonly optional?: boolean;
   /** Unit of a grid's values, for the raster's metadata. */

@@ -1,0 +1,37 @@
+import { ellipseRing } from '../../density/ellipseRing.js';
+import type { WellRecord, Records } from '../../records/types.js';
+import type { Site } from '../../site/types.js';
+import type { Field, FieldValue, Layer } from '../../vector/types.js';
+
+const FIELDS: readonly Field[] = [
+  { name: 'record_id', type: 'text', title: 'Identifier of the record' },
+  { name: 'datum', type: 'text', title: 'Datum the record stands in' },
+  { name: 'shift', type: 'text', title: 'How it was moved to the datum of the survey' },
+  { name: 'pos_sd_m', type: 'real', title: 'Standard deviation of the position per axis, m (rms of both)', decimals: 2 },
+  { name: 'semi_maj_m', type: 'real', title: 'Half major axis of the 95 % ellipse, blunders left out, m', decimals: 2 },
+  { name: 'semi_min_m', type: 'real', title: 'Half minor axis of the 95 % ellipse, blunders left out, m', decimals: 2 },
+  { name: 'azim_deg', type: 'real', title: 'Azimuth of the major axis, degrees clockwise from grid north', decimals: 1 },
+  { name: 'basis', type: 'text', title: 'What the position rests on' },
+  { name: 'note', type: 'text', title: 'What else has to be known' },
+];
+
+/** Positions of the records, and their 95 % ellipses. */
+export function recordLayers({ placed }: Records, site: Site): Layer[] {
+  return [
+    {
+      name: 'records', title: 'Records: best positions', crs: site.frame, geometryType: 'Point', fields: FIELDS,
+      features: placed.map((record) => ({ geometry: { type: 'Point', coordinates: [record.x, record.y] }, values: values(record) })),
+    },
+    {
+      name: 'records_ellipses', title: 'Records: 95 % ellipses', crs: site.frame, geometryType: 'Polygon', fields: FIELDS,
+      features: placed.map((record) => ({ geometry: { type: 'Polygon', coordinates: [ellipseRing(record)] }, values: values(record) })),
+    },
+  ];
+}
+
+function values(record: WellRecord): Record<string, FieldValue> {
+  return {
+    record_id: record.recordId, datum: record.datum, shift: record.shift, pos_sd_m: record.posSdM,
+    semi_maj_m: record.semiMajM, semi_min_m: record.semiMinM, azim_deg: record.azimDeg, basis: record.basis, note: record.note,
+  };
+}
