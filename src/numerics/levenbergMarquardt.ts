@@ -70,10 +70,10 @@ export function levenbergMarquardt(
   const m = problem.count;
   const lower = bounds(options.lower, n, -Infinity);
   const upper = bounds(options.upper, n, Infinity);
-  let p = clamp(Float64Array.from(start), lower, upper);
-  let trial = new Float64Array(n);
-  let r = new Float64Array(m);
-  let rTrial = new Float64Array(m);
+  let p: Float64Array = clamp(Float64Array.from(start), lower, upper);
+  let trial: Float64Array = new Float64Array(n);
+  let r: Float64Array = new Float64Array(m);
+  let rTrial: Float64Array = new Float64Array(m);
   const jacobian = new Float64Array(m * n);
   const normal = new Float64Array(n * n);
   const gradient = new Float64Array(n);
