@@ -6,7 +6,6 @@ const SLIP_SHARE = 0.4;
  * and anything but letters and digits aside; null where none is near.
  */
 export function nearestName(wanted: string, names: readonly string[]): string | null {
-  const plain = (text: string): string => text.toLowerCase().replace(/[^\p{L}\p{N}]/gu, '');
   const goal = plain(wanted);
   let best: string | null = null;
   let least = Infinity;
@@ -16,6 +15,10 @@ export function nearestName(wanted: string, names: readonly string[]): string | 
     if (distance <= SLIP_SHARE * Math.max(goal.length, other.length) && distance < least) [best, least] = [name, distance];
   }
   return best;
+}
+
+function plain(name: string): string {
+  return name.toLowerCase().replace(/[^\p{L}\p{N}]/gu, '');
 }
 
 function editDistance(a: string, b: string): number {

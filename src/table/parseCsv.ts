@@ -38,11 +38,11 @@ function toColumns(all: readonly string[][], source: string, notes: readonly str
   if (rows === 0) {
     throw new UserError({ code: 'file_empty', where: source, found: 'a header and no rows', wanted: 'at least one row of values' });
   }
-  const columns = header.map(() => new Array<string>(rows));
+  const columns = header.map((): string[] => []);
   for (let row = 1; row <= rows; row++) {
     const cells = all[row]!;
     if (cells.length !== header.length) throw ragged(cells.length, { source, row, wanted: header.length });
-    for (let c = 0; c < cells.length; c++) columns[c]![row - 1] = cells[c]!;
+    for (let c = 0; c < cells.length; c++) columns[c]!.push(cells[c]!);
   }
   const byName = new Map<string, readonly string[]>();
   for (const [c, name] of header.entries()) {
