@@ -1,6 +1,6 @@
 import geomagnetism from 'geomagnetism';
 import { UserError } from '../errors.js';
-import type { MainField } from '../site/types.js';
+import type { MainField } from './types.js';
 
 const RADIAN = Math.PI / 180;
 const METRES_PER_KM = 1000;
