@@ -1,0 +1,49 @@
+/** What the ghost area's promises are about. */
+export interface GhostImage {
+  readonly name: string;
+  readonly directoryAt: number;
+  readonly offsets: readonly number[];
+  readonly byteCounts: readonly number[];
+}
+
+const FIRST_LINE = /^GDAL_STRUCTURAL_METADATA_SIZE=(\d{6}) bytes\n/;
+/** Length of the first line. */
+const FIRST_LINE_BYTES = 43;
+
+/**
+ * Whether a file keeps what its ghost area promises: the first directory right after it, tiles row by row, each tile's
+ * size before it and its last four bytes again after it. A file without a ghost area promises nothing.
+ * Source: GDAL documentation, COG driver, header ghost area.
+ */
+export function checkGhostArea(bytes: Uint8Array, big: boolean, images: readonly GhostImage[]): string[] {
+  const start = big ? 16 : 8;
+  const line = FIRST_LINE.exec(latin(bytes, start, start + FIRST_LINE_BYTES));
+  if (!line) return [];
+  const found: string[] = [];
+  const say = (what: string): void => void found.push(`ghost area: ${what}`);
+  const end = start + FIRST_LINE_BYTES + Number(line[1]);
+  const promises = latin(bytes, start + FIRST_LINE_BYTES, end);
+  if (images[0]!.directoryAt !== end + (end % 2)) say(`the first directory is at byte ${images[0]!.directoryAt}, not right after the ghost area`);
+  if (!promises.endsWith('\n') && !promises.endsWith('\n ')) say('its stated size does not end with a line');
+  if (promises.includes('KNOWN_INCOMPATIBLE_EDITION=YES')) say('the file says that it was edited and is no longer optimised');
+  const rowMajor = promises.includes('BLOCK_ORDER=ROW_MAJOR');
+  const leader = promises.includes('BLOCK_LEADER=SIZE_AS_UINT4');
+  const trailer = promises.includes('BLOCK_TRAILER=LAST_4_BYTES_REPEATED');
+  const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
+  for (const image of images) {
+    for (const [tile, at] of image.offsets.entries()) {
+      const size = image.byteCounts[tile] ?? 0;
+      if (at === 0 || at + size > bytes.length) continue;
+      if (rowMajor && tile > 0 && at < image.offsets[tile - 1]!) say(`tile ${tile} of ${image.name} lies before the tile before it`);
+      if (leader && view.getUint32(at - 4, true) !== size) say(`the size before tile ${tile} of ${image.name} is not its size`);
+      if (!trailer || size < 4) continue;
+      const after = at + size;
+      if (after + 4 > bytes.length || view.getUint32(after - 4) !== view.getUint32(after)) say(`the bytes after tile ${tile} of ${image.name} do not repeat its last four`);
+    }
+  }
+  return found;
+}
+
+function latin(bytes: Uint8Array, start: number, end: number): string {
+  return String.fromCharCode(...bytes.subarray(start, Math.min(end, start + 10_000)));
+}

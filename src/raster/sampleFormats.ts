@@ -1,0 +1,50 @@
+/** How a cell is kept in a file: real numbers as they are, or whole numbers with `value = stored × scale + offset`. */
+export type SampleKind = 'float32' | 'int16' | 'byte';
+
+export type SampleArray = Float32Array | Int16Array | Uint8Array;
+
+export interface SampleFormat {
+  readonly kind: SampleKind;
+  readonly bits: number;
+  /** TIFF tag SampleFormat: 1 unsigned, 2 signed, 3 floating point. */
+  readonly tiffFormat: number;
+  /** TIFF tag Predictor: 2 differences of samples, 3 differences of floating-point byte planes. */
+  readonly predictor: 2 | 3;
+  /** What stands for a cell without a value. */
+  readonly nodata: number;
+  /** Smallest and largest stored number that is a value. */
+  readonly lowest: number;
+  readonly highest: number;
+}
+
+export const SAMPLE_FORMATS: Readonly<Record<SampleKind, SampleFormat>> = Object.freeze({
+  float32: { kind: 'float32', bits: 32, tiffFormat: 3, predictor: 3, nodata: NaN, lowest: -Infinity, highest: Infinity },
+  int16: { kind: 'int16', bits: 16, tiffFormat: 2, predictor: 2, nodata: -32768, lowest: -32767, highest: 32767 },
+  byte: { kind: 'byte', bits: 8, tiffFormat: 1, predictor: 2, nodata: 255, lowest: 0, highest: 254 },
+});
+
+export function emptySamples(kind: SampleKind, count: number): SampleArray {
+  if (kind === 'float32') return new Float32Array(count).fill(NaN);
+  const { nodata } = SAMPLE_FORMATS[kind];
+  return kind === 'int16' ? new Int16Array(count).fill(nodata) : new Uint8Array(count).fill(nodata);
+}
+
+/**
+ * Cell values as they are stored. NaN becomes the format's nodata. A value that the stored range cannot hold throws,
+ * since a clipped number in a file cannot be told from a true one.
+ */
+export function toSamples(values: Float32Array | Float64Array, format: SampleFormat, scaling: { scale: number; offset: number }): SampleArray {
+  const { scale, offset } = scaling;
+  const samples = emptySamples(format.kind, values.length);
+  const whole = format.kind !== 'float32';
+  for (let i = 0; i < values.length; i += 1) {
+    const value = values[i]!;
+    if (Number.isNaN(value)) continue;
+    const stored = whole ? Math.round((value - offset) / scale) : value;
+    if (stored < format.lowest || stored > format.highest) {
+      throw new RangeError(`Cell value ${value} does not fit ${format.kind} with scale ${scale} and offset ${offset}`);
+    }
+    samples[i] = stored;
+  }
+  return samples;
+}
