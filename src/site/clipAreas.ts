@@ -1,4 +1,5 @@
 import { Clipper, ClipType, FillRule, type Path64, type PolyPath64, PolyTree64 } from 'clipper2-ts';
+import { ringAreaM2 } from '../density/area.js';
 import type { Area, Rings } from '../density/types.js';
 
 /** Clipping is done on whole numbers of this many metres: far below any error of a survey, far above overflow. */
@@ -18,7 +19,7 @@ const CLIP_TYPES = { union: ClipType.Union, difference: ClipType.Difference, int
 function paths(area: Area): Path64[] {
   return area.flatMap((rings) => rings.map((ring, i) => {
     const path = ring.slice(0, -1).map(([x, y]) => ({ x: Math.round(x / UNIT_M), y: Math.round(y / UNIT_M) }));
-    return signedArea(ring) > 0 === (i === 0) ? path : path.reverse();
+    return ringAreaM2(ring) > 0 === (i === 0) ? path : path.reverse();
   }));
 }
 
@@ -38,11 +39,4 @@ function collect(node: PolyPath64, out: Rings[]): void {
 function closed(path: Path64): [number, number][] {
   const ring = path.map(({ x, y }): [number, number] => [x * UNIT_M, y * UNIT_M]);
   return [...ring, ring[0]!];
-}
-
-/** Positive where the ring runs anticlockwise. */
-function signedArea(ring: ReadonlyArray<readonly [number, number]>): number {
-  let twice = 0;
-  for (let i = 0; i + 1 < ring.length; i++) twice += ring[i]![0] * ring[i + 1]![1] - ring[i + 1]![0] * ring[i]![1];
-  return twice / 2;
 }

@@ -29,23 +29,23 @@ export interface RunResult {
 export interface RunOptions {
   readonly operations: readonly Operation[];
   readonly host: Host;
-  /** Values that are there before the first operation, by role. */
-  readonly given?: ReadonlyMap<string, unknown>;
+  /** Reads values that are there before the first operation, by role. */
+  readonly given?: (site: Site) => Promise<ReadonlyMap<string, unknown>>;
   /** An operation that cannot run is an error instead of left out. */
   readonly strict?: boolean;
 }
 
 /** Runs the operations over a survey, each as soon as its inputs are made. Deterministic: same inputs, same result. */
-export async function runSurvey(survey: Survey, { operations, host, given = new Map(), strict = false }: RunOptions): Promise<RunResult> {
+export async function runSurvey(survey: Survey, { operations, host, given, strict = false }: RunOptions): Promise<RunResult> {
   const warnings: string[] = [];
   const warn = (message: string): void => {
     if (!warnings.includes(message)) warnings.push(message);
   };
-  const values = new Map(given);
   const steps: StepTrace[] = [];
   const skipped: { id: string; why: string }[] = [];
   host.progress('site');
   const site = await makeSite(camelKeys<SiteSettings>(survey.common), { files: host.files, where: survey.where, warn });
+  const values = new Map(await given?.(site));
   for (const operation of orderOperations(operations)) {
     const why = whyNot(operation, survey, values);
     if (why !== null) {

@@ -22,7 +22,7 @@ export interface AssetTrace extends OutputTrace {
   readonly mediaType: string;
   readonly roles: readonly string[];
   /** Present for a raster. */
-  readonly raster?: { readonly epsg: number; readonly width: number; readonly height: number; readonly west: number; readonly north: number; readonly cell: number; readonly unit: string; readonly statistics: Readonly<Record<string, number>> };
+  readonly raster?: { readonly epsg: number; readonly width: number; readonly height: number; readonly west: number; readonly north: number; readonly cell: number; readonly unit: string; readonly statistics?: Readonly<Record<string, number>> };
   /** Present for a vector layer or table in a CRS other than WGS 84. */
   readonly epsg?: number;
 }
@@ -74,7 +74,7 @@ function assetObject(asset: AssetTrace): Record<string, unknown> {
       'proj:code': `EPSG:${raster.epsg}`,
       'proj:shape': [raster.height, raster.width],
       'proj:transform': [raster.cell, 0, raster.west, 0, -raster.cell, raster.north, 0, 0, 1],
-      bands: [{ data_type: 'float32', nodata: 'nan', unit: raster.unit, statistics: raster.statistics }],
+      bands: [{ data_type: 'float32', nodata: 'nan', ...(raster.unit ? { unit: raster.unit } : {}), ...(raster.statistics ? { statistics: raster.statistics } : {}) }],
     } : {}),
   };
 }

@@ -1,7 +1,10 @@
-import { ellipseRing } from '../../density/ellipseRing.js';
+import { ellipseRing } from '../../density/ellipse.js';
 import type { WellRecord, Records } from '../../records/types.js';
 import type { Site } from '../../site/types.js';
 import type { Field, FieldValue, Layer } from '../../vector/types.js';
+
+/** Corners of a drawn ellipse: a chord stays within 0.1 % of the axis. */
+const ELLIPSE_CORNERS = 72;
 
 const FIELDS: readonly Field[] = [
   { name: 'record_id', type: 'text', title: 'Identifier of the record' },
@@ -24,7 +27,7 @@ export function recordLayers({ placed }: Records, site: Site): Layer[] {
     },
     {
       name: 'records_ellipses', title: 'Records: 95 % ellipses', crs: site.frame, geometryType: 'Polygon', fields: FIELDS,
-      features: placed.map((record) => ({ geometry: { type: 'Polygon', coordinates: [ellipseRing(record)] }, values: values(record) })),
+      features: placed.map((record) => ({ geometry: { type: 'Polygon', coordinates: [ellipseRing(record, ELLIPSE_CORNERS)] }, values: values(record) })),
     },
   ];
 }

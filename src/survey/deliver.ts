@@ -1,0 +1,88 @@
+import { UserError } from '../errors.js';
+import type { Operation, Slot } from '../operations/types.js';
+import { encodeCog } from '../raster/encodeCog.js';
+import { gridStatistics, type GridStatistics } from '../raster/gridStatistics.js';
+import type { Grid } from '../raster/types.js';
+import type { Anomalies } from '../anomalies/types.js';
+import type { Findings } from '../findings/types.js';
+import type { SurveyPlan } from '../plan/types.js';
+import type { Readings } from '../readings/types.js';
+import type { Records } from '../records/types.js';
+import type { Site } from '../site/types.js';
+import type { Layer } from '../vector/types.js';
+import type { Host } from './host.js';
+import { anomalyLayers } from './layers/anomalyLayers.js';
+import { findingLayers } from './layers/findingLayers.js';
+import { planLayers } from './layers/planLayers.js';
+import { recordLayers } from './layers/recordLayers.js';
+import { layerFiles, type VectorFormat } from './layerFiles.js';
+import { planGpx } from './planGpx.js';
+import type { AssetTrace } from './stacItem.js';
+import { encodeReadings } from './readingsCsv.js';
+import { encodeValue } from './valueJson.js';
+
+/** A file as it leaves a run, with what the manifest says of it. */
+export interface Delivered extends Omit<AssetTrace, 'bytes' | 'sha256'> {
+  readonly content: Uint8Array;
+}
+
+/** Values that the next stage starts from, exactly as they were; not layers to look at. */
+export const STAGE_FOLDER = 'stages';
+
+const TEXT = new TextEncoder();
+
+/** Files of one role: what a GIS opens, and what the next stage reads. */
+export async function deliverRole(role: string, value: unknown, options: {
+  slot: Slot; operation: Operation; site: Site; host: Host; formats: readonly VectorFormat[];
+}): Promise<Delivered[]> {
+  const { slot, site, host, formats } = options;
+  const layers = (made: readonly Layer[]): Promise<Delivered[]> => layerFiles(made, { role, site, host, formats });
+  switch (slot.form) {
+    case 'records': return [...await layers(recordLayers(value as Records, site)), stageFile(role, slot, value)];
+    case 'plan': return [...await layers(planLayers(value as SurveyPlan, site)), planGpx(value as SurveyPlan, site), stageFile(role, slot, value)];
+    case 'anomalies': return [...await layers(anomalyLayers(value as Anomalies, site)), stageFile(role, slot, value)];
+    case 'findings': return [...await layers(findingLayers(value as Findings, site)), stageFile(role, slot, value)];
+    case 'layer': return layers([value as Layer]);
+    case 'readings': return readingsFiles(role, value as Readings, { slot, site });
+    case 'grid': return [await gridFile(role, value as Grid, options)];
+    case 'html': return [{ key: role, path: `${role}.html`, title: slot.title, mediaType: 'text/html', roles: [role], content: TEXT.encode(value as string) }];
+    case 'json': return [{ key: role, path: `${role}.json`, title: slot.title, mediaType: 'application/json', roles: [role], content: TEXT.encode(encodeValue(value)) }];
+    default: throw new UserError({ code: 'operation_invalid', where: `operation "${options.operation.id}", ${role}`, found: `the form ${JSON.stringify(slot.form)}`, wanted: 'a form that Ironplat can write' });
+  }
+}
+
+function stageFile(role: string, slot: Slot, value: unknown): Delivered {
+  return {
+    key: `stage_${role}`, path: `${STAGE_FOLDER}/${role}.json`, title: `${slot.title}, as the next stage reads it`, mediaType: 'application/json',
+    roles: ['metadata'], content: TEXT.encode(encodeValue(value)),
+  };
+}
+
+function readingsFiles(role: string, readings: Readings, { slot, site }: { slot: Slot; site: Site }): Delivered[] {
+  const { csv, header } = encodeReadings(readings, site);
+  return [
+    { key: role, path: `${role}.csv`, title: slot.title, mediaType: 'text/csv', roles: [role], epsg: site.frame.epsg, content: csv },
+    stageFile(role, slot, header),
+  ];
+}
+
+async function gridFile(role: string, grid: Grid, { slot, site, host, operation }: { slot: Slot; site: Site; host: Host; operation: Operation }): Promise<Delivered> {
+  const { frame } = site;
+  const content = await encodeCog(grid, { crs: frame, deflate: host.deflate, description: slot.title, unit: slot.unit ?? '' });
+  const statistics = gridStatistics(Float32Array.from(grid.values), NaN);
+  return {
+    key: role, path: `${role}.tif`, title: slot.title, mediaType: 'image/tiff; application=geotiff; profile=cloud-optimized', content,
+    roles: operation.outputs[role] && BUILT_IN_GRIDS.has(role) ? [role, 'data'] : ['transform', 'data'],
+    raster: {
+      epsg: frame.epsg, width: grid.width, height: grid.height, west: grid.west / frame.metresPerUnit, north: grid.north / frame.metresPerUnit,
+      cell: grid.cellM / frame.metresPerUnit, unit: slot.unit ?? '', ...(statistics ? { statistics: stacStatistics(statistics) } : {}),
+    },
+  };
+}
+
+/** Grids with a role of their own; a caller's further grids are transforms. */
+const BUILT_IN_GRIDS: ReadonlySet<string> = new Set(['residual', 'detection', 'covered']);
+
+function stacStatistics({ minimum, maximum, mean, standardDeviation, validPercent }: GridStatistics): Record<string, number> {
+  return { minimum, maximum, mean, stddev: standardDeviation, valid_percent: validPercent };
+}
