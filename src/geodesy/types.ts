@@ -43,5 +43,43 @@ export interface ShiftedPlace {
 export interface DatumShift {
   readonly from: Datum;
   readonly to: Datum;
+  /** Throws UserError `outside_area` where a datum has no meaning, `position_invalid` for what is no place at all. */
   place(lonDeg: number, latDeg: number): ShiftedPlace;
+  /** Many places at once; a row with NaN in either column stays NaN in both. */
+  arrays(lonDeg: ArrayLike<number>, latDeg: ArrayLike<number>): ShiftedColumns;
+}
+
+/** Columns moved from one datum to another. */
+export interface ShiftedColumns {
+  /** Degrees. */
+  readonly lonDeg: Float64Array;
+  readonly latDeg: Float64Array;
+  /** Every shift that was used, each once, in the order of first use. */
+  readonly shifts: readonly string[];
+  /** Largest standard errors on each axis among the rows, metres, as in `ShiftedPlace`; 0 where no row has a place. */
+  readonly sdM: number;
+  readonly sharedSdM: number;
+}
+
+/** A table of differences between two datums. */
+export interface ShiftGrid {
+  /** As it is named in the `shift` attribute. */
+  readonly name: string;
+  /** A `Datum` where it is one that Ironplat knows, else the name that the file gives (`Old Hawaiian`): never used then. */
+  readonly from: string;
+  readonly to: string;
+  /** Accuracy published for it, metres. */
+  readonly accuracyM: number;
+  /** What to add to longitude and latitude in degrees at a place on `from`; null outside the grid and where it has no value. */
+  offsetAt(lonDeg: number, latDeg: number): readonly [number, number] | null;
+}
+
+/** The frame in which a satellite receiver gave its positions, whatever its file calls them. */
+export type ReceiverFrame = 'WGS 84' | 'ITRF2014' | 'ITRF2020' | 'NAD83(2011)';
+
+export interface DatumSetting {
+  /** Tried in this order; the first that covers a place moves it. */
+  readonly grids: readonly ShiftGrid[];
+  /** What positions on `WGS 84` really are in, and when they were measured (decimal year); unsaid, the null shift is used and named. */
+  readonly receiver?: { readonly frame: ReceiverFrame; readonly epoch: number };
 }

@@ -1,0 +1,102 @@
+import { fromArrayBuffer, type GeoTIFFImage } from 'geotiff';
+import { UserError } from '../errors.js';
+import { gridAccuracyM, gridDatum } from './gridIdentity.js';
+import { shiftGrid, type OffsetTable } from './offsetTables.js';
+import type { ShiftGrid } from './types.js';
+
+const DEG_PER_UNIT: Readonly<Record<string, number>> = { 'arc-second': 1 / 3600, degree: 1, radian: 180 / Math.PI };
+/** Bit 0 of NewSubfileType: a reduced copy of another image, not a grid of its own. */
+const REDUCED_IMAGE = 1;
+
+export function isTiff(bytes: Uint8Array): boolean {
+  const mark = (bytes[0] === 0x49 && bytes[1] === 0x49) || (bytes[0] === 0x4d && bytes[1] === 0x4d);
+  return mark && (bytes[2] === 42 || bytes[3] === 42 || bytes[2] === 43 || bytes[3] === 43);
+}
+
+/**
+ * Reads a horizontal shift grid in GeoTIFF: bands found by their description (`latitude_offset`, `longitude_offset`),
+ * with the unit and the direction that their metadata state; further images are finer tables.
+ * Source: PROJ, "Geodetic TIFF grids (GTG)" specification.
+ */
+export async function readGeotiffGrid(name: string, bytes: Uint8Array, label: string, datums?: { from: string; to: string }): Promise<ShiftGrid> {
+  const buffer = bytes.slice().buffer as ArrayBuffer;
+  const tiff = await fromArrayBuffer(buffer).catch((cause: unknown) => { throw unusable(name, `a TIFF that cannot be read (${String(cause)})`); });
+  const count = await tiff.getImageCount();
+  const first = await tiff.getImage(0);
+  const meta = await metadata(first, null);
+  if (meta['TYPE'] !== 'HORIZONTAL_OFFSET') throw unusable(name, `a GeoTIFF of type ${JSON.stringify(meta['TYPE'] ?? null)}`);
+  const channels = await readChannels(name, first);
+  const tables: OffsetTable[] = [];
+  for (let index = 0; index < count; index++) {
+    const image = await tiff.getImage(index);
+    if ((Number(image.fileDirectory.getValue('NewSubfileType') ?? 0) & REDUCED_IMAGE) !== 0) continue;
+    // Later images may leave out what the first one says already.
+    tables.push(await readTable(name, image, index === 0 ? channels : await readChannels(name, image, channels)));
+  }
+  const source = first.getGeoKeys()?.GeographicTypeGeoKey as number | undefined;
+  const target = meta['target_crs_epsg_code'];
+  if (datums === undefined && (source === undefined || target === undefined)) throw unusable(name, 'a grid that does not say between which datums it leads');
+  return shiftGrid({
+    name: label, from: datums?.from ?? gridDatum(`EPSG:${source}`), to: datums?.to ?? gridDatum(`EPSG:${target}`),
+    accuracyM: gridAccuracyM(name, meta['area_of_use'] ?? ''),
+  }, tables);
+}
+
+/** Where the two offsets are, and what to multiply them by to get degrees, positive east and north. */
+interface Channels {
+  readonly lon: { readonly band: number; readonly scale: number };
+  readonly lat: { readonly band: number; readonly scale: number };
+}
+
+async function readChannels(name: string, image: GeoTIFFImage, inherited?: Channels): Promise<Channels> {
+  const found = new Map<string, { band: number; scale: number }>();
+  for (let band = 0; band < image.getSamplesPerPixel(); band++) {
+    const meta = await metadata(image, band);
+    const what = meta['DESCRIPTION'];
+    if (what !== 'latitude_offset' && what !== 'longitude_offset') continue;
+    const unit = DEG_PER_UNIT[meta['UNITTYPE'] ?? 'arc-second'];
+    if (unit === undefined) throw unusable(name, `offsets in ${JSON.stringify(meta['UNITTYPE'])}`);
+    const direction = meta['positive_value'] ?? 'east';
+    if (what === 'longitude_offset' && direction !== 'east' && direction !== 'west') throw unusable(name, `longitude offsets positive to ${JSON.stringify(direction)}`);
+    found.set(what, { band, scale: direction === 'west' ? -unit : unit });
+  }
+  const lon = found.get('longitude_offset') ?? inherited?.lon;
+  const lat = found.get('latitude_offset') ?? inherited?.lat;
+  if (lon === undefined || lat === undefined) throw unusable(name, 'bands that are not described as latitude_offset and longitude_offset');
+  return { lon, lat };
+}
+
+async function readTable(name: string, image: GeoTIFFImage, { lon, lat }: Channels): Promise<OffsetTable> {
+  const width = image.getWidth();
+  const height = image.getHeight();
+  const [west, north] = image.getOrigin() as [number, number];
+  const [stepLonDeg, stepDown] = image.getResolution() as [number, number];
+  const stepLatDeg = -stepDown;
+  if (!(width > 1 && height > 1 && stepLonDeg > 0 && stepLatDeg > 0)) throw unusable(name, `${width} by ${height} nodes with steps of ${stepLonDeg} and ${stepLatDeg} degrees`);
+  // Nodes are the pixels' centres unless the file says that its tie point is a node itself.
+  const half = image.pixelIsArea() ? 0.5 : 0;
+  const rasters = await image.readRasters({ samples: [lon.band, lat.band], interleave: false }) as unknown as ArrayLike<number>[];
+  const noData = image.getGDALNoData();
+  const southUp = (band: ArrayLike<number>, scale: number): Float64Array => {
+    const out = new Float64Array(width * height);
+    for (let row = 0; row < height; row++) {
+      for (let column = 0; column < width; column++) {
+        const value = band[(height - 1 - row) * width + column]!;
+        out[row * width + column] = value === noData ? NaN : value * scale;
+      }
+    }
+    return out;
+  };
+  return {
+    west: west + half * stepLonDeg, south: north - (height - 1 + half) * stepLatDeg, stepLonDeg, stepLatDeg, width, height,
+    dLonDeg: southUp(rasters[0]!, lon.scale), dLatDeg: southUp(rasters[1]!, lat.scale),
+  };
+}
+
+async function metadata(image: GeoTIFFImage, band: number | null): Promise<Record<string, string | undefined>> {
+  return (await image.getGDALMetadata(band) ?? {}) as Record<string, string | undefined>;
+}
+
+function unusable(name: string, found: string): UserError {
+  return new UserError({ code: 'grid_file_invalid', where: name, found, wanted: 'a horizontal shift grid in GeoTIFF with its bands, units and datums described' });
+}
