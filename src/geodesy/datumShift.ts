@@ -1,12 +1,12 @@
 import { UserError } from '../errors.js';
 import { CONUS } from './conus.js';
 import { gridSteps, meanStep, NAD83_2011_AS_WGS84, NAD83_AS_2011, NAD83_AS_WGS84, receiverStep, type Step } from './datumSteps.js';
-import type { Datum, DatumSetting, DatumShift, ShiftedColumns, ShiftedPlace } from './types.js';
+import type { Datum, DatumSetting, DatumShift, ShiftedColumns, ShiftedPlace, ShiftGrid } from './types.js';
 
 export type { DatumSetting } from './types.js';
 
 /** The shipped grid alone, and a receiver whose frame nobody stated. */
-export const DATUM_DEFAULTS: DatumSetting = Object.freeze({ grids: Object.freeze([CONUS]) });
+export const DATUM_DEFAULTS: DatumSetting = Object.freeze({ grids: Object.freeze([]), shipped: true });
 
 const FRAMES: readonly string[] = ['WGS 84', 'ITRF2014', 'ITRF2020', 'NAD83(2011)'];
 /** Joins the names where more than one step was taken. */
@@ -19,10 +19,11 @@ const AND = ' + ';
  * variances. Throws UserError `key_invalid` for a receiver that is none.
  */
 export function datumShift(from: Datum, to: Datum, setting: Partial<DatumSetting> = {}): DatumShift {
-  const { grids, receiver } = { ...DATUM_DEFAULTS, ...setting };
+  const { grids: further, shipped, receiver } = { ...DATUM_DEFAULTS, ...setting };
+  const grids = shipped ? [...further, CONUS] : further;
   if (receiver) checkReceiver(receiver);
   const path = pathBetween(from, to, receiver !== undefined);
-  const legs = path.slice(1).map((next, index) => legBetween(path[index]!, next, { grids, ...(receiver ? { receiver } : {}) }));
+  const legs = path.slice(1).map((next, index) => legBetween(path[index]!, next, { grids, receiver }));
   const nad = path.some((datum) => datum !== 'WGS 84') && from !== to;
   const place = (lonDeg: number, latDeg: number): ShiftedPlace => {
     if (!(Math.abs(lonDeg) <= 360 && Math.abs(latDeg) <= 90)) throw noPlace(from, lonDeg, latDeg);
@@ -75,7 +76,7 @@ function pathBetween(from: Datum, to: Datum, receiver: boolean): Datum[] {
 }
 
 /** Ways between two neighbours in the order of trust; the last one always answers. */
-function legBetween(from: Datum, to: Datum, { grids, receiver }: DatumSetting): Step {
+function legBetween(from: Datum, to: Datum, { grids, receiver }: { grids: readonly ShiftGrid[]; receiver: DatumSetting['receiver'] }): Step {
   const ways = [...gridSteps(grids, from, to), lastWay(from, to, receiver)];
   return (lonDeg, latDeg) => {
     for (const way of ways) {

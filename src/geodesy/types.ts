@@ -78,8 +78,10 @@ export interface ShiftGrid {
 export type ReceiverFrame = 'WGS 84' | 'ITRF2014' | 'ITRF2020' | 'NAD83(2011)';
 
 export interface DatumSetting {
-  /** Tried in this order; the first that covers a place moves it. */
+  /** Further grids, tried in this order before the shipped one; the first that covers a place moves it. */
   readonly grids: readonly ShiftGrid[];
+  /** False leaves out the grid that Ironplat ships. */
+  readonly shipped: boolean;
   /** What positions on `WGS 84` really are in, and when they were measured (decimal year); unsaid, the null shift is used and named. */
   readonly receiver?: { readonly frame: ReceiverFrame; readonly epoch: number };
 }
