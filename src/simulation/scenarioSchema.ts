@@ -22,7 +22,7 @@ function number(title: string, value: number, minimum?: number) {
   return { type: 'number', title, default: value, ...(minimum === undefined ? {} : { minimum }) } as const;
 }
 
-function section<P extends object>(title: string, value: object, properties: P) {
+function section<const P extends object>(title: string, value: object, properties: P) {
   return { type: 'object', title, default: value, additionalProperties: false, properties } as const;
 }
 
@@ -46,7 +46,7 @@ export const SCENARIO_SCHEMA = {
     exclusions: { ...POLYGONS, title: 'Ground nobody may walk', default: D.exclusions },
     start: { type: 'string', title: 'First reading', description: 'ISO 8601 with zone.', examples: ['2026-04-14T13:05:00Z'] },
     receiver: section('Satellite receiver', D.receiver, {
-      frame: { type: 'string', title: 'Frame of its positions', default: D.receiver.frame },
+      frame: { type: 'string', title: 'Frame of its positions', enum: ['WGS 84', 'ITRF2014', 'ITRF2020', 'NAD83(2011)'], default: D.receiver.frame },
       epoch: number('Epoch, decimal year', D.receiver.epoch),
     }),
     ground_height_m: quantity('Ground above the ellipsoid', 'm', D.ground_height_m),

@@ -1,7 +1,7 @@
 import type { Area, Rings } from '../density/types.js';
 import { datumShift } from '../geodesy/datumShift.js';
 import { decimalYear } from '../geodesy/decimalYear.js';
-import { crs } from '../geodesy/registry.js';
+import { crs } from '../geodesy/crs.js';
 import { Random } from '../numerics/random.js';
 import { parseTimeColumn } from '../table/parseTimeColumn.js';
 import { writeCsv } from '../table/writeCsv.js';

@@ -1,3 +1,5 @@
+import type { DatumSetting } from '../geodesy/types.js';
+
 /** A place as a pair of numbers, easting and northing in the unit that the scenario's `coordinates` states. */
 export type ScenarioPoint = readonly [number, number];
 /** Rings of one polygon: the first is the outer one, the others are holes. */
@@ -50,7 +52,7 @@ export interface Scenario {
   /** First reading, ISO 8601 with zone. */
   readonly start: string;
   /** Frame and epoch in which the satellite receiver gives its positions. */
-  readonly receiver: { readonly frame: string; readonly epoch: number };
+  readonly receiver: NonNullable<DatumSetting['receiver']>;
   /** Height of the ground above the ellipsoid, for the main field. */
   readonly ground_height_m: number;
   readonly lines: {
