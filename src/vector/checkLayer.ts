@@ -8,8 +8,6 @@ const NAME_LENGTH = 10;
 const NAME = /^[a-z][a-z0-9_]*$/;
 /** Names that formats keep for themselves: the row number and the geometry column of GeoPackage. */
 const RESERVED: ReadonlySet<string> = new Set(['fid', 'geom']);
-/** dBASE counts a text's length in one byte; longer ones are cut there, so layers do not hold them for any format. */
-export const TEXT_BYTES = 254;
 
 /**
  * Checks a layer before it is written: names, values of their field's type, the layer's geometry type, finite

@@ -17,7 +17,7 @@ import { orientRings } from './rings.js';
 import type { Feature, Field, FieldType, Layer } from './types.js';
 
 /** "fgb", major version 3, "fgb", patch 0. */
-const MAGIC = Uint8Array.of(0x66, 0x67, 0x62, 3, 0x66, 0x67, 0x62, 0);
+export const MAGIC = Uint8Array.of(0x66, 0x67, 0x62, 3, 0x66, 0x67, 0x62, 0);
 const COLUMN_TYPES: Readonly<Record<FieldType, ColumnType>> = { text: ColumnType.String, real: ColumnType.Double, integer: ColumnType.Long };
 
 /**
@@ -126,8 +126,8 @@ function geometryTable(builder: Builder, geometry: LayerGeometry): number {
     ends.push(count);
   }
   const xyVector = GeometryTable.createXyVector(builder, xy);
-  // One path needs no ends: all positions belong to it.
-  const endsVector = ends.length > 1 ? GeometryTable.createEndsVector(builder, Uint32Array.from(ends)) : 0;
+  // One path needs no ends, since all positions belong to it; but GDAL refuses a MultiLineString without them.
+  const endsVector = ends.length > 1 || geometry.type === 'MultiLineString' ? GeometryTable.createEndsVector(builder, Uint32Array.from(ends)) : 0;
   GeometryTable.startGeometry(builder);
   if (endsVector) GeometryTable.addEnds(builder, endsVector);
   GeometryTable.addXy(builder, xyVector);

@@ -41,10 +41,10 @@ export function packRTree(boxes: readonly Box[], offsets: readonly number[]): Ui
 }
 
 /** Node numbers of each level, root first; one leaf still has a root over it, as the format's readers expect. */
-export function levelStarts(leaves: number): { start: number; end: number }[] {
+export function levelStarts(leaves: number, nodeSize = NODE_SIZE): { start: number; end: number }[] {
   if (leaves < 1) throw new Error('an index over nothing');
   const counts = [leaves];
-  do counts.unshift(Math.ceil(counts[0]! / NODE_SIZE));
+  do counts.unshift(Math.ceil(counts[0]! / nodeSize));
   while (counts[0]! > 1);
   let start = 0;
   return counts.map(count => ({ start, end: (start += count) }));

@@ -30,3 +30,31 @@ export interface Layer {
   readonly fields: readonly Field[];
   readonly features: readonly Feature[];
 }
+
+export type PropertyValue = string | number | boolean | null;
+
+/** Features as they were read from a file, each with its place in the layer's CRS. */
+export interface VectorInput {
+  /** The file's name, for messages; feature n of it is `features[n − 1]`. */
+  readonly source: string;
+  /** As the file names it, or as the caller stated it for a file that names none. */
+  readonly crs: Crs;
+  readonly features: readonly InputFeature[];
+  readonly rows: number;
+  /** What the user has to know about how the file was read: heights left out, an encoding that was taken. */
+  readonly notes: readonly string[];
+}
+
+export interface InputFeature {
+  /** Metres in the CRS, whatever its own unit (degrees where it is geographic); two numbers a position; null for no place. */
+  readonly geometry: Geometry | null;
+  /** Values as the file has them; a date is text, `YYYY-MM-DD`. */
+  readonly properties: Readonly<Record<string, PropertyValue>>;
+}
+
+/** What a format's reader hands over: positions in the file's units, and the CRS that the file names, if any. */
+export interface RawVector {
+  readonly crs: Crs | null;
+  readonly features: readonly InputFeature[];
+  readonly notes: readonly string[];
+}
