@@ -67,7 +67,7 @@ export async function encodeCog(grid: Grid, options: CogOptions): Promise<Uint8A
       ...imageTags(image, { format, tileSize, reduced: index > 0 }),
       ...(index === 0 ? [...placeTags(grid, crs), ...(description ? [asciiTag(TAG.imageDescription, description)] : [])] : []),
       ...(index === 0 && xml ? [asciiTag(TAG.gdalMetadata, xml)] : []),
-    ].sort((a, b) => a.id - b.id),
+    ].toSorted((a, b) => a.id - b.id),
     tileBytes: image.tiles.map((tile) => tile.length),
   }));
 

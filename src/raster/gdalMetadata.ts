@@ -17,7 +17,7 @@ export interface BandMetadata {
 export function gdalMetadata(band: BandMetadata): string {
   const items: string[] = [];
   const item = (name: string, value: string, role = ''): void => {
-    items.push(`  <Item name="${name}" sample="0"${role && ` role="${role}"`}>${escapeXml(value)}</Item>\n`);
+    items.push(`  <Item name="${name}" sample="0"${role && ` role="${role}"`}>${escapeItem(value)}</Item>\n`);
   };
   if (band.statistics) {
     const { minimum, maximum, mean, standardDeviation, validPercent } = band.statistics;
@@ -36,9 +36,30 @@ export function gdalMetadata(band: BandMetadata): string {
   return items.length > 0 ? `<GDALMetadata>\n${items.join('')}</GDALMetadata>\n` : '';
 }
 
+/** GDAL escapes the text of an item before it makes an XML element of it, and reads it the same way: twice. */
+function escapeItem(text: string): string {
+  return escapeXml(escapeXml(text));
+}
+
+/** What an item says, from its text as it stands in the XML; one that was escaped only once reads the same but for an ampersand. */
+export function readItem(text: string): string {
+  return unescapeXml(unescapeXml(text));
+}
+
 /** Text for an XML document: marks escaped, and characters that XML 1.0 has no place for left out. */
 export function escapeXml(text: string): string {
   // oxlint-disable-next-line no-control-regex -- the control characters are the ones to leave out
   return text.replace(/[\u0000-\u0008\u000b\u000c\u000e-\u001f\ufffe\uffff]/g, '')
     .replace(/&/g, '&amp;').replace(/</g, '&lt;').replace(/>/g, '&gt;').replace(/"/g, '&quot;');
+}
+
+const ENTITIES: Readonly<Record<string, string>> = { amp: '&', lt: '<', gt: '>', quot: '"', apos: "'" };
+
+/** Text of an XML document as it was meant, the five named entities and numbered characters resolved. */
+function unescapeXml(text: string): string {
+  return text.replace(/&(?:#x([0-9a-f]+)|#(\d+)|(\w+));/gi, (whole, hex?: string, decimal?: string, name?: string) => {
+    if (name !== undefined) return ENTITIES[name] ?? whole;
+    const code = hex === undefined ? Number(decimal) : Number.parseInt(hex, 16);
+    return code <= 0x10ffff ? String.fromCodePoint(code) : whole;
+  });
 }

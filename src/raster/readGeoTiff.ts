@@ -1,7 +1,8 @@
 import { fromArrayBuffer, type GeoTIFFImage } from 'geotiff';
 import { UserError } from '../errors.js';
-import { crs } from '../geodesy/registry.js';
+import { crs } from '../geodesy/crs.js';
 import type { Crs } from '../geodesy/types.js';
+import { readItem } from './gdalMetadata.js';
 import type { Grid } from './types.js';
 
 export interface GeoTiffContent {
@@ -107,6 +108,7 @@ function numberOr(value: unknown, otherwise: number): number {
   return Number.isFinite(number) ? number : otherwise;
 }
 
+/** geotiff hands on the text of an item as it stands in the XML. */
 function textOr(value: unknown, otherwise: string): string {
-  return typeof value === 'string' ? value : otherwise;
+  return typeof value === 'string' ? readItem(value) : otherwise;
 }

@@ -103,7 +103,7 @@ function writeHeader(images: readonly ImagePlan[], form: Form, { headerBytes, di
       ...images[index]!.tags,
       { id: TAG.tileOffsets, type: form.offset, values: offsets[index]! },
       { id: TAG.tileByteCounts, type: 'LONG', values: images[index]!.tileBytes },
-    ] satisfies TiffTag[]).sort((a, b) => a.id - b.id);
+    ] satisfies TiffTag[]).toSorted((a, b) => a.id - b.id);
     if (big) view.setBigUint64(start, BigInt(tags.length), true);
     else view.setUint16(start, tags.length, true);
     let at = start + form.count;
