@@ -6,6 +6,7 @@ import { mainFieldInFrame } from '../field/mainField.js';
 import { poleFromCasing } from '../field/casing.js';
 import { baseName, extension, type FileSource } from '../files.js';
 import { areaOfUseWarning } from '../geodesy/areaOfUse.js';
+import { convergenceDeg } from '../geodesy/convergence.js';
 import { crs } from '../geodesy/crs.js';
 import { datumShift, type DatumSetting } from '../geodesy/datumShift.js';
 import { decimalYear } from '../geodesy/decimalYear.js';
@@ -53,7 +54,7 @@ const GRID_FILES: ReadonlySet<string> = new Set(['gsb', 'tif', 'tiff', 'ct2', 'l
 export async function makeSite(settings: SiteSettings, { files, where, warn }: {
   files: FileSource & { list?(folder: string): Promise<string[]> }; where: string; warn(message: string): void;
 }): Promise<Site> {
-  const frame = crs(settings.crs);
+  const frame = crs(settings.crs, `${where}, crs`);
   if (frame.kind !== 'projected') {
     throw new UserError({ code: 'crs_unknown', where: `${where}, crs`, found: `${frame.code} (${frame.name}), which is geographic`, wanted: 'a projected CRS: its State Plane or UTM zone' });
   }
@@ -68,7 +69,7 @@ export async function makeSite(settings: SiteSettings, { files, where, warn }: {
     return made;
   };
   const toWgs84 = datumShift(frame.datum, 'WGS 84', { grids, ...(settings.receiver ? { receiver: settings.receiver } : {}) });
-  const namedCrs = settings.parcelCrs === undefined ? undefined : crs(settings.parcelCrs);
+  const namedCrs = settings.parcelCrs === undefined ? undefined : crs(settings.parcelCrs, `${where}, parcel_crs`);
   const read = (path: string): Promise<Area> => readArea(path, { files, frame, shiftFrom, crs: namedCrs });
   const parcel = await read(settings.parcel);
   checkExtent(parcel, baseName(settings.parcel), frame, warn);
@@ -82,7 +83,7 @@ export async function makeSite(settings: SiteSettings, { files, where, warn }: {
   const there = toWgs84.place(lonDeg, latDeg);
   return {
     title: settings.title, frame, parcel, exclusions, open, decimalYear: year, target: makeTarget(settings.target, where), shiftFrom, toWgs84,
-    mainField: mainFieldInFrame(there.lonDeg, there.latDeg, { frame, eastM, northM, decimalYear: year }),
+    mainField: mainFieldInFrame({ lonDeg: there.lonDeg, latDeg: there.latDeg, heightM: 0, decimalYear: year, convergenceDeg: convergenceDeg(frame, eastM, northM) }),
   };
 }
 
