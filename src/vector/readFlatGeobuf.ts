@@ -34,11 +34,13 @@ export async function readFlatGeobuf(path: string, files: FileSource): Promise<R
 function parse(bytes: Uint8Array, source: string): { header: HeaderMeta; features: InputFeature[] } {
   const buffer = new ByteBuffer(bytes);
   try {
+    let at = MAGIC.length + 4 + buffer.readUint32(MAGIC.length);
+    if (!(at <= bytes.length)) throw new RangeError('its header is cut off');
     buffer.setPosition(MAGIC.length);
     const header = fromByteBuffer(buffer);
-    let at = MAGIC.length + 4 + buffer.readUint32(MAGIC.length);
     // Node size and count rule out an index; a node size other than ours is allowed and changes its length.
     if (header.indexNodeSize > 0 && header.featuresCount > 0) at += levelStarts(header.featuresCount, header.indexNodeSize).at(-1)!.end * NODE_BYTES;
+    if (at > bytes.length) throw new RangeError('its index is cut off');
     const features: InputFeature[] = [];
     while (at < bytes.length) {
       const length = buffer.readUint32(at) + 4;
