@@ -3,7 +3,7 @@ import { UserError } from '../../src/errors.js';
 import { crs } from '../../src/geodesy/registry.js';
 import { LOCATE_DEFAULTS, locateRecords } from '../../src/records/locateRecords.js';
 import type { RecordFileSettings, RecordSource } from '../../src/records/recordSource.js';
-import type { WellRecord } from '../../src/records/types.js';
+import type { UnplacedRecord, WellRecord } from '../../src/records/types.js';
 import { parseCsv } from '../../src/table/parseCsv.js';
 import type { Feature } from '../../src/vector/types.js';
 import { centreX, centreY, frame, testSite } from './testSite.js';
@@ -29,6 +29,18 @@ function complaint(run: () => unknown): UserError['complaint'] {
     throw error;
   }
   throw new Error('nothing was thrown');
+}
+
+function unplaced(text: string, settings: RecordFileSettings = {}): readonly UnplacedRecord[] {
+  return locateRecords([csv(text, settings)], testSite()).unplaced;
+}
+
+function failure(text: string, settings: RecordFileSettings = {}): UserError['complaint'] {
+  return complaint(() => locateRecords([csv(text, settings)], testSite()));
+}
+
+function point(coordinates: number[], values: Feature['values'] = {}): Feature {
+  return { geometry: { type: 'Point', coordinates }, values };
 }
 
 /** Metres in a degree on GRS 80 at 39.3 N: meridian 111,016 m, parallel 86,271 m (series of Snyder 1987, p. 25). */
@@ -121,7 +133,6 @@ describe('datum', () => {
 });
 
 describe('rows that cannot be placed', () => {
-  const unplaced = (text: string, settings: RecordFileSettings = {}) => locateRecords([csv(text, settings)], testSite()).unplaced;
   const good = 'G,39.3001,-80.2001\n';
   it('names a wrong sign with the value and what to do', () => {
     expect(unplaced(`id,lat,lon\n${good}A,39.3000,80.2000\n`)).toEqual([{
@@ -173,7 +184,6 @@ describe('rows that cannot be placed', () => {
 });
 
 describe('a file that is described wrongly as a whole', () => {
-  const failure = (text: string, settings: RecordFileSettings = {}) => complaint(() => locateRecords([csv(text, settings)], testSite()));
   it('is refused: column, pair, CRS', () => {
     expect(failure('id,lat,lon\nA,39.3,-80.2\n', { columns: { ...LATLON, latitude: 'latt' } })).toMatchObject({ code: 'column_missing', where: 'permits.csv, columns.latitude', advice: 'did you mean "lat"' });
     expect(failure('id,lat,lon\nA,39.3,-80.2\n', { columns: { recordId: 'id' } })).toMatchObject({ code: 'key_missing' });
@@ -192,7 +202,6 @@ describe('a file that is described wrongly as a whole', () => {
 });
 
 describe('vector files', () => {
-  const point = (coordinates: number[], values: Feature['values'] = {}): Feature => ({ geometry: { type: 'Point', coordinates }, values });
   it('take the place from the point, digits from the finest of the file', () => {
     const source: RecordSource = {
       kind: 'vector', name: 'wells.geojson', crs: crs('EPSG:4326'), settings: { columns: { recordId: 'api' }, errorM: 0, blunderShare: 0 },

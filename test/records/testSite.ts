@@ -14,6 +14,10 @@ const SHIFTS: Readonly<Record<Datum, { lon: number; lat: number; shift: string; 
 export const frame = crs('EPSG:26917');
 export const [centreX, centreY] = frame.forward(-80.2, 39.3);
 
+function notUsed(): never {
+  throw new Error('records are placed one by one');
+}
+
 function square(halfM: number): Area {
   const corners = [[-1, -1], [1, -1], [1, 1], [-1, 1], [-1, -1]] as const;
   return [[corners.map(([sx, sy]) => [centreX + sx * halfM, centreY + sy * halfM] as const)]];
@@ -25,12 +29,12 @@ export function testSite(shifts: Partial<typeof SHIFTS> = {}): Site {
   const parcel = square(200);
   const shiftFrom = (from: Datum): DatumShift => {
     const { lon, lat, ...rest } = known[from];
-    return { from, to: 'NAD83', place: (lonDeg, latDeg) => ({ lonDeg: lonDeg + lon, latDeg: latDeg + lat, ...rest }) };
+    return { from, to: 'NAD83', place: (lonDeg, latDeg) => ({ lonDeg: lonDeg + lon, latDeg: latDeg + lat, ...rest }), arrays: notUsed };
   };
   return {
     title: 'Test ground', frame, parcel, exclusions: [], open: parcel, decimalYear: 2026.3,
     mainField: { totalNT: 51_000, inclinationDeg: 65, declinationDeg: -9, convergenceDeg: 0.5, unit: [-0.07, 0.42, -0.906] },
     target: { poleAM: [60, 400], depthM: [0, 2.5], basis: 'test' },
-    shiftFrom, toWgs84: { from: 'NAD83', to: 'WGS 84', place: (lonDeg, latDeg) => ({ lonDeg, latDeg, shift: 'none', sdM: 2, sharedSdM: 0 }) },
+    shiftFrom, toWgs84: { from: 'NAD83', to: 'WGS 84', place: (lonDeg, latDeg) => ({ lonDeg, latDeg, shift: 'none', sdM: 2, sharedSdM: 0 }), arrays: notUsed },
   };
 }
