@@ -1,0 +1,97 @@
+import { UserError } from '../errors.js';
+import type { Grid } from '../raster/types.js';
+import type { Readings } from '../readings/types.js';
+import type { Site } from '../site/types.js';
+import { alignments } from './alignment.js';
+import { linearAnomaly, sourceAnomaly, type Draft } from './describe.js';
+import { noiseModel, whiteNoise } from './noise.js';
+import { refine, type Refined } from './refine.js';
+import { searchSources } from './search.js';
+import { surveyOf, type SurveyOptions } from './survey.js';
+import type { Anomalies, Anomaly } from './types.js';
+
+export interface DelineateOptions extends SurveyOptions {
+  /** A peak has to stand out of the local noise by this factor to be looked at. */
+  readonly detectSnr: number;
+  /** Outlines are contours at this multiple of the local noise. */
+  readonly outlineSnr: number;
+  /** Radius of the local noise, metres; unsaid, ten sensor–source distances. */
+  readonly localRadiusM?: number;
+  readonly maxSources: number;
+}
+
+export const DELINEATE_DEFAULTS: DelineateOptions = Object.freeze({
+  detectSnr: 6, outlineSnr: 5, maxSources: 250,
+  jitterM: 0.02, heightSdM: 0.1, heightCorrS: 4,
+});
+
+/** Rounds of peak, fit and subtraction; sources that overlap need two or three. */
+const MAX_ROUNDS = 8;
+const LOCAL_REACHES = 10;
+/** Fewer blocks than this hold no source and its noise. */
+const LEAST_BLOCKS = 12;
+/** Where known sources make more than this share of the residual's spread, a block tells nothing about noise. */
+const QUIET_SHARE = 0.5;
+/** Sources line up within this share of the reach … */
+const ALIGN_REACHES = 0.5;
+/** … no further apart than this many spacings (or double reaches), at least so many, over so many spacings. */
+const ALIGN_GAP = 2.5;
+const ALIGN_MEMBERS = 4;
+const ALIGN_LENGTH = 4;
+/** A source this surely a casing is never taken for a piece of a pipe. */
+const SURE_CASING = 0.9;
+
+/**
+ * Sources in the residual: found along the passes, decided on the readings, outlined on the grid.
+ *
+ * @param readings Reduced readings; flagged ones (NaN) are left out. Ground is taken as flat, at height 0 under every
+ *   sensor, so a depth counts from the ground under the sensors that hear the source.
+ * @param residual Grid of the residual, for the outlines only.
+ * @returns Anomalies by falling deflection, A1 the strongest; the survey's own noise.
+ */
+export function delineate(readings: Readings, residual: Grid, site: Site, options: Partial<DelineateOptions> = {}): Anomalies {
+  const settings = { ...DELINEATE_DEFAULTS, ...options };
+  const survey = surveyOf(readings, site, settings);
+  if (survey.blocks.count < LEAST_BLOCKS) {
+    throw new UserError({
+      code: 'no_data', where: 'readings', found: `${survey.blocks.count} stretches with a residual`, wanted: `at least ${LEAST_BLOCKS}`,
+      advice: 'check the column flag of the reduced readings: it says why each reading was left out',
+    });
+  }
+  const localRadiusM = settings.localRadiusM ?? LOCAL_REACHES * survey.reachM;
+  const whiteSdNT = whiteNoise(readings);
+  const search = { detectSnr: settings.detectSnr, localRadiusM, maxSources: settings.maxSources, maxRounds: MAX_ROUNDS };
+  const rough = noiseModel(survey, survey.blocks.value, { whiteSdNT, skip: new Uint8Array(survey.blocks.count) });
+  const { map, full } = searchSources(survey, rough, search);
+  const left = survey.blocks.value.map((value, i) => value - map.made[i]!);
+  const quiet = QUIET_SHARE * rough.correlatedSdNT;
+  const noise = noiseModel(survey, left, { whiteSdNT, skip: Uint8Array.from(map.made, (made) => (Math.abs(made) > quiet ? 1 : 0)) });
+
+  let refined: Refined[] = [];
+  for (let sweep = 0; sweep < 2; sweep++) refined = [...map.entries].map((entry) => refine(map, entry, noise));
+  const context = { map, survey, readings, residual, site, noise, settings, localRadiusM };
+  const drafts: Draft[] = refined.map((one) => sourceAnomaly(one, context));
+  const pins = drafts.map(({ anomaly }) => ({ x: anomaly.x, y: anomaly.y, sdM: anomaly.posSdM }));
+  const step = Math.max(survey.spacingM, 2 * survey.reachM);
+  const candidates = [...drafts.keys()].filter((k) => drafts[k]!.anomaly.pCasing < SURE_CASING);
+  const runs = alignments(candidates.map((k) => pins[k]!), {
+    toleranceM: ALIGN_REACHES * survey.reachM, gapM: ALIGN_GAP * step, leastMembers: ALIGN_MEMBERS, leastLengthM: ALIGN_LENGTH * step,
+  });
+  const merged = new Set<number>();
+  const list: Anomaly[] = runs.map((run) => {
+    const members = run.members.map((k) => candidates[k]!);
+    for (const k of members) merged.add(k);
+    return linearAnomaly(run, members.map((k) => drafts[k]!), context);
+  });
+  drafts.forEach(({ anomaly }, k) => {
+    if (!merged.has(k)) list.push(anomaly);
+  });
+  list.sort((a, b) => b.snr - a.snr || a.x - b.x || a.y - b.y);
+  const notes = [
+    `Sensor to source ${survey.reachM.toFixed(1)} m, lines ${survey.spacingM.toFixed(1)} m apart, sources fitted within ${survey.windowM.toFixed(0)} m. Ground is taken as flat.`,
+    `Noise of the residual away from sources: ${noise.whiteSdNT.toFixed(2)} nT a reading (white), ${noise.correlatedSdNT.toFixed(1)} nT over ${noise.correlationM.toFixed(0)} m (geology and the like), positions ${noise.positionSdM} m per axis wandering over ${noise.positionCorrelationS} s, sensor height ${settings.heightSdM} m.`,
+    'Prior odds of casing, other pole, compact iron and line: 35, 10, 35 and 20 (a working assumption).',
+  ];
+  if (full) notes.push(`The search stopped at ${settings.maxSources} sources (max_sources); weaker ones were not looked for.`);
+  return { list: list.map((anomaly, k) => ({ ...anomaly, anomalyId: `A${k + 1}` })), noise, notes };
+}

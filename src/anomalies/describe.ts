@@ -1,0 +1,203 @@
+import { ellipseOfCovariance } from '../density/ellipse.js';
+import type { Covariance } from '../density/types.js';
+import type { NoiseModel } from '../detection/types.js';
+import { HALF_WIDTH_FACTORS } from '../field/halfWidth.js';
+import { madSd } from '../numerics/robust.js';
+import type { Grid } from '../raster/types.js';
+import type { Readings } from '../readings/types.js';
+import type { Site } from '../site/types.js';
+import type { Alignment } from './alignment.js';
+import { LEAST_CHANCE, natureOf, type Nature, type PoleValues } from './classify.js';
+import { parameterRange, type Fit, type Window } from './fitSources.js';
+import { circleOutline, contourOutline } from './outline.js';
+import type { Refined } from './refine.js';
+import { anomalyAt } from './sourceField.js';
+import type { SourceMap } from './sourceMap.js';
+import { placeOf, type Source } from './sources.js';
+import { blocksNear, type Survey } from './survey.js';
+import type { Anomaly, AnomalyClass } from './types.js';
+import { whiten } from './wander.js';
+
+export interface DescribeContext {
+  readonly map: SourceMap;
+  readonly survey: Survey;
+  readonly readings: Readings;
+  readonly residual: Grid;
+  readonly site: Site;
+  readonly noise: NoiseModel;
+  readonly settings: { readonly outlineSnr: number };
+  readonly localRadiusM: number;
+}
+
+/** An anomaly that has no number yet, with what it rests on. */
+export interface Draft {
+  readonly anomaly: Anomaly;
+  readonly refined: Refined;
+  readonly nature: Nature;
+}
+
+/** A class is given where its chance is at least this. */
+const DECIDED = 0.5;
+/** A place less certain than this share of the line spacing (one standard deviation on its axis) does not decide a class. */
+const VAGUE_SPACINGS = 0.5;
+/** A contour lies no higher than this share of the peak, so that a weak source has one too. */
+const MOST_LEVEL = 0.5;
+
+export function sourceAnomaly(refined: Refined, context: DescribeContext): Draft {
+  const { survey, site } = context;
+  const { fit } = refined;
+  const source = fit.sources[0]!;
+  const [from] = parameterRange(fit.sources, 0);
+  const misfit = Math.max(1, fit.chi2 / Math.max(1, fit.count - fit.parameters));
+  const variance = (a: number, b: number) => misfit * fit.covariance[(from + a) * fit.parameters + from + b]!;
+  const [x, y] = placeOf(source);
+  const depthM = -source.values[2]!;
+  const depthSdM = Math.sqrt(variance(2, 2));
+  const pole: PoleValues | null = source.kind === 'pole'
+    ? { poleAM: source.values[3]!, poleSdAM: Math.sqrt(variance(3, 3)), depthM, depthSdM } : null;
+  const nature = natureOf(refined, site.target, pole, survey.reachM);
+  const cov = source.kind === 'line' ? lineCovariance(source, variance(0, 0), survey.windowM) : [variance(0, 0), variance(0, 1), variance(1, 1)] as const;
+  const { semiMajM, semiMinM, azimDeg } = ellipseOfCovariance(x, y, cov);
+  const posSdM = Math.sqrt((cov[0] + cov[2]) / 2);
+  const vague = source.kind !== 'line' && posSdM > VAGUE_SPACINGS * survey.spacingM;
+  const { cls, why } = classOf(nature, vague);
+  const peakNT = peakOf(refined.window, fit, source, survey);
+  const outline = outlineOf({ source, fit, window: refined.window, x, y, peakNT }, context);
+  const sizes = source.kind === 'dipole' ? Math.hypot(source.values[3]!, source.values[4]!, source.values[5]!) : NaN;
+  return {
+    refined, nature,
+    anomaly: {
+      anomalyId: '', class: cls, pCasing: Math.min(1 - LEAST_CHANCE, Math.max(LEAST_CHANCE, nature.casing)), x, y, cov, semiMajM, semiMinM, azimDeg, posSdM,
+      peakNT, snr: deflectionOf(refined.window, fit, source) / Math.sqrt(misfit), depthM, depthSdM,
+      poleAM: pole ? pole.poleAM : NaN, poleSdAM: pole ? pole.poleSdAM : NaN, momentAM2: sizes,
+      strikeDeg: source.kind === 'line' ? ((((source.values[1]! * 180) / Math.PI) % 180) + 180) % 180 : NaN,
+      outline: outline.area, areaM2: outline.areaM2, note: why + outline.note,
+    },
+  };
+}
+
+/** Several sources in a row become one: a pipe, cable or fence. */
+export function linearAnomaly(run: Alignment, members: readonly Draft[], context: DescribeContext): Anomaly {
+  const { survey, noise } = context;
+  const strongest = members.reduce((a, b) => (b.anomaly.snr > a.anomaly.snr ? b : a));
+  const s = Math.sin(run.azimuth);
+  const c = Math.cos(run.azimuth);
+  const middle = (run.from + run.to) / 2;
+  const x = run.x + middle * s;
+  const y = run.y + middle * c;
+  const across = members.map(({ anomaly }) => (anomaly.x - run.x) * c - (anomaly.y - run.y) * s);
+  const acrossVar = (across.reduce((sum, a) => sum + a * a, 0) / across.length + noise.positionSdM ** 2) / Math.sqrt(across.length);
+  const alongVar = (run.to - run.from) ** 2 / 12;
+  const cov: Covariance = [alongVar * s * s + acrossVar * c * c, (alongVar - acrossVar) * s * c, alongVar * c * c + acrossVar * s * s];
+  const { semiMajM, semiMinM, azimDeg } = ellipseOfCovariance(x, y, cov);
+  const weights = members.map(({ anomaly }) => 1 / (anomaly.depthSdM ** 2 + (0.1 * survey.reachM) ** 2));
+  const sum = weights.reduce((a, b) => a + b, 0);
+  const depthM = members.reduce((total, { anomaly }, k) => total + anomaly.depthM * weights[k]!, 0) / sum;
+  const depthSdM = Math.sqrt(members.reduce((total, { anomaly }, k) => total + (anomaly.depthM - depthM) ** 2 * weights[k]!, 0) / sum);
+  const outline = corridor({ ...run, x, y, from: run.from - middle - survey.reachM, to: run.to - middle + survey.reachM }, survey.reachM);
+  return {
+    anomalyId: '', class: 'linear', pCasing: LEAST_CHANCE, x, y, cov, semiMajM, semiMinM, azimDeg, posSdM: Math.sqrt((cov[0] + cov[2]) / 2),
+    peakNT: members.reduce((peak, { anomaly }) => (Math.abs(anomaly.peakNT) > Math.abs(peak) ? anomaly.peakNT : peak), 0),
+    snr: strongest.anomaly.snr, depthM, depthSdM, poleAM: NaN, poleSdAM: NaN, momentAM2: NaN,
+    strikeDeg: (run.azimuth * 180) / Math.PI, outline: outline.area, areaM2: outline.areaM2,
+    note: `${members.length} sources in a row over ${(run.to - run.from).toFixed(0)} m: a pipe, cable or fence. The place is the middle of the row; the outline is its course, ${(2 * survey.reachM).toFixed(1)} m wide.`,
+  };
+}
+
+function corridor(run: Alignment, halfM: number): { area: Anomaly['outline']; areaM2: number } {
+  const s = Math.sin(run.azimuth);
+  const c = Math.cos(run.azimuth);
+  const corner = (along: number, across: number): [number, number] => [run.x + along * s + across * c, run.y + along * c - across * s];
+  const ring = [corner(run.from, -halfM), corner(run.from, halfM), corner(run.to, halfM), corner(run.to, -halfM), corner(run.from, -halfM)];
+  return { area: [[ring]], areaM2: 2 * halfM * (run.to - run.from) };
+}
+
+function classOf(nature: Nature, vague: boolean): { cls: AnomalyClass; why: string } {
+  const percent = (p: number) => `${Math.round(100 * p)} %`;
+  const chances = `casing ${percent(nature.casing)}, other pole ${percent(nature.otherPole)}, compact ${percent(nature.compact)}, line ${percent(nature.linear)}`;
+  const strained = nature.misfit > 2 ? ` The best model leaves ${Math.sqrt(nature.misfit).toFixed(1)} times the noise; its errors are widened by that.` : '';
+  if (vague) return { cls: 'unresolved', why: `Too few readings hear it to place it (${chances}).${strained}` };
+  if (nature.casing >= DECIDED) return { cls: 'casing', why: `A pole with strength and depth of a casing's top fits best (${chances}).${strained}` };
+  if (nature.compact >= DECIDED) return { cls: 'compact', why: `A dipole fits best (${chances}).${strained}` };
+  if (nature.linear >= DECIDED) return { cls: 'linear', why: `A horizontal line of dipoles fits best (${chances}).${strained}` };
+  if (nature.otherPole >= DECIDED) return { cls: 'unresolved', why: `A pole fits best, but not with the strength and depth stated for a casing (${chances}).${strained}` };
+  return { cls: 'unresolved', why: `The readings do not decide what it is (${chances}).${strained}` };
+}
+
+/** Across a line its fit speaks; along it nothing is known within the window. */
+function lineCovariance(source: Source, acrossVar: number, windowM: number): Covariance {
+  const s = Math.sin(source.values[1]!);
+  const c = Math.cos(source.values[1]!);
+  const alongVar = (2 * windowM) ** 2 / 12;
+  return [alongVar * s * s + acrossVar * c * c, (alongVar - acrossVar) * s * c, alongVar * c * c + acrossVar * s * s];
+}
+
+/** Of the readings at which the source makes most of what sources make, the largest value above the local plane, nT. */
+function peakOf(window: Window, fit: Fit, source: Source, survey: Survey): number {
+  let peak = 0;
+  for (let k = 0; k < window.count; k++) {
+    const own = anomalyAt([source], window.field, [window.x[k]!, window.y[k]!, window.z[k]!]);
+    const value = window.value[k]! - planeAt(window, fit, window.x[k]!, window.y[k]!);
+    if (Math.sign(own) === Math.sign(value) && Math.abs(own) > 0.5 * Math.abs(value) && Math.abs(value) > Math.abs(peak)) peak = value;
+  }
+  return peak === 0 ? anomalyAt([source], window.field, [...placeOf(source), survey.reachM + survey.expectedZM]) : peak;
+}
+
+function planeAt(window: Window, fit: Fit, x: number, y: number): number {
+  return fit.plane[0] + (fit.plane[1] * (x - window.centreX) + fit.plane[2] * (y - window.centreY)) / window.radiusM;
+}
+
+/** Deflection d = √(sᵀC⁻¹s) of the fitted source, the part of it that a plane explains taken out. */
+function deflectionOf(window: Window, fit: Fit, source: Source): number {
+  const n = window.count;
+  const columns = new Float64Array(4 * n);
+  for (let k = 0; k < n; k++) {
+    columns[k] = 1;
+    columns[n + k] = (window.x[k]! - window.centreX) / window.radiusM;
+    columns[2 * n + k] = (window.y[k]! - window.centreY) / window.radiusM;
+    columns[3 * n + k] = anomalyAt([source], window.field, [window.x[k]!, window.y[k]!, window.z[k]!]);
+  }
+  whiten(window.walk, fit.model, columns);
+  for (let r = 0; r < 4; r++) {
+    for (let q = 0; q < r; q++) {
+      let dot = 0;
+      let size = 0;
+      for (let k = 0; k < n; k++) {
+        dot += columns[r * n + k]! * columns[q * n + k]!;
+        size += columns[q * n + k]! ** 2;
+      }
+      if (size > 0) for (let k = 0; k < n; k++) columns[r * n + k]! -= (dot / size) * columns[q * n + k]!;
+    }
+  }
+  let d2 = 0;
+  for (let k = 0; k < n; k++) d2 += columns[3 * n + k]! ** 2;
+  return Math.sqrt(d2);
+}
+
+interface OutlineOf {
+  readonly source: Source;
+  readonly fit: Fit;
+  readonly window: Window;
+  readonly x: number;
+  readonly y: number;
+  readonly peakNT: number;
+}
+
+function outlineOf({ source, fit, window, x, y, peakNT }: OutlineOf, { map, survey, residual, settings, localRadiusM }: DescribeContext) {
+  const height = survey.reachM + survey.expectedZM;
+  const nearby = map.near(x, y, 2 * survey.windowM).map((entry) => entry.source).filter((other) => other !== source);
+  const quiet: number[] = [];
+  for (const i of blocksNear(survey, [[x, y]], localRadiusM)) quiet.push(survey.blocks.value[i]! - map.made[i]!);
+  const levelNT = Math.max(1e-9, Math.min(settings.outlineSnr * madSd(Float64Array.from(quiet)), MOST_LEVEL * Math.abs(peakNT)));
+  const found = contourOutline(residual, {
+    x, y, radiusM: survey.windowM, levelNT, whole: source.kind === 'line',
+    background: (cx, cy) => planeAt(window, fit, cx, cy),
+    owns: (cx, cy) => {
+      const own = Math.abs(anomalyAt([source], survey.field, [cx, cy, height]));
+      return nearby.every((other) => Math.abs(anomalyAt([other], survey.field, [cx, cy, height])) <= own);
+    },
+  });
+  if (found) return { ...found, note: ` Outline at ${levelNT.toFixed(1)} nT.` };
+  const distance = Math.max(survey.reachM / 4, height - source.values[2]!);
+  return { ...circleOutline(x, y, distance / HALF_WIDTH_FACTORS.pole), note: ' The grid shows no contour here: the outline is the circle of half the fitted peak.' };
+}

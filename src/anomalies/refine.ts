@@ -1,0 +1,62 @@
+import type { NoiseModel } from '../detection/types.js';
+import { fitSources, type Fit, type Window } from './fitSources.js';
+import { bestFit } from './search.js';
+import type { Entry, SourceMap } from './sourceMap.js';
+import { placeOf, type Source } from './sources.js';
+import { startingPoints, type Kind } from './startingPoints.js';
+
+/** A source with the fits that its place and class rest on. */
+export interface Refined {
+  readonly entry: Entry;
+  /** Fit of the best kind; the source is its first. */
+  readonly fit: Fit;
+  readonly window: Window;
+  /** Information criterion of each kind in place of this source, and without it, all on the same window. */
+  readonly bic: Readonly<Record<Kind | 'none', number>>;
+}
+
+export const KINDS: readonly Kind[] = ['pole', 'dipole', 'line'];
+/** Neighbours that are fitted along with a source, at most, and how near they have to lie, in windows. */
+const NEIGHBOURS = 3;
+const NEIGHBOUR_WINDOWS = 0.9;
+
+/**
+ * Fits a source once more, together with its neighbours, as each kind of source in turn. The map takes over the best fit,
+ * neighbours included.
+ */
+export function refine(map: SourceMap, entry: Entry, noise: NoiseModel): Refined {
+  const { survey } = map;
+  const [x, y] = placeOf(entry.source);
+  const neighbours = map.near(x, y, NEIGHBOUR_WINDOWS * survey.windowM)
+    .filter((other) => other !== entry && other.source.kind !== 'line')
+    .slice(0, NEIGHBOURS);
+  const free = [entry, ...neighbours];
+  const window = map.window(free.map((one) => placeOf(one.source)), { noise, free, radiusM: survey.windowM });
+  const others = neighbours.map((one) => one.source);
+  const own = new Map<number, number>();
+  entry.index.forEach((i, k) => own.set(i, entry.made[k]!));
+  const near = map.window([[x, y]], { noise, free: [], radiusM: survey.windowM });
+  const left: Window = { ...near, fixed: [], value: Float64Array.from(near.index, (i) => survey.blocks.value[i]! - map.made[i]! + (own.get(i) ?? 0)) };
+  const peak = peakOf(left, entry.source);
+  const fits: Partial<Record<Kind, Fit>> = {};
+  for (const kind of KINDS) {
+    const starts: Source[] = kind === entry.source.kind ? [entry.source] : startingPoints(left, kind, peak);
+    fits[kind] = bestFit(window, starts, others)!;
+  }
+  const kind = KINDS.reduce((a, b) => (fits[b]!.bic < fits[a]!.bic ? b : a));
+  const fit = fits[kind]!;
+  map.learn(window, fit);
+  free.forEach((one, k) => map.move(one, fit.sources[k]!));
+  const none = fitSources(window, others);
+  return { entry, fit, window, bic: { pole: fits.pole!.bic, dipole: fits.dipole!.bic, line: fits.line!.bic, none: none.bic } };
+}
+
+/** Largest deflection that the source is to explain, near its place. */
+function peakOf(left: Window, source: Source): { x: number; y: number; heightNT: number } {
+  const [x, y] = placeOf(source);
+  let heightNT = 0;
+  for (let k = 0; k < left.count; k++) {
+    if (Math.hypot(left.x[k]! - x, left.y[k]! - y) < left.radiusM / 2 && Math.abs(left.value[k]!) > Math.abs(heightNT)) heightNT = left.value[k]!;
+  }
+  return { x, y, heightNT };
+}
