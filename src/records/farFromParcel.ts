@@ -5,7 +5,7 @@ import { framePlace } from './framePlace.js';
 import { geodesicM, inverseOrNull, likelySlip, type Slip } from './implausible.js';
 import type { Fault, RawPlace, RawRecord } from './rawRecord.js';
 import type { DatumWeights } from './recordDatum.js';
-import type { RecordSource } from './recordSource.js';
+import { sourceCrs, type RecordSource } from './recordSource.js';
 
 /** Farther than this from the parcel the frame's projection is not trusted for a distance; the geodesic is said instead. */
 const PROJECTED_LIMIT_M = 100_000;
@@ -21,8 +21,7 @@ export function farFromParcel(raw: RawRecord & { readonly place: RawPlace }, dat
   readonly source: RecordSource; readonly site: Site; readonly maxDistanceM: number;
 }): FarPlace | null {
   const { source, site, maxDistanceM } = options;
-  const { settings } = source;
-  const crs = settings.crs ?? (source.kind === 'vector' ? source.crs : null);
+  const crs = sourceCrs(source);
   const { west, south, east, north } = areaBounds(site.parcel);
   const centre = site.frame.inverse((west + east) / 2, (south + north) / 2);
   const { place } = raw;

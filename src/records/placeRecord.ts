@@ -5,7 +5,7 @@ import type { Site } from '../site/types.js';
 import { framePlace, type FramePlace } from './framePlace.js';
 import type { RawPlace, RawRecord } from './rawRecord.js';
 import type { DatumWeights } from './recordDatum.js';
-import { RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
+import { RECORD_FILE_DEFAULTS, sourceCrs, type RecordSource } from './recordSource.js';
 import { metres, sourceError } from './sourceError.js';
 import type { WellRecord } from './types.js';
 
@@ -29,7 +29,7 @@ export function placeRecord(raw: RawRecord & { readonly place: RawPlace }, datum
   const row = raw.errorM !== null || raw.error90M !== null || raw.error95M !== null;
   const stated = row ? raw : { errorM: settings.errorM ?? null, error90M: settings.error90M ?? null, error95M: settings.error95M ?? null };
   const error = sourceError(stated, { class: settings.source, mapScale: settings.mapScale ?? null }, row ? `${source.name}, row ${raw.row}` : source.name);
-  const crs = settings.crs ?? (source.kind === 'vector' ? source.crs : null);
+  const crs = sourceCrs(source);
   const places = datums.map(({ datum, weight }) => ({ datum, weight, at: framePlace(raw.place, { crs, shift: site.shiftFrom(datum), frame: site.frame }) }));
 
   const { blunderShare } = settings;

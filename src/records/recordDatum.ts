@@ -2,7 +2,7 @@ import { UserError } from '../errors.js';
 import type { Datum } from '../geodesy/types.js';
 import { datumWord } from './datumWord.js';
 import type { Fault, RawRecord } from './rawRecord.js';
-import type { RecordFileSettings, RecordSource } from './recordSource.js';
+import { sourceCrs, type RecordFileSettings, type RecordSource } from './recordSource.js';
 
 /** Datums that a record may be in with their weights, which sum to 1; a single one where it is known. */
 export type DatumWeights = ReadonlyArray<{ readonly datum: Datum; readonly weight: number }>;
@@ -20,7 +20,7 @@ export function recordDatum(raw: RawRecord, source: RecordSource): DatumWeights 
   if (row === null) {
     throw new UserError({ code: 'datum_unknown', where: `${name}, row ${raw.row}, column ${column}`, found: `"${raw.datumText}"`, wanted: WANTED });
   }
-  const crs = settings.crs ?? (source.kind === 'vector' ? source.crs : null);
+  const crs = sourceCrs(source);
   if (crs?.kind === 'projected') {
     const clash = row !== 'unknown' && family(row) !== family(crs.datum);
     if (!clash) return [{ datum: crs.datum, weight: 1 }];

@@ -1,7 +1,6 @@
-import type { Datum } from '../geodesy/types.js';
+import type { Crs, Datum } from '../geodesy/types.js';
 import type { TextTable } from '../table/types.js';
-import type { Feature } from '../vector/types.js';
-import type { Crs } from '../geodesy/types.js';
+import type { InputFeature } from '../vector/types.js';
 import type { SourceClass } from './sourceError.js';
 
 /** Which column of the file holds what; every one may be left out. Names are the file's own. */
@@ -26,7 +25,7 @@ export interface RecordColumns {
 /** How a file of records is to be read: `locate.files[]` of the survey file. */
 export interface RecordFileSettings {
   readonly columns?: RecordColumns;
-  /** CRS of easting and northing, or of latitude and longitude; for a vector file it stands in place of the file's own. */
+  /** CRS of a table's easting and northing, or of its latitude and longitude; a vector file brings its own. */
   readonly crs?: Crs;
   /** Datum of all rows whose own is not stated. */
   readonly datum?: string;
@@ -48,8 +47,13 @@ export interface RecordFileSettings {
 /** A file of records as it was read. */
 export type RecordSource = { readonly name: string; readonly settings: RecordFileSettings } & (
   | { readonly kind: 'table'; readonly table: TextTable }
-  | { readonly kind: 'vector'; readonly crs: Crs; readonly features: readonly Feature[] }
+  | { readonly kind: 'vector'; readonly crs: Crs; readonly features: readonly InputFeature[] }
 );
+
+/** CRS of the coordinates of a source; null for a table of latitudes and longitudes whose datum is stated otherwise. */
+export function sourceCrs(source: RecordSource): Crs | null {
+  return source.kind === 'vector' ? source.crs : source.settings.crs ?? null;
+}
 
 /** What a file says nothing about. Survey-file keys are the same words in snake_case. */
 export const RECORD_FILE_DEFAULTS = Object.freeze({

@@ -5,7 +5,7 @@ import { LOCATE_DEFAULTS, locateRecords } from '../../src/records/locateRecords.
 import type { RecordFileSettings, RecordSource } from '../../src/records/recordSource.js';
 import type { UnplacedRecord, WellRecord } from '../../src/records/types.js';
 import { parseCsv } from '../../src/table/parseCsv.js';
-import type { Feature } from '../../src/vector/types.js';
+import type { InputFeature } from '../../src/vector/types.js';
 import { centreX, centreY, frame, testSite } from './testSite.js';
 
 const LATLON = { recordId: 'id', latitude: 'lat', longitude: 'lon' };
@@ -39,8 +39,8 @@ function failure(text: string, settings: RecordFileSettings = {}): UserError['co
   return complaint(() => locateRecords([csv(text, settings)], testSite()));
 }
 
-function point(coordinates: number[], values: Feature['values'] = {}): Feature {
-  return { geometry: { type: 'Point', coordinates }, values };
+function point(coordinates: number[], properties: InputFeature['properties'] = {}): InputFeature {
+  return { geometry: { type: 'Point', coordinates }, properties };
 }
 
 /** Metres in a degree on GRS 80 at 39.3 N: meridian 111,016 m, parallel 86,271 m (series of Snyder 1987, p. 25). */
@@ -205,7 +205,7 @@ describe('vector files', () => {
   it('take the place from the point, digits from the finest of the file', () => {
     const source: RecordSource = {
       kind: 'vector', name: 'wells.geojson', crs: crs('EPSG:4326'), settings: { columns: { recordId: 'api' }, errorM: 0, blunderShare: 0 },
-      features: [point([-80.2, 39.3], { api: 4703301 }), point([-80.2011, 39.3], { api: null }), { geometry: null, values: { api: 'X' } }],
+      features: [point([-80.2, 39.3], { api: 4703301 }), point([-80.2011, 39.3], { api: null }), { geometry: null, properties: { api: 'X' } }],
     };
     const { placed, unplaced } = locateRecords([source], testSite());
     expect(placed.map(({ recordId, datum }) => [recordId, datum])).toEqual([['4703301', 'WGS 84'], ['row 2', 'WGS 84']]);
