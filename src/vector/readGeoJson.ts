@@ -15,7 +15,8 @@ const WGS84 = 'EPSG:4326';
 export async function readGeoJson(path: string, files: FileSource): Promise<RawVector> {
   const source = baseName(path);
   const document = parse(await files.read(path), source);
-  return { crs: crsMember(document, source), features: featuresOf(document, source), notes: [] };
+  const features = featuresOf(document, source);
+  return 'crs' in document ? { crs: crsMember(document.crs, source), features, notes: [] } : { crs: null, formatCrs: crs(WGS84), features, notes: [] };
 }
 
 interface Json { readonly [key: string]: unknown }
@@ -59,9 +60,7 @@ function featureOf(feature: unknown, where: string): InputFeature {
   return { geometry: geometry as Geometry | null, properties: isJson(properties) ? propertyValues(properties) : {} };
 }
 
-function crsMember(document: Json, source: string): Crs | null {
-  if (!('crs' in document)) return crs(WGS84);
-  const { crs: member } = document;
+function crsMember(member: unknown, source: string): Crs | null {
   // The 2008 format: null says that no system can be assumed.
   if (member === null) return null;
   const where = `${source}, member crs`;

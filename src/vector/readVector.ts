@@ -25,7 +25,8 @@ export const VECTOR_EXTENSIONS: readonly string[] = Object.keys(READERS);
 /**
  * Reads GeoJSON (RFC 7946; an old `crs` member is honoured), Shapefile (with its .dbf, .prj and .cpg) or FlatGeobuf, by
  * the file's ending. A CRS is never guessed: a file without one, and without one stated, is a UserError `crs_missing`.
- * Coordinates in feet become metres. Heights are left out, with a note.
+ * What the user states counts where the file is silent, also before the WGS 84 of a GeoJSON without a `crs` member
+ * (RFC 7946, section 4, "prior arrangement"). Coordinates in feet become metres. Heights are left out, with a note.
  */
 export async function readVector(path: string, files: FileSource, options: Partial<ReadVectorOptions> = {}): Promise<VectorInput> {
   const stated = { ...READ_VECTOR_DEFAULTS, ...options }.crs;
@@ -39,9 +40,9 @@ export async function readVector(path: string, files: FileSource, options: Parti
   }
   const raw = await reader(path, files);
   if (raw.features.length === 0) throw new UserError({ code: 'file_empty', where: source, found: 'no features', wanted: 'at least one' });
+  for (const [index, { geometry }] of raw.features.entries()) if (geometry) checkInputGeometry(geometry, `${source}, feature ${index + 1}`);
   const crs = crsOf(raw, stated, source);
   const heights = { count: 0 };
-  for (const [index, { geometry }] of raw.features.entries()) if (geometry) checkInputGeometry(geometry, `${source}, feature ${index + 1}`);
   checkPlausible(raw.features, crs, source);
   const features = raw.features.map(({ geometry, properties }) => ({ properties, geometry: geometry && toMetres(geometry, crs, heights) }));
   const notes = heights.count > 0 ? [...raw.notes, `${source}: the heights of ${heights.count} positions are not used.`] : raw.notes;
@@ -55,11 +56,14 @@ function crsOf(raw: RawVector, stated: Crs | null, source: string): Crs {
       advice: 'leave it out, or correct the file',
     });
   }
-  const crs = raw.crs ?? stated;
+  const crs = raw.crs ?? stated ?? raw.formatCrs ?? null;
   if (crs) return crs;
+  const box = boxOf(raw.features.find(({ geometry }) => geometry !== null)?.geometry ?? null);
+  const degrees = box[0] >= -180 && box[2] <= 180 && box[1] >= -90 && box[3] <= 90;
   throw new UserError({
-    code: 'crs_missing', where: source, found: 'no coordinate reference system', wanted: 'one, since positions mean nothing without it',
-    advice: extension(source) === 'shp' ? 'put its .prj file beside it, or name the CRS in the survey file, as in "crs": "EPSG:2272"' : 'name the CRS in the survey file, as in "crs": "EPSG:2272"',
+    code: 'crs_missing', where: source, wanted: 'one, since positions mean nothing without it',
+    found: `no coordinate reference system; its first feature lies at ${box[0]}, ${box[1]}${degrees ? ', which looks like degrees' : ''}`,
+    advice: extension(source) === 'shp' ? 'put its .prj file beside it, or name the CRS in the survey file, as in "EPSG:2272"' : 'name the CRS in the survey file, as in "EPSG:2272"',
   });
 }
 

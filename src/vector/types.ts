@@ -55,6 +55,8 @@ export interface InputFeature {
 /** What a format's reader hands over: positions in the file's units, and the CRS that the file names, if any. */
 export interface RawVector {
   readonly crs: Crs | null;
+  /** What the format lays down for a file that names none; none for most. */
+  readonly formatCrs?: Crs;
   readonly features: readonly InputFeature[];
   readonly notes: readonly string[];
 }

@@ -105,6 +105,8 @@ describe('readVector', () => {
   it('takes an agreeing CRS that is stated', async () => {
     const files = memoryFiles({ 'x.json': encodeGeoJson(layerOf('Point'), { toWgs84: (lon, lat) => [lon, lat] }) });
     expect((await readVector('x.json', files, { crs: crs('EPSG:4326') })).crs.code).toBe('EPSG:4326');
-    expect(await complaintOf(readVector('x.json', files, { crs: crs('EPSG:4269') }))).toMatchObject({ code: 'key_invalid' });
+    expect((await readVector('x.json', files, { crs: crs('EPSG:4269') })).crs.code).toBe('EPSG:4269');
+    const saying = memoryFiles({ 'x.json': JSON.stringify(named('EPSG:4267', -80, 40)) });
+    expect(await complaintOf(readVector('x.json', saying, { crs: crs('EPSG:4269') }))).toMatchObject({ code: 'key_invalid' });
   });
 });
