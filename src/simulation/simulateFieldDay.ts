@@ -1,4 +1,4 @@
-import type { Area, Rings } from '../density/types.js';
+import type { Area } from '../density/types.js';
 import { datumShift } from '../geodesy/datumShift.js';
 import { decimalYear } from '../geodesy/decimalYear.js';
 import { crs } from '../geodesy/crs.js';
@@ -32,12 +32,11 @@ export function simulateFieldDay(scenario: Scenario): FieldDay {
   const random = new Random(setting.seed);
   const startS = parseTimeColumn([setting.start], {}, { source: 'scenario', column: 'start' })[0]!;
   const toWgs84 = datumShift(frame.datum, 'WGS 84', { receiver: setting.receiver });
-  const area = (polygons: readonly ScenarioRings[]): Area => polygons.map((rings): Rings => rings);
   const middle = middleOf(setting.parcel);
   const main = localMainField(frame, middle, { toWgs84, heightM: setting.ground_height_m, decimalYear: decimalYear(setting.start, 'scenario, start') });
 
-  const parcel = area(setting.parcel);
-  const exclusions = area(setting.exclusions);
+  const parcel: Area = setting.parcel;
+  const exclusions: Area = setting.exclusions;
   const { spacing_m, azimuth_deg, margin_m, every, tie_spacing_m, unwalked } = setting.lines;
   const survey = openLines(parcel, exclusions, { spacingM: spacing_m, azimuthDeg: azimuth_deg, marginM: margin_m, every, firstLine: 1 });
   const ties = tie_spacing_m > 0

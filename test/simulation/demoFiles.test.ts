@@ -9,6 +9,17 @@ import { parseCsv } from '../../src/table/parseCsv.js';
 const FOLDER = join(import.meta.dirname, '../../fixtures/demo');
 const SEEDS = Array.from({ length: 40 }, (_, i) => i + 1);
 
+function near(seed: number): boolean {
+  const { scenario } = demoScenario(seed);
+  return scenario.scrap.some((piece) => Math.hypot(...piece.moment_am2) >= 60
+    && scenario.casings.some((casing) => Math.hypot(casing.at[0] - piece.at[0], casing.at[1] - piece.at[1]) <= 10));
+}
+
+function pair(seed: number): boolean {
+  const { wells } = demoScenario(seed);
+  return wells.some((a, i) => wells.some((b, k) => k > i && Math.hypot(a.at[0] - b.at[0], a.at[1] - b.at[1]) <= 30));
+}
+
 describe('the files in fixtures/demo', () => {
   it('are what the generator makes of the demo\'s seed, byte for byte', async () => {
     const files = await demoFiles(DEMO_SEED);
@@ -70,15 +81,6 @@ describe('demoScenario', () => {
   });
 
   it('has strong scrap near a casing in some seeds and a close pair of wells in some', () => {
-    const near = (seed: number): boolean => {
-      const { scenario } = demoScenario(seed);
-      return scenario.scrap.some((piece) => Math.hypot(...piece.moment_am2) >= 60
-        && scenario.casings.some((casing) => Math.hypot(casing.at[0] - piece.at[0], casing.at[1] - piece.at[1]) <= 10));
-    };
-    const pair = (seed: number): boolean => {
-      const { wells } = demoScenario(seed);
-      return wells.some((a, i) => wells.some((b, k) => k > i && Math.hypot(a.at[0] - b.at[0], a.at[1] - b.at[1]) <= 30));
-    };
     for (const has of [near, pair]) {
       const share = SEEDS.filter(has).length / SEEDS.length;
       expect(share).toBeGreaterThan(0.2);

@@ -2,6 +2,18 @@ import { describe, expect, it } from 'vitest';
 import { Random } from '../../src/numerics/random.js';
 import { Wander } from '../../src/simulation/wander.js';
 
+/** Mean square of how far a walk has gone from its start. */
+function spread(steps: number, stepS: number): number {
+  let sum = 0;
+  for (let k = 0; k < 4000; k++) {
+    const walk = new Wander(new Random(k), 1, 10);
+    const start = walk.value;
+    for (let i = 0; i < steps; i++) walk.step(stepS);
+    sum += (walk.value - start) ** 2;
+  }
+  return sum / 4000;
+}
+
 describe('Wander', () => {
   it('has the stated spread and forgets by e^(−t/τ)', () => {
     const walk = new Wander(new Random(5), 0.3, 60);
@@ -18,16 +30,6 @@ describe('Wander', () => {
   });
 
   it('steps over a pause as far as many small steps do', () => {
-    const spread = (steps: number, stepS: number): number => {
-      let sum = 0;
-      for (let k = 0; k < 4000; k++) {
-        const walk = new Wander(new Random(k), 1, 10);
-        const start = walk.value;
-        for (let i = 0; i < steps; i++) walk.step(stepS);
-        sum += (walk.value - start) ** 2;
-      }
-      return sum / 4000;
-    };
     // Structure function of the process: 2σ²(1 − e^(−t/τ)).
     const wanted = 2 * (1 - Math.exp(-0.5));
     expect(spread(1, 5) / wanted).toBeCloseTo(1, 0.9);
