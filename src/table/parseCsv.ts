@@ -12,11 +12,11 @@ const DELIMITERS = [',', ';', '\t'] as const;
  */
 export function parseCsv(bytes: Uint8Array | string, source: string): TextTable {
   const decoded = typeof bytes === 'string' ? { text: bytes, notes: [] } : decodeText(bytes, source);
-  const text = decoded.text.charCodeAt(0) === 0xfeff ? decoded.text.slice(1) : decoded.text;
+  const text = withLineFeeds(decoded.text.charCodeAt(0) === 0xfeff ? decoded.text.slice(1) : decoded.text);
   if (text.trim() === '') {
     throw new UserError({ code: 'file_empty', where: source, found: 'no text', wanted: 'a header row and rows of values' });
   }
-  const { data, errors } = Papa.parse<string[]>(text, { delimiter: delimiterOf(text), newline: newlineOf(text), header: false });
+  const { data, errors } = Papa.parse<string[]>(text, { delimiter: delimiterOf(text), newline: '\n', header: false });
   const all = data.filter(cells => !isBlank(cells));
   const quote = errors.find(error => error.type === 'Quotes');
   if (quote) {
@@ -73,7 +73,7 @@ function isBlank(cells: readonly string[]): boolean {
 /** The separator that divides the header into most names; a comma where there is none. */
 function delimiterOf(text: string): string {
   const start = text.search(/\S/);
-  const end = text.slice(start).search(/[\r\n]/);
+  const end = text.slice(start).indexOf('\n');
   const header = text.slice(start, end < 0 ? text.length : start + end).replace(/"(?:[^"]|"")*"/g, '');
   let best: string = ',';
   let most = 0;
@@ -84,9 +84,7 @@ function delimiterOf(text: string): string {
   return best;
 }
 
-/** Told rather than left to the parser, which guesses from the first megabyte with a rule of its own. */
-function newlineOf(text: string): '\r\n' | '\n' | '\r' {
-  const lf = text.indexOf('\n');
-  if (lf < 0) return text.includes('\r') ? '\r' : '\n';
-  return lf > 0 && text.charCodeAt(lf - 1) === 13 ? '\r\n' : '\n';
+/** Every kind of line end as a line feed, since loggers and hand edits mix them in one file. */
+function withLineFeeds(text: string): string {
+  return text.includes('\r') ? text.replace(/\r\n?/g, '\n') : text;
 }

@@ -8,6 +8,7 @@ import { GeometryType } from 'flatgeobuf/lib/mjs/flat-geobuf/geometry-type.js';
 import { Geometry as GeometryTable } from 'flatgeobuf/lib/mjs/flat-geobuf/geometry.js';
 import { Header } from 'flatgeobuf/lib/mjs/flat-geobuf/header.js';
 import type { Crs } from '../geodesy/types.js';
+import { wktOf } from '../geodesy/wktOf.js';
 import { cellValue } from './cellValue.js';
 import { checkLayer } from './checkLayer.js';
 import { hilbertOf } from './hilbert.js';
@@ -85,10 +86,12 @@ function column(builder: Builder, field: Field): number {
 function crsTable(builder: Builder, crs: Crs): number {
   const org = builder.createString('EPSG');
   const name = builder.createString(crs.name);
+  const wkt = builder.createString(wktOf(crs));
   CrsTable.startCrs(builder);
   CrsTable.addOrg(builder, org);
   CrsTable.addCode(builder, crs.epsg);
   CrsTable.addName(builder, name);
+  CrsTable.addWkt(builder, wkt);
   return CrsTable.endCrs(builder);
 }
 

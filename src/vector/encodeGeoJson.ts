@@ -27,6 +27,7 @@ export function encodeGeoJson(layer: Layer, options: Pick<GeoJsonOptions, 'toWgs
   const move = ([x, y]: Position): Position => {
     const [lon, lat] = layer.crs.kind === 'geographic' ? [x!, y!] : layer.crs.inverse(x!, y!);
     const [lonDeg, latDeg] = toWgs84(lon, lat);
+    if (!Number.isFinite(lonDeg) || !Number.isFinite(latDeg)) throw new Error(`layer ${layer.name}: ${x}, ${y} has no longitude and latitude`);
     return [roundTo(lonDeg, decimals), roundTo(latDeg, decimals)];
   };
   const geometries = layer.features.map((feature, index) => {

@@ -45,8 +45,8 @@ function parse(bytes: Uint8Array, source: string): { header: HeaderMeta; feature
     while (at < bytes.length) {
       const length = buffer.readUint32(at) + 4;
       if (at + length > bytes.length) throw new RangeError('the last feature is cut off');
-      buffer.setPosition(at);
-      features.push(featureOf(FeatureTable.getSizePrefixedRootAsFeature(buffer), header));
+      // A copy of its own starts on a whole double; in the file a feature may lie anywhere, and its coordinates with it.
+      features.push(featureOf(FeatureTable.getSizePrefixedRootAsFeature(new ByteBuffer(bytes.slice(at, at + length))), header));
       at += length;
     }
     if (header.featuresCount > 0 && features.length !== header.featuresCount) throw new RangeError(`${features.length} features, not ${header.featuresCount} as its header says`);

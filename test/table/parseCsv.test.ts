@@ -21,6 +21,7 @@ describe('parseCsv', () => {
     ['plain', 'a,b\n1,2\n3,4\n', ['a', 'b'], [['1', '2'], ['3', '4']]],
     ['no newline at the end', 'a,b\n1,2', ['a', 'b'], [['1', '2']]],
     ['CRLF', 'a,b\r\n1,2\r\n3,4\r\n', ['a', 'b'], [['1', '2'], ['3', '4']]],
+    ['line ends of every kind in one file', 'a,b\r\n1,2\n3,4\r5,6\r\n', ['a', 'b'], [['1', '2'], ['3', '4'], ['5', '6']]],
     ['lone CR', 'a,b\r1,2\r', ['a', 'b'], [['1', '2']]],
     ['byte-order mark', '\uFEFFa,b\n1,2\n', ['a', 'b'], [['1', '2']]],
     ['tabs', 'a\tb\n1\t2,5\n', ['a', 'b'], [['1', '2,5']]],

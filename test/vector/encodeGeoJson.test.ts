@@ -81,6 +81,10 @@ describe('encodeGeoJson', () => {
     expect(shifted.bbox).toEqual([-79.8735, 39.5, -79.8735, 39.5]);
   });
 
+  it('does not write a place that got lost on the way to WGS 84', () => {
+    expect(() => encodeGeoJson(layerOf('Point'), { toWgs84: lon => [lon, NaN] })).toThrow('no longitude');
+  });
+
   it('writes a layer of nothing without a bbox', () => {
     const empty = parse(encodeGeoJson(layerOf('Point', []), { toWgs84: asItIs }));
     expect(empty.features).toEqual([]);
