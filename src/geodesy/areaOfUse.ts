@@ -1,4 +1,4 @@
-import { Geodesic } from 'geographiclib-geodesic';
+import geographiclib from 'geographiclib-geodesic';
 import type { Bounds, Crs } from './types.js';
 
 /** EPSG gives its areas to a hundredth of a degree; what lies within half of that is inside. */
@@ -26,7 +26,7 @@ function kmOutside({ west, south, east, north }: Bounds, lonDeg: number, latDeg:
   const width = east >= west ? east - west : east - west + 360;
   const lon = (((lonDeg - west) % 360) + 360) % 360;
   if (lon <= width && latDeg >= south && latDeg <= north) return 0;
-  const km = (x: number, y: number): number => Geodesic.WGS84.Inverse(latDeg, lonDeg, y, west + x).s12! / 1000;
+  const km = (x: number, y: number): number => geographiclib.Geodesic.WGS84.Inverse(latDeg, lonDeg, y, west + x).s12! / 1000;
   // The nearest point lies on one of the four sides.
   const near = lon <= width ? [lon] : [];
   return Math.min(
