@@ -1,0 +1,114 @@
+/**
+ * One level of the multigrid solver: an elastic plate under tension on a rectangle of nodes with free edges.
+ *
+ * The plate's energy, per cell of size h and times h⁴, is
+ *   α (δxx² + 2 δxy² + δyy²) + τ (δx² + δy²)
+ * with plain differences δ, summed only where all nodes of a difference exist. Its gradient is the 13-point operator in the
+ * middle (20, −8, 2, 1 for α = 1, τ = 0) and the free edge of a plate at the rim, without any further condition.
+ */
+export interface PlateLevel {
+  readonly width: number;
+  readonly height: number;
+  /** Weight of curvature. */
+  readonly alpha: number;
+  /** Weight of slope. */
+  readonly tau: number;
+  readonly xAxis: AxisTables;
+  readonly yAxis: AxisTables;
+  /** One over the diagonal (penalty included); 0 where the node is held. Row-major like all that follows. */
+  readonly inverseDiagonal: Float64Array;
+  /** Added to the diagonal: how strongly data on a finer level hold the node. */
+  readonly penalty: Float64Array;
+  /** Correction that is sought, right side, residual. */
+  readonly correction: Float64Array;
+  readonly right: Float64Array;
+  readonly scratch: Float64Array;
+}
+
+/** Rows of the one-dimensional matrices δᵀδ (first differences) and δ²ᵀδ² (second differences), five entries a node. */
+export interface AxisTables {
+  readonly first: Float64Array;
+  readonly second: Float64Array;
+}
+
+/** Entries of a table row: offsets −2 … 2. */
+const BAND = 5;
+
+export function axisTables(count: number): AxisTables {
+  return { first: gram(count, [-1, 1]), second: gram(count, [1, -2, 1]) };
+}
+
+/** Band of DᵀD, where D takes the difference `stencil` at every place where it fits. */
+function gram(count: number, stencil: readonly number[]): Float64Array {
+  const band = new Float64Array(count * BAND);
+  for (let start = 0; start + stencil.length <= count; start++) {
+    for (let a = 0; a < stencil.length; a++) {
+      for (let b = 0; b < stencil.length; b++) band[(start + a) * BAND + (b - a) + 2]! += stencil[a]! * stencil[b]!;
+    }
+  }
+  return band;
+}
+
+/** One entry of the operator's row of node (i, j): its weight on node (i + dx, j + dy). */
+export function plateWeight({ alpha, tau, xAxis, yAxis }: PlateLevel, [i, j]: readonly [number, number], [dx, dy]: readonly [number, number]): number {
+  const x = i * BAND + dx + 2;
+  const y = j * BAND + dy + 2;
+  let weight = 2 * alpha * xAxis.first[x]! * yAxis.first[y]!;
+  if (dy === 0) weight += alpha * xAxis.second[x]! + tau * xAxis.first[x]!;
+  if (dx === 0) weight += alpha * yAxis.second[y]! + tau * yAxis.first[y]!;
+  return weight;
+}
+
+/** The operator at one node, by its tables: for the rim, where the 13 points are not all there. */
+export function plateAtRim(level: PlateLevel, z: Float64Array, k: number): number {
+  const { width, height, alpha, tau, xAxis, yAxis } = level;
+  const j = (k / width) | 0;
+  const i = k - j * width;
+  let sum = 0;
+  const top = Math.max(-2, -j);
+  const bottom = Math.min(2, height - 1 - j);
+  const left = Math.max(-2, -i);
+  const right = Math.min(2, width - 1 - i);
+  for (let d = left; d <= right; d++) {
+    const x = i * BAND + d + 2;
+    sum += (alpha * xAxis.second[x]! + tau * xAxis.first[x]!) * z[k + d]!;
+  }
+  for (let d = top; d <= bottom; d++) {
+    const y = j * BAND + d + 2;
+    sum += (alpha * yAxis.second[y]! + tau * yAxis.first[y]!) * z[k + d * width]!;
+    const across = 2 * alpha * yAxis.first[y]!;
+    if (across === 0) continue;
+    for (let e = left; e <= right; e++) sum += across * xAxis.first[i * BAND + e + 2]! * z[k + d * width + e]!;
+  }
+  return sum;
+}
+
+export function plateLevel(size: { width: number; height: number; alpha: number; tau: number }): PlateLevel {
+  const count = size.width * size.height;
+  return {
+    ...size,
+    xAxis: axisTables(size.width),
+    yAxis: axisTables(size.height),
+    inverseDiagonal: new Float64Array(count),
+    penalty: new Float64Array(count),
+    correction: new Float64Array(count),
+    right: new Float64Array(count),
+    scratch: new Float64Array(count),
+  };
+}
+
+/** Fills the inverse diagonal from the penalties; nodes in `held` get 0. */
+export function fillDiagonal(level: PlateLevel, held: Int32Array): void {
+  const { width, height, alpha, tau, inverseDiagonal, penalty } = level;
+  const inner = 20 * alpha + 4 * tau;
+  for (let j = 0, k = 0; j < height; j++) {
+    const rimRow = j < 2 || j >= height - 2;
+    for (let i = 0; i < width; i++, k++) {
+      const rim = rimRow || i < 2 || i >= width - 2;
+      const diagonal = (rim ? plateWeight(level, [i, j], [0, 0]) : inner) + penalty[k]!;
+      // A lone node has no energy at all; any number will do, since its right side is zero.
+      inverseDiagonal[k] = diagonal > 0 ? 1 / diagonal : 1;
+    }
+  }
+  for (let n = 0; n < held.length; n++) inverseDiagonal[held[n]!] = 0;
+}

@@ -1,0 +1,43 @@
+import type { Bounds } from '../geodesy/types.js';
+import type { Grid } from '../raster/types.js';
+
+/** Values at places, flat columns of the same length: frame metres, and nT as a rule. NaN values and places are left out. */
+export interface Samples {
+  readonly x: ArrayLike<number>;
+  readonly y: ArrayLike<number>;
+  readonly value: ArrayLike<number>;
+}
+
+/** A grid of values with what it rests on. It is a Grid, so it goes wherever one goes. */
+export interface GridResult extends Grid {
+  /** Distance beyond which no cell is filled, metres, from the cell's centre to the nearest reading. */
+  readonly reachM: number;
+  /** Line spacing (or mean distance of readings) that cell, reach and tension were judged by, metres. */
+  readonly spacingM: number;
+  readonly tension: number;
+  /** Cells with a value. */
+  readonly filled: number;
+  /** Cells that hold readings. */
+  readonly pinned: number;
+  /** Steps of the solver on the finest grid. */
+  readonly iterations: number;
+  /** Estimate of the largest error left by the solver, in the data's unit and as a share of the data's range. */
+  readonly remaining: number;
+  readonly remainingShare: number;
+  readonly converged: boolean;
+  /** For the report: what was done, with numbers. */
+  readonly notes: readonly string[];
+  /** What the user has to know. */
+  readonly warnings: readonly string[];
+}
+
+/** Cells of a grid before it has values. */
+export interface GridFrame {
+  readonly width: number;
+  readonly height: number;
+  readonly west: number;
+  readonly north: number;
+  readonly cellM: number;
+}
+
+export type { Bounds };
