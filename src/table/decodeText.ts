@@ -1,11 +1,5 @@
 import { UserError } from '../errors.js';
-
-/**
- * Windows-1252 from 0x80 to 0x9f, with the five unused places left as they are (WHATWG Encoding Standard, index
- * windows-1252). Node 20 decodes that label as Latin-1, which leaves control characters here; where a runtime decodes
- * it rightly, nothing is left to replace.
- */
-const WINDOWS_1252 = '€\u0081‚ƒ„…†‡ˆ‰Š‹Œ\u008dŽ\u008f\u0090‘’“”•–—˜™š›œ\u009džŸ';
+import { decodeWindows1252 } from './decodeWindows1252.js';
 
 export interface DecodedText {
   readonly text: string;
@@ -35,7 +29,7 @@ export function decodeText(bytes: Uint8Array, source: string): DecodedText {
   } catch {
     // The only failure of a fatal decoder is invalid UTF-8.
     return {
-      text: new TextDecoder('windows-1252').decode(bytes).replace(/[\u0080-\u009f]/g, letter => WINDOWS_1252[letter.charCodeAt(0) - 0x80]!),
+      text: decodeWindows1252(bytes),
       notes: [`${source} is not UTF-8; it was read as Windows-1252. Check names with accents, or save it as UTF-8.`],
     };
   }

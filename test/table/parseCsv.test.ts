@@ -27,6 +27,7 @@ describe('parseCsv', () => {
     ['tabs', 'a\tb\n1\t2,5\n', ['a', 'b'], [['1', '2,5']]],
     ['semicolons', 'a;b\n1;2,5\n', ['a', 'b'], [['1', '2,5']]],
     ['quoted separator and quote', 'a,b\n"x, y","say ""so"""\n', ['a', 'b'], [['x, y', 'say "so"']]],
+    ['seconds of arc, whose quotation mark stands inside a cell', 'lat,b\n40°18\'07",2\n', ['lat', 'b'], [['40°18\'07"', '2']]],
     ['quoted newline', 'a,b\n"x\ny",2\n', ['a', 'b'], [['x\ny', '2']]],
     ['separator in a quoted name', '"a;x;y",b\n1,2\n', ['a;x;y', 'b'], [['1', '2']]],
     ['names with spaces', ' a , b \n1,2\n', ['a', 'b'], [['1', '2']]],

@@ -122,6 +122,10 @@ describe('reading a Shapefile', () => {
     const files = polygonFiles();
     expect(await complaintOf(readVector('x.shp', memoryFiles({ ...files, 'x.shp': damage(files['x.shp']!) })))).toMatchObject({ code, where: 'x.shp' });
   });
+  it('refuses rows that do not fit the shapes', async () => {
+    const other = filesOf(layerOf('Polygon', layerOf('Polygon').features.slice(0, 2)));
+    expect(await complaintOf(readVector('x.shp', memoryFiles({ ...polygonFiles(), 'x.dbf': other['x.dbf']! })))).toMatchObject({ code: 'file_unreadable', where: 'x.shp' });
+  });
   it('refuses an encoding that it does not know', async () => {
     const said = await complaintOf(readVector('x.shp', memoryFiles({ ...polygonFiles(), 'x.cpg': 'KLINGON' })));
     expect(said).toMatchObject({ code: 'file_unreadable', where: 'x.cpg' });
