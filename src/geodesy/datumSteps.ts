@@ -1,4 +1,5 @@
 import { ELLIPSOIDS, fromGeocentric, toGeocentric } from './ellipsoid.js';
+import { UNSTATED_ACCURACY_M } from './gridIdentity.js';
 import { applyHelmert, ITRF2014_TO_ITRF2020, ITRF2014_TO_NAD83_2011, reverseHelmert, type Xyz } from './helmert.js';
 import { meanShiftAt } from './meanShift.js';
 import { reverseOffsetAt } from './offsetTables.js';
@@ -21,7 +22,12 @@ export function gridStep(grid: ShiftGrid, reverse: boolean): Step {
   const name = reverse ? `${grid.name}, reversed` : grid.name;
   return (lonDeg, latDeg) => {
     const offset = reverse ? reverseOffsetAt(grid, lonDeg, latDeg) : grid.offsetAt(lonDeg, latDeg);
-    return offset && { lonDeg: lonDeg + offset[0], latDeg: latDeg + offset[1], name, sdM: grid.accuracyM, sharedSdM: 0 };
+    if (offset === null) return null;
+    const stated = grid.statedAt?.(lonDeg, latDeg) ?? true;
+    return {
+      lonDeg: lonDeg + offset[0], latDeg: latDeg + offset[1], name: stated ? name : `${name}, beyond its area of use`,
+      sdM: stated ? grid.accuracyM : Math.max(grid.accuracyM, UNSTATED_ACCURACY_M), sharedSdM: 0,
+    };
   };
 }
 

@@ -21,9 +21,9 @@ const STATED: readonly (readonly [RegExp, number])[] = [
   [/alaska/i, 0.5],
   [/hawaii/i, 0.2],
 ];
-/** Where nothing is stated: that of a national grid in NTv2 form (EPSG:1313), the widest of the published ones. */
-const UNSTATED_M = 1.5;
+/** Metres, where nothing is stated: that of a national grid in NTv2 form (EPSG:1313), the widest of the published ones. */
+export const UNSTATED_ACCURACY_M = 1.5;
 
 export function gridAccuracyM(...texts: readonly string[]): number {
-  return STATED.find(([pattern]) => texts.some((text) => pattern.test(text)))?.[1] ?? UNSTATED_M;
+  return STATED.find(([pattern]) => texts.some((text) => pattern.test(text)))?.[1] ?? UNSTATED_ACCURACY_M;
 }

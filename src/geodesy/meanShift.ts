@@ -1,3 +1,4 @@
+import { inLower48 } from './lower48.js';
 import type { Bounds } from './types.js';
 
 /** A regional mean of NAD27's three-parameter shift. */
@@ -33,7 +34,7 @@ const AXIS_SHARE = 1 / Math.sqrt(3);
  * the Yukon and along the panhandle, Ontario at the Ottawa, roughly (from memory): any of them is within its error there.
  */
 const REGIONS: readonly Region[] = [
-  ...[[-168.26, 54.34, -141, 71.4], [-141, 58, -135, 60.3], [-137, 54.34, -131, 58]].map((part) =>
+  ...[[-168.26, 54.34, -141, 71.4], [-141, 59.2, -135, 60.3], [-137, 57, -133.2, 59.2], [-137, 54.34, -131, 57]].map((part) =>
     region('Alaska mainland', 1176, [-5, 135, 172], 12, part as [number, number, number, number])),
   region('Aleutian Islands east', 1249, [-2, 152, 149], 15, [-178.3, 51.54, -164.84, 54.34]),
   region('Aleutian Islands west', 1250, [2, 204, 105], 18, [172.42, 51.3, 179.86, 53.07]),
@@ -69,30 +70,6 @@ function region(name: string, epsg: number, [dxM, dyM, dzM]: [number, number, nu
     name: `mean ${name} (TR8350.2, EPSG:${epsg})`, dxM, dyM, dzM,
     sharedSdM: Math.max(accuracyM * AXIS_SHARE, MEAN_SHIFT_LEAST_SD_M), area: { west, south, east, north },
   };
-}
-
-/**
- * The 48 states' borders with Canada and Mexico, longitude against latitude, drawn to some 20 km, from memory: beside a
- * border either neighbour's mean is within its error.
- */
-const NORTH: readonly (readonly [number, number])[] = [
-  [-125, 48.4], [-123.3, 48.4], [-123.1, 49], [-95.2, 49], [-94.6, 48.7], [-93, 48.6], [-91.5, 48.07], [-89.6, 48], [-88.4, 48.3], [-84.9, 46.9],
-  [-84.5, 46.45], [-83.5, 45.9], [-82.5, 45.3], [-82.4, 43], [-82.9, 42.3], [-82.7, 41.7], [-81.2, 42.2], [-79, 42.85], [-79.05, 43.45], [-76.8, 43.63],
-  [-76.3, 44.2], [-75, 44.98], [-71.5, 45], [-70.9, 45.3], [-70.3, 45.9], [-70, 46.7], [-69.2, 47.45], [-68.3, 47.35], [-67.8, 47.07], [-67.7, 45.6], [-66.9, 44.8], [-66.8, 44.4],
-];
-const SOUTH: readonly (readonly [number, number])[] = [
-  [-125, 32.53], [-117.1, 32.53], [-114.8, 32.5], [-111, 31.33], [-108.2, 31.33], [-106.5, 31.78], [-104.5, 29.6], [-103.2, 29], [-102.5, 29.7], [-101, 29.6],
-  [-99.5, 27.5], [-97.2, 25.9], [-96.9, 25.9], [-83, 24.4], [-79.9, 24.4], [-79.8, 27.5], [-75, 33], [-66.8, 40],
-];
-
-function inLower48(lonDeg: number, latDeg: number): boolean {
-  return lonDeg >= NORTH[0]![0] && lonDeg <= NORTH.at(-1)![0] && latDeg <= along(NORTH, lonDeg) && latDeg >= along(SOUTH, lonDeg);
-}
-
-function along(line: readonly (readonly [number, number])[], lonDeg: number): number {
-  const next = Math.max(line.findIndex(([lon]) => lon >= lonDeg), 1);
-  const [[lonA, latA], [lonB, latB]] = [line[next - 1]!, line[next]!];
-  return latA + ((latB - latA) * (lonDeg - lonA)) / (lonB - lonA);
 }
 
 /**

@@ -29,7 +29,7 @@ export function buildProjection(row: RegistryRow): Projection {
     forward(lonDeg, latDeg) {
       checkedDegrees(where, lonDeg, latDeg);
       const { x, y } = guarded(() => kernel.forward({ x: lonDeg * RAD, y: latDeg * RAD }));
-      if (!Number.isFinite(x) || !Number.isFinite(y)) throw unprojectable(where, `longitude ${lonDeg}, latitude ${latDeg}`);
+      if (!(Math.abs(x) <= FARTHEST_M && Math.abs(y) <= FARTHEST_M)) throw unprojectable(where, `longitude ${lonDeg}, latitude ${latDeg}`);
       return [x, y];
     },
     inverse(eastM, northM) {
@@ -42,6 +42,8 @@ export function buildProjection(row: RegistryRow): Projection {
   };
 }
 
+/** Over twice the earth's circumference: only a point that a projection throws to infinity (a cone's far pole) lies beyond. */
+const FARTHEST_M = 1e8;
 /** 90° with room for rounding at a pole. */
 const LATITUDE_LIMIT = 90 + 1e-9;
 const OUTSIDE = { x: NaN, y: NaN };

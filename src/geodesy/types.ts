@@ -70,6 +70,8 @@ export interface ShiftGrid {
   readonly to: string;
   /** Accuracy published for it, metres. */
   readonly accuracyM: number;
+  /** Where that accuracy is stated; absent, all over the grid. Beyond it the grid still moves a place, with the error of `UNSTATED_ACCURACY_M`. */
+  statedAt?(lonDeg: number, latDeg: number): boolean;
   /** What to add to longitude and latitude in degrees at a place on `from`; null outside the grid and where it has no value. */
   offsetAt(lonDeg: number, latDeg: number): readonly [number, number] | null;
 }
