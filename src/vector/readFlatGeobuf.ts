@@ -60,7 +60,9 @@ function parse(bytes: Uint8Array, source: string): { header: HeaderMeta; feature
 
 function featureOf(table: FeatureTable, header: HeaderMeta): InputFeature {
   if (table.columnsLength() > 0) throw new RangeError('columns that change from feature to feature');
-  const shape = table.geometry();
+  const stored = table.geometry();
+  // An empty geometry has neither positions nor parts: no place, as for one that is not there.
+  const shape = stored && stored.xyLength() + stored.partsLength() > 0 ? stored : null;
   const type = shape && (header.geometryType === GeometryType.Unknown ? shape.type() : header.geometryType);
   if (type !== null && type > GeometryType.GeometryCollection) throw new RangeError(`a geometry of type ${GeometryType[type]}`);
   return {
