@@ -6,6 +6,7 @@ import { alignments } from './alignment.js';
 import { linearAnomaly, sourceAnomaly, type Draft } from './describe.js';
 import { noiseModel, whiteNoise } from './noise.js';
 import { refine, type Refined } from './refine.js';
+import type { Entry } from './sourceMap.js';
 import { searchSources } from './search.js';
 import { surveyOf, type SurveyOptions } from './survey.js';
 import type { Anomalies, Anomaly } from './types.js';
@@ -27,7 +28,10 @@ export const DELINEATE_DEFAULTS: DelineateOptions = Object.freeze({
 
 /** Rounds of peak, fit and subtraction; sources that overlap need two or three. */
 const MAX_ROUNDS = 8;
+/** Every source is fitted once more with its neighbours in place, and again with them refined. */
+const SWEEPS = 2;
 const LOCAL_REACHES = 10;
+const KINDS = ['pole', 'dipole', 'line'] as const;
 /** Fewer blocks than this hold no source and its noise. */
 const LEAST_BLOCKS = 12;
 /** Where known sources make more than this share of the residual's spread, a block tells nothing about noise. */
@@ -67,8 +71,14 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const quiet = QUIET_SHARE * rough.correlatedSdNT;
   const noise = noiseModel(survey, left, { whiteSdNT, skip: Uint8Array.from(map.made, (made) => (Math.abs(made) > quiet ? 1 : 0)) });
 
-  let refined: Refined[] = [];
-  for (let sweep = 0; sweep < 2; sweep++) refined = [...map.entries].map((entry) => refine(map, entry, noise));
+  const known = new Map<Entry, Refined>();
+  for (let sweep = 0; sweep < SWEEPS; sweep++) {
+    for (const entry of [...map.entries]) {
+      const refined = refine(map, entry, { noise, kinds: KINDS, before: known.get(entry) });
+      known.set(entry, refined);
+    }
+  }
+  const refined = map.entries.map((entry) => known.get(entry)!);
   const context = { map, survey, readings, residual, site, noise, settings, localRadiusM };
   const drafts: Draft[] = refined.map((one) => sourceAnomaly(one, context));
   const pins = drafts.map(({ anomaly }) => ({ x: anomaly.x, y: anomaly.y, sdM: anomaly.posSdM }));

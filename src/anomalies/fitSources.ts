@@ -1,4 +1,4 @@
-import { cholesky, choleskyInverse, choleskySolve } from '../numerics/cholesky.js';
+import { choleskyInverse, choleskySolve, tryCholesky } from '../numerics/cholesky.js';
 import { fieldOfSources, type FieldOfSources } from './sourceField.js';
 import { withValues, type Source } from './sources.js';
 import { STATES, smooth, whiten, type Walk } from './wander.js';
@@ -65,7 +65,7 @@ const LITTLE = 0.01;
 /** A collar's pole as a share of the top's: joints of one string differ by some tenths (from memory of published casing models). */
 const COLLAR_SHARE = 0.3;
 /** The loose prior on height: this many sensor–source distances about the expected top. */
-const HEIGHT_PRIOR = 2;
+const HEIGHT_PRIOR = 1;
 const MAX_LAMBDA = 1e8;
 
 /** Standard deviation and mean of the prior on every parameter. */
@@ -133,8 +133,12 @@ export function fitSources(window: Window, start: readonly Source[], options: Fi
       iterations++;
       const damped = normal.slice();
       for (let k = 0; k < size; k++) damped[k * size + k]! += k < PLANE ? 0 : lambda * normal[k * size + k]!;
-      cholesky(damped, size);
-      const step = choleskySolve(damped, size, right);
+      const step = solveScaled(damped, size, right);
+      if (!step) {
+        lambda *= 10;
+        converged = lambda > MAX_LAMBDA;
+        continue;
+      }
       const left = whitened.columns.slice(0, n);
       for (let k = 0; k < size; k++) {
         const column = (k + 1) * n;
@@ -243,10 +247,8 @@ function cost(window: Window, { sources, plane, states, model }: State, { walk, 
 function finish(window: Window, state: State & { iterations: number; converged: boolean }, size: number): Fit {
   const n = window.count;
   const { whitened, normal, right, prior } = linearise(window, state, size);
-  const factor = normal.slice();
-  cholesky(factor, size);
-  const covariance = choleskyInverse(factor, size);
-  const step = choleskySolve(factor, size, right);
+  const step = solveScaled(normal, size, right) ?? new Float64Array(size);
+  const covariance = inverseScaled(normal, size);
   let chi2 = 0;
   for (let i = 0; i < n; i++) {
     let left = whitened.columns[i]!;
@@ -270,10 +272,32 @@ function spread(normal: Float64Array, size: number, random: readonly number[], p
   if (m === 0) return 0;
   const part = new Float64Array(m * m);
   for (let r = 0; r < m; r++) for (let c = 0; c < m; c++) part[r * m + c] = normal[random[r]! * size + random[c]!]!;
-  cholesky(part, m);
+  // The priors are part of it, so it is positive definite but for rounding; then the strengths tell nothing anyway.
+  if (!tryCholesky(part, m)) return Infinity;
   let sum = 0;
   for (let r = 0; r < m; r++) sum += 2 * Math.log(part[r * m + r]!) - Math.log(precision[random[r]!]!);
   return sum;
+}
+
+/** Parameters differ by powers of ten (metres, A·m): each is scaled to a unit diagonal before the factor. */
+function scaled(normal: Float64Array, size: number): { factor: Float64Array; scale: Float64Array } | null {
+  const scale = new Float64Array(size);
+  for (let k = 0; k < size; k++) scale[k] = 1 / Math.sqrt(normal[k * size + k]!);
+  const factor = normal.slice();
+  for (let r = 0; r < size; r++) for (let c = 0; c < size; c++) factor[r * size + c]! *= scale[r]! * scale[c]!;
+  return tryCholesky(factor, size) ? { factor, scale } : null;
+}
+
+function solveScaled(normal: Float64Array, size: number, right: Float64Array): Float64Array | null {
+  const done = scaled(normal, size);
+  return done && choleskySolve(done.factor, size, right.map((value, k) => value * done.scale[k]!)).map((value, k) => value * done.scale[k]!);
+}
+
+/** NaN throughout where the parameters cannot be told apart at all. */
+function inverseScaled(normal: Float64Array, size: number): Float64Array {
+  const done = scaled(normal, size);
+  if (!done) return new Float64Array(size * size).fill(NaN);
+  return choleskyInverse(done.factor, size).map((value, k) => value * done.scale[Math.floor(k / size)]! * done.scale[k % size]!);
 }
 
 function flatten(plane: Float64Array, sources: readonly Source[]): Float64Array {

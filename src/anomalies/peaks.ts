@@ -90,7 +90,7 @@ export function findPeaks(survey: Survey, high: Float64Array, { noise, threshold
     }
     if (largest) peaks.push({ block: i, x: blocks.x[i]!, y: blocks.y[i]!, heightNT: high[i]!, snr: size / noise[i]! });
   }
-  return peaks.sort((a, b) => b.snr - a.snr || a.block - b.block);
+  return peaks.toSorted((a, b) => b.snr - a.snr || a.block - b.block);
 }
 
 /** The strongest peaks of which none lies within `apartM` of a stronger one. */

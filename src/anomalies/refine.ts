@@ -1,6 +1,6 @@
 import type { NoiseModel } from '../detection/types.js';
 import { fitSources, type Fit, type Window } from './fitSources.js';
-import { bestFit } from './search.js';
+import { bestFit } from './bestFit.js';
 import type { Entry, SourceMap } from './sourceMap.js';
 import { placeOf, type Source } from './sources.js';
 import { startingPoints, type Kind } from './startingPoints.js';
@@ -11,20 +11,29 @@ export interface Refined {
   /** Fit of the best kind; the source is its first. */
   readonly fit: Fit;
   readonly window: Window;
-  /** Information criterion of each kind in place of this source, and without it, all on the same window. */
+  /** Information criterion of each kind in place of this source, and without it, all on the same window; ∞ where not tried. */
   readonly bic: Readonly<Record<Kind | 'none', number>>;
+  /** The source as each kind, to begin the next fit with. */
+  readonly asKind: Readonly<Record<Kind, Source | undefined>>;
 }
 
-export const KINDS: readonly Kind[] = ['pole', 'dipole', 'line'];
 /** Neighbours that are fitted along with a source, at most, and how near they have to lie, in windows. */
 const NEIGHBOURS = 3;
 const NEIGHBOUR_WINDOWS = 0.9;
+
+export interface RefineOptions {
+  readonly noise: NoiseModel;
+  /** Kinds that are tried in its place. */
+  readonly kinds: readonly Kind[];
+  /** What an earlier fit of the source found: it begins there. */
+  readonly before?: Refined | undefined;
+}
 
 /**
  * Fits a source once more, together with its neighbours, as each kind of source in turn. The map takes over the best fit,
  * neighbours included.
  */
-export function refine(map: SourceMap, entry: Entry, noise: NoiseModel): Refined {
+export function refine(map: SourceMap, entry: Entry, { noise, kinds, before }: RefineOptions): Refined {
   const { survey } = map;
   const [x, y] = placeOf(entry.source);
   const neighbours = map.near(x, y, NEIGHBOUR_WINDOWS * survey.windowM)
@@ -39,24 +48,30 @@ export function refine(map: SourceMap, entry: Entry, noise: NoiseModel): Refined
   const left: Window = { ...near, fixed: [], value: Float64Array.from(near.index, (i) => survey.blocks.value[i]! - map.made[i]! + (own.get(i) ?? 0)) };
   const peak = peakOf(left, entry.source);
   const fits: Partial<Record<Kind, Fit>> = {};
-  for (const kind of KINDS) {
-    const starts: Source[] = kind === entry.source.kind ? [entry.source] : startingPoints(left, kind, peak);
+  for (const kind of new Set([entry.source.kind as Kind, ...kinds])) {
+    const known = kind === entry.source.kind ? entry.source : before?.asKind[kind];
+    const starts: Source[] = known ? [known] : startingPoints(left, kind, peak);
     fits[kind] = bestFit(window, starts, others)!;
   }
-  const kind = KINDS.reduce((a, b) => (fits[b]!.bic < fits[a]!.bic ? b : a));
-  const fit = fits[kind]!;
+  const fit = Object.values(fits).reduce((a, b) => (b.bic < a.bic ? b : a));
   map.learn(window, fit);
   free.forEach((one, k) => map.move(one, fit.sources[k]!));
   const none = fitSources(window, others);
-  return { entry, fit, window, bic: { pole: fits.pole!.bic, dipole: fits.dipole!.bic, line: fits.line!.bic, none: none.bic } };
+  return {
+    entry, fit, window, bic: { pole: fits.pole?.bic ?? Infinity, dipole: fits.dipole?.bic ?? Infinity, line: fits.line?.bic ?? Infinity, none: none.bic },
+    asKind: { pole: fits.pole?.sources[0], dipole: fits.dipole?.sources[0], line: fits.line?.sources[0] },
+  };
 }
 
-/** Largest deflection that the source is to explain, near its place. */
+/** Largest deflection that the source is to explain, near its place or, failing that, in the window. */
 function peakOf(left: Window, source: Source): { x: number; y: number; heightNT: number } {
   const [x, y] = placeOf(source);
   let heightNT = 0;
-  for (let k = 0; k < left.count; k++) {
-    if (Math.hypot(left.x[k]! - x, left.y[k]! - y) < left.radiusM / 2 && Math.abs(left.value[k]!) > Math.abs(heightNT)) heightNT = left.value[k]!;
+  for (const radiusM of [left.radiusM / 2, Infinity]) {
+    for (let k = 0; k < left.count; k++) {
+      if (Math.hypot(left.x[k]! - x, left.y[k]! - y) < radiusM && Math.abs(left.value[k]!) > Math.abs(heightNT)) heightNT = left.value[k]!;
+    }
+    if (heightNT !== 0) break;
   }
   return { x, y, heightNT };
 }

@@ -1,8 +1,10 @@
 import type { NoiseModel } from '../detection/types.js';
+import { bestFit } from './bestFit.js';
 import { fitSources, type Fit, type Window } from './fitSources.js';
 import { aboveMedian, findPeaks, localNoise, thinPeaks, type Peak } from './peaks.js';
+import { refine } from './refine.js';
 import { SourceMap, type Entry } from './sourceMap.js';
-import { placeOf, type Source } from './sources.js';
+import { placeOf } from './sources.js';
 import { startingPoints, type Kind } from './startingPoints.js';
 import type { Survey } from './survey.js';
 
@@ -23,12 +25,13 @@ const MODEL_SHARE = 0.04;
 const LEFT_OF_SHIFT = 0.35;
 /** Two sources nearer to each other than this share of the reach cannot be told apart. */
 const APART_REACHES = 0.8;
+/** Neighbours that are fitted anew when a source is added beside them. */
+const SETTLE = 2;
 /** Peaks of one round lie this far apart, in reaches and in spacings: the weaker ones wait for the next round. */
 const ROUND_REACHES = 2;
 const ROUND_SPACINGS = 1.2;
-const KINDS: readonly Kind[] = ['pole', 'dipole', 'line'];
-/** Iterations after which the better start of a kind is told from the worse. */
-const FIRST_STEPS = 4;
+/** A line is never needed to explain what a few passes hear; whether it explains it better is asked at the end. */
+const KINDS: readonly Kind[] = ['pole', 'dipole'];
 
 /**
  * Finds sources one after the other: peaks of what is left along the passes, the strongest of each neighbourhood first;
@@ -74,19 +77,19 @@ function tryPeak(map: SourceMap, peak: Peak, noise: NoiseModel): Entry | null {
     const fit = bestFit(window, startingPoints(left, kind, peak));
     if (fit && (!best || fit.bic < best.bic)) best = fit;
   }
-  if (!best || best.bic > without.bic - GAIN) return null;
+  if (!best) return null;
+  const misfit = Math.max(1, best.chi2 / Math.max(1, best.count - best.parameters));
+  if (best.bic > without.bic - GAIN * misfit) return null;
   const source = best.sources[0]!;
   const [x, y] = placeOf(source);
   if (Math.hypot(x - peak.x, y - peak.y) > survey.windowM) return null;
   for (const other of map.near(x, y, APART_REACHES * survey.reachM)) if (other.source.kind !== 'line') return null;
   map.learn(window, best);
-  return map.add(source);
-}
-
-/** Of several starts the one that leads furthest down. */
-export function bestFit(window: Window, starts: readonly Source[], others: readonly Source[] = []): Fit | null {
-  const first = starts
-    .map((start) => fitSources(window, [start, ...others], { maxIterations: FIRST_STEPS }))
-    .sort((a, b) => a.bic - b.bic)[0];
-  return first ? fitSources(window, first.sources) : null;
+  const entry = map.add(source);
+  const neighbours = map.near(x, y, survey.windowM).filter((other) => other !== entry);
+  if (neighbours.length > 0) {
+    refine(map, entry, { noise, kinds: KINDS });
+    for (const other of neighbours.slice(0, SETTLE)) refine(map, other, { noise, kinds: KINDS });
+  }
+  return entry;
 }

@@ -1,25 +1,28 @@
 import { choleskySolve, tryCholesky } from '../numerics/cholesky.js';
-import { addDipole } from '../field/dipole.js';
 import { NT_PER_POLE } from '../field/pole.js';
 import type { Window } from './fitSources.js';
 import { dipole, line, pole, type Source, type Suspicion } from './sources.js';
 
 export type Kind = 'pole' | 'dipole' | 'line';
 
-/** Places that are tried lie this share of the reach, or of the line spacing, apart, out to so many spacings. */
+/**
+ * Places that are tried lie this share of the reach, or of the line spacing, apart, out to so many spacings; for dipoles
+ * and lines, which have more strengths to adapt, farther apart by `COARSER`.
+ */
 const STEP_REACHES = 0.35;
 const STEP_SPACINGS = 0.125;
 const OUT_SPACINGS = 0.8;
+const COARSER = 1.6;
 /** Distances below the sensor that are tried, in reaches. */
-const DISTANCES = [0.6, 0.85, 1.15, 1.6, 2.3] as const;
+const DISTANCES: Readonly<Record<Kind, readonly number[]>> = { pole: [0.6, 0.85, 1.2, 1.8], dipole: [0.6, 0.9, 1.4], line: [0.6, 0.9, 1.4] };
 /** Strikes that are tried for a line. */
-const STRIKES = 12;
+const STRIKES = 9;
 /** Blocks that a trial looks at, at most. */
-const TRIAL_BLOCKS = 90;
+const TRIAL_BLOCKS = 80;
 /** Two starts of one kind are taken: a source between two lines may look the same from either side of the nearer one. */
 const STARTS = 2;
 /** A strength beyond this many times what the peak would need at the reach is not believed. */
-const STRENGTH_PRIOR = 30;
+const STRENGTH_PRIOR = 10;
 
 interface Trial {
   readonly misfit: number;
@@ -42,23 +45,33 @@ export function startingPoints(window: Window, kind: Kind, peak: { readonly x: n
   const stride = Math.max(1, Math.floor(window.count / TRIAL_BLOCKS));
   const rows: number[] = [];
   for (let i = 0; i < window.count; i += stride) rows.push(i);
-  const step = Math.max(STEP_REACHES * reachM, STEP_SPACINGS * spacingM);
+  const step = Math.max(STEP_REACHES * reachM, STEP_SPACINGS * spacingM) * (kind === 'pole' ? 1 : COARSER);
   const out = Math.max(reachM, OUT_SPACINGS * spacingM);
   const half = Math.floor(out / step);
   const top = window.ceilingM;
   let mean = 0;
   for (const i of rows) mean += window.z[i]! / rows.length;
   const solve = leastSquares(window, rows);
+  const unit = window.unit;
+  const r = new Float64Array(3);
+  const from = (i: number, x: number, y: number, z: number) => {
+    r[0] = window.x[i]! - x;
+    r[1] = window.y[i]! - y;
+    r[2] = window.z[i]! - z;
+    return r;
+  };
   const trials: Trial[] = [];
-  for (const distance of DISTANCES) {
+  for (const distance of DISTANCES[kind]) {
     const z = Math.min(top, mean - distance * reachM);
     if (kind === 'line') {
-      for (let s = 0; s < STRIKES; s++) {
-        const azimuth = (s * Math.PI) / STRIKES;
+      for (let strike = 0; strike < STRIKES; strike++) {
+        const azimuth = (strike * Math.PI) / STRIKES;
+        const c = Math.cos(azimuth);
+        const s = Math.sin(azimuth);
         for (let k = -half; k <= half; k++) {
           const offset = k * step;
-          const { misfit, strengths } = solve((columns, j, i) => lineColumns(columns, j, [window.x[i]! - peak.x, window.y[i]! - peak.y, window.z[i]! - z], { offset, azimuth, u: window.unit }), 2);
-          trials.push({ misfit, x: offset * Math.cos(azimuth), y: -offset * Math.sin(azimuth), source: line([offset, azimuth, z], [strengths[0]!, strengths[1]!], suspicion) });
+          const { misfit, strengths } = solve((row, i) => lineRow(row, from(i, peak.x + offset * c, peak.y - offset * s, z), { c, s, unit }), 2);
+          trials.push({ misfit, x: offset * c, y: -offset * s, source: line([offset, azimuth, z], [strengths[0]!, strengths[1]!], suspicion) });
         }
       }
       continue;
@@ -70,18 +83,18 @@ export function startingPoints(window: Window, kind: Kind, peak: { readonly x: n
         const y = peak.y + b * step;
         const at = [x, y, z] as const;
         if (kind === 'pole') {
-          const { misfit, strengths } = solve((columns, j, i) => poleColumn(columns, j, [window.x[i]! - x, window.y[i]! - y, window.z[i]! - z], window.unit), 1);
+          const { misfit, strengths } = solve((row, i) => poleRow(row, from(i, x, y, z), unit), 1);
           trials.push({ misfit, x, y, source: pole(at, strengths[0]!, suspicion) });
         } else {
-          const { misfit, strengths } = solve((columns, j, i) => dipoleColumns(columns, j, [window.x[i]! - x, window.y[i]! - y, window.z[i]! - z], window.unit), 3);
+          const { misfit, strengths } = solve((row, i) => dipoleRow(row, from(i, x, y, z), unit), 3);
           trials.push({ misfit, x, y, source: dipole(at, [strengths[0]!, strengths[1]!, strengths[2]!], suspicion) });
         }
       }
     }
   }
-  trials.sort((p, q) => p.misfit - q.misfit);
-  const chosen = trials.slice(0, 1);
-  for (const trial of trials) {
+  const best = trials.toSorted((p, q) => p.misfit - q.misfit);
+  const chosen = best.slice(0, 1);
+  for (const trial of best) {
     if (chosen.length >= STARTS) break;
     if (chosen.every((other) => Math.hypot(other.x - trial.x, other.y - trial.y) > reachM || other.source.values[2] !== trial.source.values[2])) chosen.push(trial);
   }
@@ -89,93 +102,101 @@ export function startingPoints(window: Window, kind: Kind, peak: { readonly x: n
 }
 
 type Unit = readonly [number, number, number];
+type Fill = (row: Float64Array, i: number) => void;
 const PLANE = 3;
-const MOST = 6;
+const MOST = 3;
+/** Keeps the strengths finite where the blocks cannot tell them apart. */
+const RIDGE = 1e-6;
 
-/** Solves the strengths of unit columns along with a plane; the misfit is the sum of squares that is left. */
-function leastSquares(window: Window, rows: readonly number[]) {
+/** Solves the strengths of unit fields along with a plane; the misfit is the sum of squares that is left. */
+function leastSquares(window: Window, rows: readonly number[]): (fill: Fill, count: number) => { misfit: number; strengths: Float64Array } {
   const m = rows.length;
-  const columns = new Float64Array(MOST * m);
+  const plane = orthonormalPlane(window, rows);
   const values = Float64Array.from(rows, (i) => window.value[i]!);
-  // The plane is taken off everything first, so that a trial solves its strengths alone.
-  const plane = new Float64Array(PLANE * m);
-  rows.forEach((i, j) => {
-    plane[j] = 1;
-    plane[m + j] = (window.x[i]! - window.centreX) / window.radiusM;
-    plane[2 * m + j] = (window.y[i]! - window.centreY) / window.radiusM;
-  });
-  orthonormal(plane, m);
-  project(plane, values, 0, m);
   let total = 0;
   for (const value of values) total += value * value;
-  return (fill: (columns: Float64Array, j: number, i: number) => void, count: number): { misfit: number; strengths: Float64Array } => {
-    rows.forEach((i, j) => fill(columns.subarray(0, count * m), j, i));
+  const onPlane = new Float64Array(PLANE);
+  for (let p = 0; p < PLANE; p++) {
+    for (let j = 0; j < m; j++) onPlane[p]! += plane[PLANE * j + p]! * values[j]!;
+    total -= onPlane[p]! ** 2;
+  }
+  const row = new Float64Array(MOST);
+  const cross = new Float64Array(MOST * PLANE);
+  return (fill, count) => {
     const normal = new Float64Array(count * count);
     const right = new Float64Array(count);
-    for (let r = 0; r < count; r++) {
-      project(plane, columns, r * m, m);
-      for (let j = 0; j < m; j++) right[r]! += columns[r * m + j]! * values[j]!;
-      for (let c = 0; c <= r; c++) {
-        let dot = 0;
-        for (let j = 0; j < m; j++) dot += columns[r * m + j]! * columns[c * m + j]!;
-        normal[r * count + c] = dot;
-        normal[c * count + r] = dot;
+    cross.fill(0);
+    for (let j = 0; j < m; j++) {
+      fill(row, rows[j]!);
+      for (let r = 0; r < count; r++) {
+        const value = row[r]!;
+        right[r]! += value * values[j]!;
+        for (let p = 0; p < PLANE; p++) cross[r * PLANE + p]! += value * plane[PLANE * j + p]!;
+        for (let c = 0; c <= r; c++) normal[r * count + c]! += value * row[c]!;
       }
     }
+    // What the plane explains is taken out of the sums afterwards, instead of out of every column.
     let trace = 0;
-    for (let r = 0; r < count; r++) trace += normal[r * count + r]!;
-    for (let r = 0; r < count; r++) normal[r * count + r]! += 1e-6 * trace;
-    const factor = normal;
-    if (!tryCholesky(factor, count)) return { misfit: total, strengths: new Float64Array(count) };
-    const strengths = choleskySolve(factor, count, right);
+    for (let r = 0; r < count; r++) {
+      for (let p = 0; p < PLANE; p++) right[r]! -= cross[r * PLANE + p]! * onPlane[p]!;
+      for (let c = 0; c <= r; c++) for (let p = 0; p < PLANE; p++) normal[r * count + c]! -= cross[r * PLANE + p]! * cross[c * PLANE + p]!;
+      trace += normal[r * count + r]!;
+    }
+    for (let r = 0; r < count; r++) normal[r * count + r]! += RIDGE * trace;
+    if (!tryCholesky(normal, count)) return { misfit: total, strengths: new Float64Array(count) };
+    const strengths = choleskySolve(normal, count, right);
     let explained = 0;
     for (let r = 0; r < count; r++) explained += strengths[r]! * right[r]!;
     return { misfit: total - explained, strengths };
   };
 }
 
-function orthonormal(plane: Float64Array, m: number): void {
-  for (let r = 0; r < PLANE; r++) {
-    for (let c = 0; c < r; c++) subtract(plane, r * m, plane, c * m, m);
-    let norm = 0;
-    for (let j = 0; j < m; j++) norm += plane[r * m + j]! ** 2;
-    // A column that the others hold already (all blocks on a line) counts for nothing.
+/** Constant and slopes at the rows, made orthonormal; 3 values a row. One that the others hold already is zero. */
+function orthonormalPlane(window: Window, rows: readonly number[]): Float64Array {
+  const m = rows.length;
+  const plane = new Float64Array(PLANE * m);
+  rows.forEach((i, j) => {
+    plane[PLANE * j] = 1;
+    plane[PLANE * j + 1] = (window.x[i]! - window.centreX) / window.radiusM;
+    plane[PLANE * j + 2] = (window.y[i]! - window.centreY) / window.radiusM;
+  });
+  const dot = (p: number, q: number) => {
+    let sum = 0;
+    for (let j = 0; j < m; j++) sum += plane[PLANE * j + p]! * plane[PLANE * j + q]!;
+    return sum;
+  };
+  for (let p = 0; p < PLANE; p++) {
+    for (let q = 0; q < p; q++) {
+      const share = dot(p, q);
+      for (let j = 0; j < m; j++) plane[PLANE * j + p]! -= share * plane[PLANE * j + q]!;
+    }
+    const norm = dot(p, p);
     const scale = norm > 1e-12 * m ? 1 / Math.sqrt(norm) : 0;
-    for (let j = 0; j < m; j++) plane[r * m + j]! *= scale;
+    for (let j = 0; j < m; j++) plane[PLANE * j + p]! *= scale;
   }
-}
-function project(plane: Float64Array, column: Float64Array, from: number, m: number): void {
-  for (let c = 0; c < PLANE; c++) subtract(column, from, plane, c * m, m);
-}
-function subtract(target: Float64Array, from: number, unit: Float64Array, at: number, m: number): void {
-  let dot = 0;
-  for (let j = 0; j < m; j++) dot += target[from + j]! * unit[at + j]!;
-  for (let j = 0; j < m; j++) target[from + j]! -= dot * unit[at + j]!;
+  return plane;
 }
 
-function poleColumn(columns: Float64Array, j: number, r: Unit, u: Unit): void {
-  const r2 = r[0] * r[0] + r[1] * r[1] + r[2] * r[2];
-  columns[j] = (-NT_PER_POLE * (u[0] * r[0] + u[1] * r[1] + u[2] * r[2])) / (r2 * Math.sqrt(r2));
+function poleRow(row: Float64Array, r: Float64Array, u: Unit): void {
+  const r2 = r[0]! * r[0]! + r[1]! * r[1]! + r[2]! * r[2]!;
+  row[0] = (-NT_PER_POLE * (u[0] * r[0]! + u[1] * r[1]! + u[2] * r[2]!)) / (r2 * Math.sqrt(r2));
 }
-const B = new Float64Array(3);
-function dipoleColumns(columns: Float64Array, j: number, r: Unit, u: Unit): void {
-  const m = columns.length / 3;
-  for (let k = 0; k < 3; k++) {
-    B.fill(0);
-    addDipole(B, k === 0 ? 1 : 0, k === 1 ? 1 : 0, k === 2 ? 1 : 0, r[0], r[1], r[2]);
-    columns[k * m + j] = B[0]! * u[0] + B[1]! * u[1] + B[2]! * u[2];
-  }
+
+function dipoleRow(row: Float64Array, r: Float64Array, u: Unit): void {
+  const r2 = r[0]! * r[0]! + r[1]! * r[1]! + r[2]! * r[2]!;
+  const k = NT_PER_POLE / (r2 * Math.sqrt(r2));
+  const along = (3 * (u[0] * r[0]! + u[1] * r[1]! + u[2] * r[2]!)) / r2;
+  for (let axis = 0; axis < 3; axis++) row[axis] = k * (along * r[axis]! - u[axis]!);
 }
-function lineColumns(columns: Float64Array, j: number, r: Unit, shape: { readonly offset: number; readonly azimuth: number; readonly u: Unit }): void {
-  const m = columns.length / 2;
-  const { offset, azimuth, u } = shape;
-  const c = Math.cos(azimuth);
-  const s = Math.sin(azimuth);
-  const q = r[0] * c - r[1] * s - offset;
-  const w = r[2];
+
+/** Unit moments per metre across and up, of a line through the point that `r` counts from; (c, −s) points across it. */
+function lineRow(row: Float64Array, r: Float64Array, { c, s, unit: u }: { readonly c: number; readonly s: number; readonly unit: Unit }): void {
+  const q = r[0]! * c - r[1]! * s;
+  const w = r[2]!;
   const p2 = q * q + w * w;
   const uq = u[0] * c - u[1] * s;
-  const up = uq * q + u[2] * w;
-  columns[j] = ((2 * NT_PER_POLE) / p2) * ((2 * q * up) / p2 - uq);
-  columns[m + j] = ((2 * NT_PER_POLE) / p2) * ((2 * w * up) / p2 - u[2]);
+  const k = (2 * NT_PER_POLE) / p2;
+  const along = (2 * (uq * q + u[2] * w)) / p2;
+  row[0] = k * (along * q - uq);
+  row[1] = k * (along * w - u[2]);
 }
