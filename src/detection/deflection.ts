@@ -1,16 +1,29 @@
+/** Rows that are whitened in one pass: n rows of a covariance, then background columns, then signals. */
+export interface Whitening {
+  /** Readings (or pools of them). */
+  readonly n: number;
+  /** Rows after the covariance that hold the background: a constant, a plane. */
+  readonly background: number;
+  /** Rows after those that hold signals. */
+  readonly signals: number;
+  /** Values from one row to the next, at least n. */
+  readonly stride: number;
+}
+
 /**
- * Deflection of a signal in noise, d = √(sᵀ C⁻¹ s), after the part of it that a background could explain is taken out.
+ * Whitens signals in noise of covariance C and takes out of them what the background could explain. Afterwards the
+ * length of signal row k is its deflection, d = √(sᵀ C⁻¹ s) for a signal without background.
  *
- * @param a Work space of (n + k) rows of `stride` ≥ n values, k ≥ 1; overwritten. Rows 0 … n − 1 hold the lower triangle
- *   of the covariance C, row n the signal, further rows the background's columns (a constant, a plane).
- * @returns d ≥ 0. A background column that adds nothing to the ones before it (readings along one line cannot tell a
- *   cross slope from a constant) is passed over. Throws where C is not positive definite.
+ * @param a Rows of `stride` values, changed in place. Rows 0 … n − 1 hold the lower triangle of C and become its
+ *   Cholesky factor L with the reciprocals of its diagonal; a row x below them becomes L⁻¹x, background rows orthogonal
+ *   to one another, signal rows orthogonal to them. A background row that adds nothing to the ones before it (readings
+ *   along one line cannot tell a cross slope from a constant) becomes zero. Throws where C is not positive definite.
  *
  * Source: Kay (1998), Fundamentals of Statistical Signal Processing II, sections 4.4 and 7.7 (deflection in coloured
  * noise with linear nuisance parameters).
  */
-export function deflection(a: Float64Array, { n, rows, stride }: { readonly n: number; readonly rows: number; readonly stride: number }): number {
-  // One Cholesky pass down all rows: those under the covariance come out whitened, L⁻¹ times what they held.
+export function whitenSignals(a: Float64Array, { n, background, signals, stride }: Whitening): void {
+  const rows = n + background + signals;
   for (let i = 0; i < rows; i++) {
     const rowI = i * stride;
     const last = Math.min(i, n);
@@ -23,33 +36,39 @@ export function deflection(a: Float64Array, { n, rows, stride }: { readonly n: n
     if (i < n) {
       let pivot = a[rowI + i]!;
       for (let k = 0; k < i; k++) pivot -= a[rowI + k]! * a[rowI + k]!;
-      if (!(pivot > 0)) throw new Error('deflection: the covariance is not positive definite');
+      if (!(pivot > 0)) throw new Error('whitenSignals: the covariance is not positive definite');
       // The diagonal keeps the reciprocal: it is only ever divided by.
       a[rowI + i] = 1 / Math.sqrt(pivot);
     }
   }
-  return Math.sqrt(Math.max(0, outsideOf(a, { n, rows, stride })));
+  for (let r = n; r < rows; r++) {
+    const base = r * stride;
+    const before = dot(a, base, base, n);
+    for (let q = n; q < Math.min(r, n + background); q++) {
+      const other = q * stride;
+      const size = dot(a, other, other, n);
+      if (size > 0) subtract(a, { from: base, what: other, times: dot(a, base, other, n) / size }, n);
+    }
+    if (r < n + background && dot(a, base, base, n) <= DEPENDENT * before) a.fill(0, base, base + n);
+  }
 }
 
 /** A column whose square falls below this share when the earlier ones are taken out adds nothing but rounding. */
 const DEPENDENT = 1e-10;
 
-/** Square of row n's part that is orthogonal to the rows after it (modified Gram–Schmidt). */
-function outsideOf(a: Float64Array, { n, rows, stride }: { readonly n: number; readonly rows: number; readonly stride: number }): number {
-  const signal = n * stride;
-  for (let r = n + 1; r < rows; r++) {
-    const base = r * stride;
-    const before = dot(a, base, base, n);
-    for (let q = n + 1; q < r; q++) {
-      const other = q * stride;
-      const size = dot(a, other, other, n);
-      if (size > 0) subtract(a, { from: base, what: other, times: dot(a, base, other, n) / size }, n);
-    }
-    const size = dot(a, base, base, n);
-    if (size <= DEPENDENT * before) a.fill(0, base, base + n);
-    else subtract(a, { from: signal, what: base, times: dot(a, signal, base, n) / size }, n);
+/** Length of a whitened row: the deflection of the signal that stood there. */
+export function rowLength(a: Float64Array, row: number, { n, stride }: Pick<Whitening, 'n' | 'stride'>): number {
+  return Math.sqrt(dot(a, row * stride, row * stride, n));
+}
+
+/** Turns a whitened row x into L⁻ᵀx, the matched filter's weights, in place of the row. */
+export function filterWeights(a: Float64Array, row: number, { n, stride }: Pick<Whitening, 'n' | 'stride'>): void {
+  const base = row * stride;
+  for (let i = n - 1; i >= 0; i--) {
+    const value = a[base + i]! * a[i * stride + i]!;
+    a[base + i] = value;
+    for (let k = 0; k < i; k++) a[base + k]! -= value * a[i * stride + k]!;
   }
-  return dot(a, signal, signal, n);
 }
 
 function dot(a: Float64Array, p: number, q: number, n: number): number {

@@ -41,5 +41,9 @@ export function detectionThreshold(options: FalseAlarmOptions): number {
  * Source: Kay (1998), Fundamentals of Statistical Signal Processing II, ch. 4; Van Trees (1968).
  */
 export function detectionProbability(deflection: number, threshold: number): number {
-  return normalCdf(deflection - threshold) + normalCdf(-deflection - threshold);
+  const wrongSide = deflection + threshold > FAR_SIGMAS ? 0 : normalCdf(-deflection - threshold);
+  return deflection - threshold > FAR_SIGMAS ? 1 : normalCdf(deflection - threshold) + wrongSide;
 }
+
+/** A normal variable is beyond this with a chance that a double cannot add to 1. */
+const FAR_SIGMAS = 8.3;
