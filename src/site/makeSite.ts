@@ -70,7 +70,7 @@ export async function makeSite(settings: SiteSettings, { files, where, warn }: {
   };
   const toWgs84 = datumShift(frame.datum, 'WGS 84', { grids, ...(settings.receiver ? { receiver: settings.receiver } : {}) });
   const namedCrs = settings.parcelCrs === undefined ? undefined : crs(settings.parcelCrs, `${where}, parcel_crs`);
-  const read = (path: string): Promise<Area> => readArea(path, { files, frame, shiftFrom, crs: namedCrs });
+  const read = (path: string): Promise<Area> => readArea(path, { files, frame, shiftFrom, crs: namedCrs, warn });
   const parcel = await read(settings.parcel);
   checkExtent(parcel, baseName(settings.parcel), frame, warn);
   const exclusions = (await Promise.all(settings.exclusions.map(read))).flat();

@@ -11,18 +11,18 @@ import { clipAreas } from './clipAreas.js';
  * Reads polygons into the frame. A polygon that crosses itself is refused with the place of the crossing, since its
  * inside is anybody's guess; polygons that overlap are joined.
  */
-export async function readArea(path: string, { files, frame, shiftFrom, crs }: {
-  files: FileSource; frame: Crs; shiftFrom(datum: Datum): DatumShift; crs: Crs | undefined;
+export async function readArea(path: string, { files, frame, shiftFrom, crs, warn }: {
+  files: FileSource; frame: Crs; shiftFrom(datum: Datum): DatumShift; crs: Crs | undefined; warn(message: string): void;
 }): Promise<Area> {
   const source = baseName(path);
   const input = await readVector(path, files, crs ? { crs } : {});
   const from = input.crs;
-  if (from === null) throw crsMissing(source, input.features.map(({ geometry }) => geometry));
+  input.notes.forEach(warn);
   const area: Rings[] = [];
   input.features.forEach(({ geometry }, i) => {
     const where = `${source}, feature ${i + 1}`;
-    if (geometry?.type === 'Polygon') area.push(rings(geometry.coordinates, where));
-    else if (geometry?.type === 'MultiPolygon') area.push(...geometry.coordinates.map((part) => rings(part, where)));
+    if (geometry?.type === 'Polygon') area.push(rings(geometry.coordinates, where, from));
+    else if (geometry?.type === 'MultiPolygon') area.push(...geometry.coordinates.map((part) => rings(part, where, from)));
     else throw new UserError({ code: 'polygon_invalid', where, found: geometry ? `a ${geometry.type}` : 'no geometry', wanted: 'a polygon' });
   });
   if (area.length === 0) throw new UserError({ code: 'file_empty', where: source, found: 'no polygon', wanted: 'at least one polygon' });
@@ -30,7 +30,7 @@ export async function readArea(path: string, { files, frame, shiftFrom, crs }: {
   return clipAreas('union', area.map((polygonRings) => polygonRings.map((ring) => ring.map(([x, y]) => move(x, y)))));
 }
 
-function rings(coordinates: Position[][], where: string): Rings {
+function rings(coordinates: Position[][], where: string, { metresPerUnit, unit }: Crs): Rings {
   for (const ring of coordinates) {
     if (ring.length < 4) throw new UserError({ code: 'polygon_invalid', where, found: `a ring of ${ring.length} points`, wanted: 'at least four, the last equal to the first' });
     if (ring.some((point) => !point.every(Number.isFinite))) throw new UserError({ code: 'polygon_invalid', where, found: 'a coordinate that is no number', wanted: 'numbers' });
@@ -38,7 +38,7 @@ function rings(coordinates: Position[][], where: string): Rings {
   const crossing = kinks(polygon(coordinates)).features[0];
   if (crossing) {
     const [x, y] = crossing.geometry.coordinates as [number, number];
-    throw new UserError({ code: 'polygon_invalid', where, found: `an outline that crosses itself at ${round(x)}, ${round(y)} (metres or degrees)`, wanted: 'a simple outline', advice: 'mend the polygon in a GIS' });
+    throw new UserError({ code: 'polygon_invalid', where, found: `an outline that crosses itself at ${round(x / metresPerUnit)}, ${round(y / metresPerUnit)} (${unit})`, wanted: 'a simple outline', advice: 'mend the polygon in a GIS' });
   }
   return coordinates.map((ring) => ring.map(([x, y]): [number, number] => [x!, y!]));
 }
@@ -50,16 +50,6 @@ function mover(from: Crs, frame: Crs, shiftFrom: (datum: Datum) => DatumShift): 
     const { lonDeg, latDeg } = shift.place(...from.inverse(x, y));
     return frame.forward(lonDeg, latDeg);
   };
-}
-
-function crsMissing(source: string, geometries: ReadonlyArray<{ type: string; coordinates?: unknown } | null>): UserError {
-  const numbers = JSON.stringify(geometries[0]?.coordinates ?? []).match(/-?\d+(\.\d+)?(e[-+]?\d+)?/gi)?.slice(0, 2).map(Number) ?? [];
-  const degrees = numbers.length === 2 && Math.abs(numbers[0]!) <= 180 && Math.abs(numbers[1]!) <= 90;
-  return new UserError({
-    code: 'crs_missing', where: source,
-    found: `no CRS (no .prj beside it); its first point is ${numbers.join(', ')}${degrees ? ', which looks like degrees' : ''}`,
-    wanted: 'a CRS that is stated', advice: 'add the .prj, or name the CRS in the survey file as "parcel_crs"',
-  });
 }
 
 function round(value: number): number {

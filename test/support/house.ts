@@ -3,7 +3,8 @@ import { join, posix, sep } from 'node:path';
 
 /** Floors from the ground up. Rooms on one floor do not see each other, except a stage another stage's `types.ts`. */
 export const FLOORS: readonly (readonly string[])[] = [
-  ['errors.ts', 'units.ts', 'files.ts', 'nearest.ts', 'version.ts'],
+  ['errors.ts'],
+  ['units.ts', 'files.ts', 'nearest.ts', 'version.ts'],
   ['numerics'],
   ['geodesy', 'table'],
   ['vector', 'raster', 'field'],
