@@ -42,7 +42,7 @@ async function isFile(path: string): Promise<boolean> {
 async function listFolder(folder: string): Promise<string[]> {
   try {
     const entries = await readdir(folder, { withFileTypes: true });
-    return entries.filter((entry) => entry.isFile()).map((entry) => join(folder, entry.name)).sort();
+    return entries.filter((entry) => entry.isFile()).map((entry) => join(folder, entry.name)).toSorted();
   } catch (error) {
     throw unreadable(folder, error as NodeJS.ErrnoException);
   }

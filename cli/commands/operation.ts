@@ -48,7 +48,7 @@ export function operationCommand(operation: Operation, operations: readonly Oper
       progress.clear();
       for (const warning of result.warnings) terminal.err(`warning: ${warning}\n`);
       if (flags.quiet) return;
-      const names = [...files.keys()].sort();
+      const names = [...files.keys()].toSorted();
       terminal.out(flags.json
         ? `${JSON.stringify({ operation: operation.id, out: shown(out, terminal), warnings: result.warnings, files: names }, null, 2)}\n`
         : `${operation.id}: wrote ${names.join(', ')} in ${shown(out, terminal)}.\n`);

@@ -39,7 +39,7 @@ export function runCommand(operations: readonly Operation[], terminal: Terminal)
       if (flags.quiet) return;
       const summary = summarise(result);
       terminal.out(flags.json
-        ? `${JSON.stringify({ out: shown(out, terminal), ...summary, files: [...files.keys()].sort() }, null, 2)}\n`
+        ? `${JSON.stringify({ out: shown(out, terminal), ...summary, files: [...files.keys()].toSorted() }, null, 2)}\n`
         : `${summary.sentences.join('\n')}\n\nFiles in ${shown(out, terminal)}: report.html first, item.json lists the rest (${files.size} files).\n`);
     });
 }

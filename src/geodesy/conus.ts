@@ -12,7 +12,7 @@ export const CONUS: ShiftGrid = {
   // The grid reaches into Canada and Mexico, for which nothing is published.
   statedAt: inLower48OrSea,
   offsetAt(lonDeg, latDeg) {
-    decoded ??= readCtable('conus', conusBytes(), 'NADCON conus');
+    decoded ??= readCtable('conus', conusBytes(), { label: 'NADCON conus' });
     return decoded.offsetAt(lonDeg, latDeg);
   },
 };

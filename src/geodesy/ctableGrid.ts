@@ -1,5 +1,5 @@
 import { UserError } from '../errors.js';
-import { gridAccuracyM } from './gridIdentity.js';
+import { type GridNaming, gridAccuracyM } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -20,7 +20,7 @@ export function isCtable(bytes: Uint8Array): boolean {
  * 160 bytes, then pairs of floats in radians, row by row from the south, longitude positive west.
  * Source: PROJ, description of the format in its source and documentation.
  */
-export function readCtable(name: string, bytes: Uint8Array, label: string, datums?: { from: string; to: string }): ShiftGrid {
+export function readCtable(name: string, bytes: Uint8Array, { label, datums }: GridNaming): ShiftGrid {
   const title = text(bytes, 16, 80).split('\n')[0]!.trim();
   if (bytes.length < HEADER_BYTES) throw damaged(name, `${bytes.length} bytes`);
   const known = datums ?? (NAD27_TITLES.has(title) ? { from: 'NAD27', to: 'NAD83' } : undefined);

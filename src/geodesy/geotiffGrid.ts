@@ -1,6 +1,6 @@
 import { fromArrayBuffer, type GeoTIFFImage } from 'geotiff';
 import { UserError } from '../errors.js';
-import { gridAccuracyM, gridDatum } from './gridIdentity.js';
+import { type GridNaming, gridAccuracyM, gridDatum } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -18,9 +18,19 @@ export function isTiff(bytes: Uint8Array): boolean {
  * with the unit and the direction that their metadata state; further images are finer tables.
  * Source: PROJ, "Geodetic TIFF grids (GTG)" specification.
  */
-export async function readGeotiffGrid(name: string, bytes: Uint8Array, label: string, datums?: { from: string; to: string }): Promise<ShiftGrid> {
-  const buffer = bytes.slice().buffer as ArrayBuffer;
-  const tiff = await fromArrayBuffer(buffer).catch((cause: unknown) => { throw unusable(name, `a TIFF that cannot be read (${String(cause)})`); });
+export async function readGeotiffGrid(name: string, bytes: Uint8Array, { label, datums }: GridNaming): Promise<ShiftGrid> {
+  try {
+    return await readImages(name, bytes, { label, datums });
+  } catch (error) {
+    if (error instanceof UserError) throw error;
+    // The library meets a damaged file with errors of many kinds, all of them the file's fault.
+    throw unusable(name, `a TIFF that cannot be read (${error instanceof Error ? error.message : String(error)})`);
+  }
+}
+
+async function readImages(name: string, bytes: Uint8Array, { label, datums }: GridNaming): Promise<ShiftGrid> {
+  // A copy, since a Buffer may be a window of a larger one.
+  const tiff = await fromArrayBuffer(new Uint8Array(bytes).buffer);
   const count = await tiff.getImageCount();
   const first = await tiff.getImage(0);
   const meta = await metadata(first, null);

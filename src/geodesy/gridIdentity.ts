@@ -1,3 +1,9 @@
+/** What a grid is called in the `shift` attribute, and between which datums it leads where the caller knows better than the file. */
+export interface GridNaming {
+  readonly label: string;
+  readonly datums?: { readonly from: string; readonly to: string } | undefined;
+}
+
 /** Datum names as grid files write them, without spaces and case, to ours. */
 const DATUM_NAMES: Readonly<Record<string, string>> = {
   NAD27: 'NAD27', NAD1927: 'NAD27', 'EPSG:4267': 'NAD27',

@@ -1,5 +1,5 @@
 import { UserError } from '../errors.js';
-import { gridAccuracyM, gridDatum } from './gridIdentity.js';
+import { type GridNaming, gridAccuracyM, gridDatum } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -16,7 +16,7 @@ export function isNtv2(bytes: Uint8Array): boolean {
  * nodes from the south-east, westward, then northward. The finest table that holds a place counts.
  * Source: National Transformation version 2 developer's guide, Geodetic Survey of Canada.
  */
-export function readNtv2(name: string, bytes: Uint8Array, label: string, datums?: { from: string; to: string }): ShiftGrid {
+export function readNtv2(name: string, bytes: Uint8Array, { label, datums }: GridNaming): ShiftGrid {
   const little = endian(bytes);
   if (little === null) throw damaged(name, 'a header of neither byte order');
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);

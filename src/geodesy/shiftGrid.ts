@@ -18,9 +18,9 @@ const SHORTEST_BYTES = 160;
 export async function readShiftGrid(name: string, bytes: Uint8Array, datums?: { readonly from: string; readonly to: string }): Promise<ShiftGrid> {
   const label = `grid ${baseName(name)}`;
   if (bytes.length >= SHORTEST_BYTES) {
-    if (isCtable(bytes)) return readCtable(name, bytes, label, datums);
-    if (isNtv2(bytes)) return readNtv2(name, bytes, label, datums);
-    if (isTiff(bytes)) return readGeotiffGrid(name, bytes, label, datums);
+    if (isCtable(bytes)) return readCtable(name, bytes, { label, datums });
+    if (isNtv2(bytes)) return readNtv2(name, bytes, { label, datums });
+    if (isTiff(bytes)) return readGeotiffGrid(name, bytes, { label, datums });
   }
   throw new UserError({
     code: 'grid_file_invalid', where: name, found: `${bytes.length} bytes of another format`,

@@ -13,6 +13,8 @@ const HALF_WINDOW = 3;
 const HALF_LOCAL = 10;
 /** Standard deviations beyond which a reading is no noise: one in 500 million if noise were Gaussian. */
 const LIMIT_SD = 6;
+/** Hampel's usual three. */
+const HAMPEL_SD = 3;
 /**
  * Fourth derivative of a dipole's field over its peak is at most 105/z⁴ (of (1 + u²)^−5/2 at u = 0), and a cubic through
  * two neighbours on either side misses the middle by a sixth of the fourth difference: 17.5 (h/z)⁴.
@@ -58,46 +60,57 @@ interface Judgement {
   readonly excused: number;
 }
 
-/** Readings that are spikes and worse than all their neighbours. */
+/** Readings that are spikes and worse than all their neighbours, which a spike spoils as well. */
 function worst(values: Float64Array, spike: Uint8Array, run: Run, { noise, background, excused }: Judgement): number[] {
   const miss = new Float64Array(run.end - run.start);
-  const over = new Float64Array(run.end - run.start);
-  const candidates: number[] = [];
+  const suspects = new Map<number, number>();
   for (let i = run.start; i < run.end; i++) {
     const predicted = spike[i] ? null : predict(values, spike, i, run);
     if (!predicted) continue;
     miss[i - run.start] = values[i]! - predicted.value;
     const limit = LIMIT_SD * noise * predicted.noiseGain + excused * Math.abs(predicted.value - background);
-    over[i - run.start] = Math.abs(miss[i - run.start]!) / Math.max(limit, Number.MIN_VALUE);
-    if (over[i - run.start]! > 1 && Math.abs(miss[i - run.start]!) > 0) candidates.push(i);
+    if (Math.abs(miss[i - run.start]!) > limit) suspects.set(i, 0);
   }
-  return candidates.filter((i) => {
+  for (const i of suspects.keys()) suspects.set(i, beyondHampel(values, spike, i, run));
+  return [...suspects.keys()].filter((i) => {
+    const rank = suspects.get(i)!;
+    if (rank === 0) return false;
+    for (let j = i - HALF_WINDOW; j <= i + HALF_WINDOW; j++) if ((suspects.get(j) ?? 0) > rank) return false;
     const k = i - run.start;
-    for (let j = Math.max(0, k - HALF_WINDOW); j <= Math.min(over.length - 1, k + HALF_WINDOW); j++) if (over[j]! > over[k]!) return false;
     const local = madSd(miss.subarray(Math.max(0, k - HALF_LOCAL), k + HALF_LOCAL + 1));
-    return Math.abs(miss[k]!) > LIMIT_SD * local && beyondHampel(values, spike, i, run);
+    return Math.abs(miss[k]!) > LIMIT_SD * local;
   });
 }
 
-function beyondHampel(values: Float64Array, spike: Uint8Array, i: number, run: Run): boolean {
-  const window: number[] = [];
-  for (let j = Math.max(run.start, i - HALF_WINDOW); j <= Math.min(run.end - 1, i + HALF_WINDOW); j++) if (!spike[j]) window.push(values[j]!);
-  // Three of seven may be false; a slope takes one deviation more.
-  return Math.abs(values[i]! - median(window)) > HAMPEL_SD * madSd(window);
+/**
+ * Distance of a reading from the middle line of its window (median slope and median height: Sen 1968), where it is
+ * beyond Hampel's limit, else 0. A plain median would take a steep flank for scatter.
+ */
+function beyondHampel(values: Float64Array, spike: Uint8Array, i: number, run: Run): number {
+  const start = Math.max(run.start, Math.min(i - HALF_WINDOW, run.end - 1 - 2 * HALF_WINDOW));
+  const at: number[] = [];
+  for (let j = start; j <= Math.min(run.end - 1, start + 2 * HALF_WINDOW); j++) if (!spike[j] && !Number.isNaN(values[j]!)) at.push(j);
+  const slopes: number[] = [];
+  for (const a of at) for (const b of at) if (b > a) slopes.push((values[b]! - values[a]!) / (b - a));
+  const slope = median(slopes);
+  const left = at.map((j) => values[j]! - slope * (j - i));
+  const distance = Math.abs(values[i]! - median(left));
+  return distance > HAMPEL_SD * madSd(left) ? distance : 0;
 }
-/** Hampel's usual three. */
-const HAMPEL_SD = 3;
 
 /**
- * A reading as the cubic (or lower) through up to two good neighbours on each side has it, by Lagrange's formula in the
- * index, and by what factor white noise grows in the difference. Null where fewer than three are near.
+ * A reading as the cubic (or parabola) through the good neighbours has it, two on each side where there are, by
+ * Lagrange's formula in the index; and by what factor white noise grows in the difference. Null where fewer than three
+ * are near.
  */
 function predict(values: Float64Array, spike: Uint8Array, i: number, run: Run): { value: number; noiseGain: number } | null {
   if (Number.isNaN(values[i]!)) return null;
-  const at: number[] = [];
-  for (let j = i - 1, n = 0; n < 2 && j >= Math.max(run.start, i - HALF_WINDOW); j--) if (!spike[j] && !Number.isNaN(values[j]!)) n = at.push(j);
-  const before = at.length;
-  for (let j = i + 1; at.length < before + 2 && j <= Math.min(run.end - 1, i + HALF_WINDOW); j++) if (!spike[j] && !Number.isNaN(values[j]!)) at.push(j);
+  const good = (j: number): boolean => !spike[j] && !Number.isNaN(values[j]!);
+  const before: number[] = [];
+  const after: number[] = [];
+  for (let j = i - 1; j >= Math.max(run.start, i - HALF_WINDOW); j--) if (good(j)) before.push(j);
+  for (let j = i + 1; j <= Math.min(run.end - 1, i + HALF_WINDOW); j++) if (good(j)) after.push(j);
+  const at = [...before.slice(0, Math.max(2, 3 - after.length)), ...after.slice(0, Math.max(2, 3 - before.length))];
   if (at.length < 3) return null;
   let value = 0;
   let gain = 1;

@@ -26,8 +26,8 @@ const REGIONAL_LEAST_M = 100;
 const CHUNK_SHARE = 1 / 40;
 /** Readings from another month than the survey's date are more likely a wrong date than a late visit. */
 const DATE_YEARS = 31 / 365;
-/** Half the metres of stated position error that an unsettled datum shift may add before it is worth a word. */
-const SHIFT_SHARE = 0.5;
+/** An error of the datum shift above this is worth a word, metres: a null shift between NAD83 and WGS 84 has more. */
+const SHIFT_SD_M = 1;
 /** More bad readings than this are worth a word. */
 const FLAGGED_SHARE = 0.05;
 /** Least distance to a source that a spike is judged by, where a height is written as next to nothing, metres. */
@@ -93,8 +93,8 @@ function prepare(raw: RawReadings, settings: ReduceOptions, site: Site, source: 
   }
   const flag = flagFaults({ ...raw, timeS }, { kind: settings.kind, mainNT: site.mainField.totalNT, source });
   checkDate(timeS, site, warnings);
-  if (raw.shiftSdM > SHIFT_SHARE * settings.positionSdM) {
-    warnings.push(`Positions were moved by ${raw.shifts.join('; ')}, with a standard error of ${raw.shiftSdM.toFixed(1)} m: state the receiver's frame and epoch.`);
+  if (raw.shiftSdM > SHIFT_SD_M) {
+    warnings.push(`Positions were moved by ${raw.shifts.join('; ')}, with a standard error of ${raw.shiftSdM.toFixed(1)} m on each axis: state the receiver's frame and epoch, or the datum.`);
   }
   const first = findRuns({ ...raw, timeS });
   const timed = timeS.some((time) => !Number.isNaN(time));

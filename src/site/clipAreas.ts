@@ -19,7 +19,7 @@ const CLIP_TYPES = { union: ClipType.Union, difference: ClipType.Difference, int
 function paths(area: Area): Path64[] {
   return area.flatMap((rings) => rings.map((ring, i) => {
     const path = ring.slice(0, -1).map(([x, y]) => ({ x: Math.round(x / UNIT_M), y: Math.round(y / UNIT_M) }));
-    return ringAreaM2(ring) > 0 === (i === 0) ? path : path.reverse();
+    return ringAreaM2(ring) > 0 === (i === 0) ? path : path.toReversed();
   }));
 }
 

@@ -91,7 +91,7 @@ async function readGrids(paths: readonly string[], files: FileSource & { list?(f
   const names: string[] = [];
   for (const path of paths) {
     if (await files.has(path)) names.push(path);
-    else if (files.list) names.push(...(await files.list(path)).filter((name) => GRID_FILES.has(extension(name))).sort());
+    else if (files.list) names.push(...(await files.list(path)).filter((name) => GRID_FILES.has(extension(name))).toSorted());
     else await files.read(path);
   }
   return Promise.all(names.map(async (name) => readShiftGrid(baseName(name), await files.read(name))));

@@ -33,5 +33,5 @@ export function tracing(host: Host): { host: Host; inputs(): InputTrace[] } {
       return bytes;
     },
   };
-  return { host: { ...host, files }, inputs: () => [...seen.values()].sort((a, b) => (a.path < b.path ? -1 : 1)) };
+  return { host: { ...host, files }, inputs: () => [...seen.values()].toSorted((a, b) => (a.path < b.path ? -1 : 1)) };
 }

@@ -9,7 +9,7 @@ export function planGpx(plan: SurveyPlan, site: Site): Delivered {
     const there = site.toWgs84.place(...site.frame.inverse(x, y));
     return [there.lonDeg, there.latDeg];
   };
-  const routes = [...plan.lines].sort((a, b) => a.visit - b.visit).map((line) => ({
+  const routes = plan.lines.toSorted((a, b) => a.visit - b.visit).map((line) => ({
     name: `${line.kind} ${line.lineNo}`,
     description: `visit ${line.visit}, sortie ${line.sortie}, ${line.lengthM.toFixed(1)} m`,
     points: [place(line.x0, line.y0), place(line.x1, line.y1)],

@@ -22,7 +22,7 @@ export function planLayers(plan: SurveyPlan, site: Site): Layer[] {
         { name: 'length_m', type: 'real', title: 'Length, m', decimals: 2 },
         { name: 'azim_deg', type: 'real', title: 'Direction of walking, degrees clockwise from grid north', decimals: 2 },
       ],
-      features: [...plan.lines].sort((a, b) => a.visit - b.visit).map((line) => ({
+      features: plan.lines.toSorted((a, b) => a.visit - b.visit).map((line) => ({
         geometry: { type: 'LineString', coordinates: [[line.x0, line.y0], [line.x1, line.y1]] },
         values: { line_no: line.lineNo, kind: line.kind, visit: line.visit, sortie: line.sortie, length_m: line.lengthM, azim_deg: line.azimDeg },
       })),
