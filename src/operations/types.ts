@@ -54,6 +54,11 @@ export interface Task {
   readonly files: FileSource;
   /** Anything random starts from here. */
   readonly seed: number;
+  /** What the run warned of, and which operations it ran, before this one; absent where an operation stands alone. */
+  readonly before?: {
+    readonly warnings: readonly string[];
+    readonly operations: ReadonlyArray<Pick<Operation, 'id' | 'version' | 'sources'>>;
+  };
   /** What goes on, for a terminal; never a result. */
   progress(message: string): void;
   /** What the user has to know; goes into the report, the provenance and to stderr. */

@@ -81,10 +81,8 @@ function scaleBars(frame: MapFrame, { site }: ReportContent): Html {
 /** Grid, true and magnetic north, as seen on a map whose upper edge is grid north. */
 function norths({ site }: ReportContent): Html {
   const { declinationDeg, convergenceDeg } = site.mainField;
-  const degrees = (angle: number): string => `${number(Math.abs(angle), 1)}°${Math.abs(angle) < 0.05 ? '' : angle > 0 ? ' E' : ' W'}`;
   const trueDeg = -convergenceDeg;
   const magneticDeg = declinationDeg - convergenceDeg;
-  const arrow = (angle: number, head: Html, letter: string): Html => html`<g transform="rotate(${round(angle)})"><path class="north" d="M0 0V-62"/>${head}<text class="key middle strong" transform="translate(0 -82) rotate(${round(-angle)})" y="4">${letter}</text></g>`;
   return html`
 <g transform="translate(38 98)">
 ${arrow(magneticDeg, html`<path class="north" d="M0-74L0-56M0-74L5-64"/>`, Math.abs(magneticDeg) > 6 ? 'M' : '')}
@@ -95,4 +93,13 @@ ${arrow(trueDeg, html`<path class="north star" d="M0-76L1.6-70.6L6-70.6L2.4-67.6
 <text class="key" x="84" y="56">★ true ${degrees(trueDeg)}</text>
 <text class="key" x="84" y="74">M magnetic ${degrees(magneticDeg)}</text>
 <text class="key faint" x="84" y="92">of grid north</text>`;
+}
+
+function degrees(angle: number): string {
+  return `${number(Math.abs(angle), 1)}°${Math.abs(angle) < 0.05 ? '' : angle > 0 ? ' E' : ' W'}`;
+}
+
+/** An arrow turned clockwise by an angle, its letter kept upright. */
+function arrow(angle: number, head: Html, letter: string): Html {
+  return html`<g transform="rotate(${round(angle)})"><path class="north" d="M0 0V-62"/>${head}<text class="key middle strong" transform="translate(0 -82) rotate(${round(-angle)})" y="4">${letter}</text></g>`;
 }

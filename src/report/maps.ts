@@ -37,7 +37,8 @@ export function detectionMap(content: ReportContent, { pictureCells }: ReportOpt
     label: (value) => `${Math.round(100 * value)} %`,
   };
   const picture = gridPicture(grid, { ramp: CHANCE_RAMP, range: key.range, mostCells: pictureCells });
-  return figure({ ...content, anomalies: undefined } as ReportContent, {
+  const { anomalies: _, ...rest } = content;
+  return figure(rest, {
     id: 'detection', picture, key, title: 'Map of the chance of detection',
     caption: html`Chance that a casing as stated would have been detected, were it at that place, from the lines as they were walked. ${cells(grid, picture)}`,
   });
