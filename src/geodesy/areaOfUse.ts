@@ -6,10 +6,11 @@ const AREA_ROUNDING_KM = 0.6;
 
 /**
  * A sentence where the place (degrees, on the CRS's datum) lies outside the area of use that EPSG states for the CRS,
- * with the distance in km to its edge; null inside, and for what is not a place (NaN).
+ * with the distance in km to its edge; null inside, and for what is not a place (NaN, a latitude
+ * beyond a pole), which the projection refuses.
  */
 export function areaOfUseWarning(crs: Crs, lonDeg: number, latDeg: number): string | null {
-  if (!Number.isFinite(lonDeg) || !Number.isFinite(latDeg)) return null;
+  if (!Number.isFinite(lonDeg) || !(Math.abs(latDeg) <= 90)) return null;
   const km = kmOutside(crs.areaOfUse, lonDeg, latDeg);
   if (km < AREA_ROUNDING_KM) return null;
   const { west, south, east, north } = crs.areaOfUse;

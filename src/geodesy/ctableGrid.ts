@@ -1,5 +1,5 @@
 import { UserError } from '../errors.js';
-import { type GridNaming, gridAccuracyM } from './gridIdentity.js';
+import { type GridNaming, gridAccuracy } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -30,7 +30,7 @@ export function readCtable(name: string, bytes: Uint8Array, { label, datums }: G
       wanted: 'a grid that names its datums', advice: 'take its GeoTIFF or NTv2 form',
     });
   }
-  return shiftGrid({ name: label, ...known, accuracyM: gridAccuracyM(title) }, [readTable(name, bytes)]);
+  return shiftGrid({ name: label, ...known, ...gridAccuracy(title) }, [readTable(name, bytes)]);
 }
 
 function readTable(name: string, bytes: Uint8Array): OffsetTable {

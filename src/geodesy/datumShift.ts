@@ -28,7 +28,8 @@ export function datumShift(from: Datum, to: Datum, setting: Partial<DatumSetting
   const place = (lonDeg: number, latDeg: number): ShiftedPlace => {
     if (!(Math.abs(lonDeg) <= 360 && Math.abs(latDeg) <= 90)) throw noPlace(from, lonDeg, latDeg);
     const lon = turned(lonDeg);
-    if (nad && !inNorthAmerica(lon, latDeg)) throw outsideArea(from, to, lonDeg, latDeg);
+    if (nad && !inNorthAmerica(lon, latDeg)) throw outsideArea(from, to, { found: [lonDeg, latDeg], wanted: 'a place in North America, where NAD27 and NAD83 hold', advice: 'check signs, the order of the columns and the datum' });
+    if (path.includes('NAD27') && inHawaii(lon, latDeg)) throw outsideArea(from, to, { found: [lonDeg, latDeg], wanted: 'a place where NAD27 was used', advice: 'maps of Hawaii from that time are on the Old Hawaiian datum, several hundred metres off' });
     return move(legs, lon, latDeg, `none (${from})`);
   };
   return { from, to, place, arrays: (lonDeg, latDeg) => columns(place, lonDeg, latDeg) };
@@ -101,6 +102,13 @@ function inNorthAmerica(lonDeg: number, latDeg: number): boolean {
   return latDeg >= NORTH_AMERICA.south && latDeg <= NORTH_AMERICA.north && (lonDeg >= NORTH_AMERICA.west || lonDeg <= NORTH_AMERICA.east);
 }
 
+/** The Hawaiian islands, which NAD27 never reached though EPSG's box around its area holds them. */
+const HAWAII = { west: -161, south: 18, east: -154, north: 23 };
+
+function inHawaii(lonDeg: number, latDeg: number): boolean {
+  return lonDeg >= HAWAII.west && lonDeg <= HAWAII.east && latDeg >= HAWAII.south && latDeg <= HAWAII.north;
+}
+
 /** Into −180 to 180. */
 function turned(lonDeg: number): number {
   return lonDeg > 180 ? lonDeg - 360 : lonDeg < -180 ? lonDeg + 360 : lonDeg;
@@ -120,9 +128,6 @@ function noPlace(from: Datum, lonDeg: number, latDeg: number): UserError {
   return new UserError({ code: 'position_invalid', where: `datum ${from}`, found: `longitude ${lonDeg}, latitude ${latDeg}`, wanted: 'longitude and latitude in degrees' });
 }
 
-function outsideArea(from: Datum, to: Datum, lonDeg: number, latDeg: number): UserError {
-  return new UserError({
-    code: 'outside_area', where: `shift from ${from} to ${to}`, found: `longitude ${lonDeg}, latitude ${latDeg}`, wanted: 'a place in North America, where NAD27 and NAD83 hold',
-    advice: 'check signs, the order of the columns and the datum',
-  });
+function outsideArea(from: Datum, to: Datum, { found: [lonDeg, latDeg], wanted, advice }: { found: readonly [number, number]; wanted: string; advice: string }): UserError {
+  return new UserError({ code: 'outside_area', where: `shift from ${from} to ${to}`, found: `longitude ${lonDeg}, latitude ${latDeg}`, wanted, advice });
 }

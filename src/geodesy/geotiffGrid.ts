@@ -1,6 +1,6 @@
 import { fromArrayBuffer, type GeoTIFFImage } from 'geotiff';
 import { UserError } from '../errors.js';
-import { type GridNaming, gridAccuracyM, gridDatum } from './gridIdentity.js';
+import { type GridNaming, gridAccuracy, gridDatum } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -35,45 +35,57 @@ async function readImages(name: string, bytes: Uint8Array, { label, datums }: Gr
   const first = await tiff.getImage(0);
   const meta = await metadata(first, null);
   if (meta['TYPE'] !== 'HORIZONTAL_OFFSET') throw unusable(name, `a GeoTIFF of type ${JSON.stringify(meta['TYPE'] ?? null)}`);
-  const channels = await readChannels(name, first);
   const tables: OffsetTable[] = [];
+  let channels: Channels | null = null;
   for (let index = 0; index < count; index++) {
     const image = await tiff.getImage(index);
     if ((Number(image.fileDirectory.getValue('NewSubfileType') ?? 0) & REDUCED_IMAGE) !== 0) continue;
-    // Later images may leave out what the first one says already.
-    tables.push(await readTable(name, image, index === 0 ? channels : await readChannels(name, image, channels)));
+    // Later images may leave out what the first one says, or hold something else (accuracies), which is passed over.
+    const own: Channels | 'undescribed' | 'other' = await readChannels(name, image);
+    if (own === 'other' || (own === 'undescribed' && channels === null)) continue;
+    channels = own === 'undescribed' ? channels : own;
+    tables.push(await readTable(name, image, channels!));
   }
+  if (tables.length === 0) throw unusable(name, 'bands that are not described as latitude_offset and longitude_offset');
   const source = first.getGeoKeys()?.GeographicTypeGeoKey as number | undefined;
   const target = meta['target_crs_epsg_code'];
   if (datums === undefined && (source === undefined || target === undefined)) throw unusable(name, 'a grid that does not say between which datums it leads');
   return shiftGrid({
     name: label, from: datums?.from ?? gridDatum(`EPSG:${source}`), to: datums?.to ?? gridDatum(`EPSG:${target}`),
-    accuracyM: gridAccuracyM(name, meta['area_of_use'] ?? ''),
+    ...gridAccuracy(name, meta['area_of_use'] ?? ''),
   }, tables);
 }
 
-/** Where the two offsets are, and what to multiply them by to get degrees, positive east and north. */
-interface Channels {
-  readonly lon: { readonly band: number; readonly scale: number };
-  readonly lat: { readonly band: number; readonly scale: number };
+/** Where an offset is, and how its raw value becomes degrees, positive east or north: base + scale × raw. */
+interface Channel {
+  readonly band: number;
+  readonly base: number;
+  readonly scale: number;
 }
 
-async function readChannels(name: string, image: GeoTIFFImage, inherited?: Channels): Promise<Channels> {
-  const found = new Map<string, { band: number; scale: number }>();
+interface Channels {
+  readonly lon: Channel;
+  readonly lat: Channel;
+}
+
+async function readChannels(name: string, image: GeoTIFFImage): Promise<Channels | 'undescribed' | 'other'> {
+  const found = new Map<string, Channel>();
+  let described = false;
   for (let band = 0; band < image.getSamplesPerPixel(); band++) {
     const meta = await metadata(image, band);
     const what = meta['DESCRIPTION'];
+    described ||= what !== undefined;
     if (what !== 'latitude_offset' && what !== 'longitude_offset') continue;
     const unit = DEG_PER_UNIT[meta['UNITTYPE'] ?? 'arc-second'];
     if (unit === undefined) throw unusable(name, `offsets in ${JSON.stringify(meta['UNITTYPE'])}`);
     const direction = meta['positive_value'] ?? 'east';
     if (what === 'longitude_offset' && direction !== 'east' && direction !== 'west') throw unusable(name, `longitude offsets positive to ${JSON.stringify(direction)}`);
-    found.set(what, { band, scale: direction === 'west' ? -unit : unit });
+    const toDeg = direction === 'west' ? -unit : unit;
+    found.set(what, { band, base: Number(meta['OFFSET'] ?? 0) * toDeg, scale: Number(meta['SCALE'] ?? 1) * toDeg });
   }
-  const lon = found.get('longitude_offset') ?? inherited?.lon;
-  const lat = found.get('latitude_offset') ?? inherited?.lat;
-  if (lon === undefined || lat === undefined) throw unusable(name, 'bands that are not described as latitude_offset and longitude_offset');
-  return { lon, lat };
+  const [lon, lat] = [found.get('longitude_offset'), found.get('latitude_offset')];
+  if (lon !== undefined && lat !== undefined) return { lon, lat };
+  return described ? 'other' : 'undescribed';
 }
 
 async function readTable(name: string, image: GeoTIFFImage, { lon, lat }: Channels): Promise<OffsetTable> {
@@ -87,19 +99,19 @@ async function readTable(name: string, image: GeoTIFFImage, { lon, lat }: Channe
   const half = image.pixelIsArea() ? 0.5 : 0;
   const rasters = await image.readRasters({ samples: [lon.band, lat.band], interleave: false }) as unknown as ArrayLike<number>[];
   const noData = image.getGDALNoData();
-  const southUp = (band: ArrayLike<number>, scale: number): Float64Array => {
+  const southUp = (band: ArrayLike<number>, { base, scale }: Channel): Float64Array => {
     const out = new Float64Array(width * height);
     for (let row = 0; row < height; row++) {
       for (let column = 0; column < width; column++) {
         const value = band[(height - 1 - row) * width + column]!;
-        out[row * width + column] = value === noData ? NaN : value * scale;
+        out[row * width + column] = value === noData ? NaN : base + value * scale;
       }
     }
     return out;
   };
   return {
     west: west + half * stepLonDeg, south: north - (height - 1 + half) * stepLatDeg, stepLonDeg, stepLatDeg, width, height,
-    dLonDeg: southUp(rasters[0]!, lon.scale), dLatDeg: southUp(rasters[1]!, lat.scale),
+    dLonDeg: southUp(rasters[0]!, lon), dLatDeg: southUp(rasters[1]!, lat),
   };
 }
 

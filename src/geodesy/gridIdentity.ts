@@ -1,3 +1,5 @@
+import { inLower48OrSea } from './lower48.js';
+
 /** What a grid is called in the `shift` attribute, and between which datums it leads where the caller knows better than the file. */
 export interface GridNaming {
   readonly label: string;
@@ -18,18 +20,26 @@ export function gridDatum(written: string): string {
   return DATUM_NAMES[written.replace(/\s+/g, '').toUpperCase()] ?? written.trim();
 }
 
-/**
- * Accuracies that EPSG states for grids between these datums, metres: operations 1241 (lower 48), 1243 (Alaska),
- * 1454 (Hawaii), 1313 (Canada, NTv2). Told apart by what is written in the file or its name.
- */
-const STATED: readonly (readonly [RegExp, number])[] = [
-  [/conus|conterminous/i, 0.15],
-  [/alaska/i, 0.5],
-  [/hawaii/i, 0.2],
-];
-/** Metres, where nothing is stated: that of a national grid in NTv2 form (EPSG:1313), the widest of the published ones. */
+/** What is published of a grid's accuracy. */
+export interface GridAccuracy {
+  readonly accuracyM: number;
+  /** Absent where it holds all over the grid. */
+  readonly statedAt?: (lonDeg: number, latDeg: number) => boolean;
+}
+
+/** Metres, where nothing is stated: that of a national grid in NTv2 form (EPSG:1313, Canada), the widest of the published ones. */
 export const UNSTATED_ACCURACY_M = 1.5;
 
-export function gridAccuracyM(...texts: readonly string[]): number {
-  return STATED.find(([pattern]) => texts.some((text) => pattern.test(text)))?.[1] ?? UNSTATED_ACCURACY_M;
+/** NADCON's grid of the lower 48 reaches into Canada and Mexico, for which nothing is published. Source: EPSG:1241. */
+export const CONUS_ACCURACY: GridAccuracy = { accuracyM: 0.15, statedAt: inLower48OrSea };
+
+/** Source: EPSG:1243 (Alaska), 1454 (Hawaii). Grids are told apart by what is written in the file or by its name. */
+const STATED: readonly (readonly [RegExp, GridAccuracy])[] = [
+  [/conus|conterminous/i, CONUS_ACCURACY],
+  [/alaska/i, { accuracyM: 0.5 }],
+  [/hawaii/i, { accuracyM: 0.2 }],
+];
+
+export function gridAccuracy(...texts: readonly string[]): GridAccuracy {
+  return STATED.find(([pattern]) => texts.some((text) => pattern.test(text)))?.[1] ?? { accuracyM: UNSTATED_ACCURACY_M };
 }

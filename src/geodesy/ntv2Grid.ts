@@ -1,5 +1,5 @@
 import { UserError } from '../errors.js';
-import { type GridNaming, gridAccuracyM, gridDatum } from './gridIdentity.js';
+import { type GridNaming, gridAccuracy, gridDatum } from './gridIdentity.js';
 import { shiftGrid, type OffsetTable } from './offsetTables.js';
 import type { ShiftGrid } from './types.js';
 
@@ -33,7 +33,8 @@ export function readNtv2(name: string, bytes: Uint8Array, { label, datums }: Gri
   if (tables.length === 0) throw damaged(name, 'no grid');
   const from = datums?.from ?? gridDatum(header.text('SYSTEM_F'));
   const to = datums?.to ?? gridDatum(header.text('SYSTEM_T'));
-  return shiftGrid({ name: label, from, to, accuracyM: gridAccuracyM(name) }, tables);
+  if (from === '' || to === '') throw damaged(name, 'a grid that does not name the datums it leads between');
+  return shiftGrid({ name: label, from, to, ...gridAccuracy(name) }, tables);
 }
 
 interface Place {

@@ -12,12 +12,7 @@ export interface OffsetTable {
   readonly dLatDeg: ArrayLike<number>;
 }
 
-export interface GridIdentity {
-  readonly name: string;
-  readonly from: string;
-  readonly to: string;
-  readonly accuracyM: number;
-}
+export type GridIdentity = Omit<ShiftGrid, 'offsetAt'>;
 
 /** A place this far outside its edge, in parts of a cell, still counts as on it: corners are stored in radians or rounded arc-seconds. */
 const EDGE_CELLS = 1e-6;

@@ -327,6 +327,9 @@ describe('every way', () => {
       expect(errorOf(() => shift.place(lon, lat)).code).toBe('outside_area');
       expect(errorOf(() => datumShift('WGS 84', 'NAD83').place(lon, lat)).code).toBe('outside_area');
     }
+    // Hawaii's old maps are on a datum of their own.
+    expect(errorOf(() => shift.place(-157.8, 21.3)).code).toBe('outside_area');
+    expect(datumShift('NAD83', 'WGS 84').place(-157.8, 21.3).shift).toBe('none (NAD83 as WGS 84, EPSG:1188)');
     expect(datumShift('WGS 84', 'WGS 84').place(149, -25)).toMatchObject({ lonDeg: 149, latDeg: -25 });
     expect(shift.place(280, 40).lonDeg).toBeCloseTo(shift.place(-80, 40).lonDeg, 12);
     expect(CONUS.offsetAt(-80, 90)).toBeNull();

@@ -92,6 +92,8 @@ export interface TiffOptions {
   readonly type?: string;
   readonly described?: boolean;
   readonly target?: string;
+  /** Raw value = (value − offset) / scale, in the unit and direction of the band. */
+  readonly packed?: { readonly scale: number; readonly offset: number };
   /** Index (row from the north, column) of nodes without a value. */
   readonly holes?: readonly (readonly [number, number])[];
 }
@@ -105,13 +107,14 @@ const NO_DATA = -9999;
 
 /** One image, uncompressed, 32-bit floats, two interleaved bands. */
 export function tiffBytes(table: MadeTable, options: TiffOptions): Uint8Array {
-  const { unit, positive, lonFirst = false, pixelIsArea = false, type = 'HORIZONTAL_OFFSET', described = true, target = '4269', holes = [] } = options;
+  const { unit, positive, lonFirst = false, pixelIsArea = false, type = 'HORIZONTAL_OFFSET', described = true, target = '4269', holes = [], packed = { scale: 1, offset: 0 } } = options;
   const { west, south, step, width, height } = table;
   const scale = PER_DEGREE[unit];
   const band = { lon: lonFirst ? 0 : 1, lat: lonFirst ? 1 : 0 };
   const metadata = `<GDALMetadata>${item('TYPE', type)}${target ? item('target_crs_epsg_code', target) : ''}${described ? [
     item('DESCRIPTION', 'latitude_offset', band.lat, 'description'), item('UNITTYPE', unit, band.lat, 'unittype'),
     item('DESCRIPTION', 'longitude_offset', band.lon, 'description'), item('UNITTYPE', unit, band.lon, 'unittype'), item('positive_value', positive, band.lon),
+    ...[0, 1].flatMap((sample) => [item('OFFSET', String(packed.offset), sample, 'offset'), item('SCALE', String(packed.scale), sample, 'scale')]),
   ].join('') : ''}</GDALMetadata>`;
   const north = south + (height - 1) * step;
   const half = pixelIsArea ? step / 2 : 0;
@@ -155,8 +158,8 @@ export function tiffBytes(table: MadeTable, options: TiffOptions): Uint8Array {
       const [lon, lat] = all[(height - 1 - row) * width + column]!;
       const hole = holes.some(([r, c]) => r === row && c === column);
       const at = pixels + (row * width + column) * 8;
-      view.setFloat32(at + 4 * band.lon, hole ? NO_DATA : lon * scale * (positive === 'west' ? -1 : 1), true);
-      view.setFloat32(at + 4 * band.lat, hole ? NO_DATA : lat * scale, true);
+      view.setFloat32(at + 4 * band.lon, hole ? NO_DATA : (lon * scale * (positive === 'west' ? -1 : 1) - packed.offset) / packed.scale, true);
+      view.setFloat32(at + 4 * band.lat, hole ? NO_DATA : (lat * scale - packed.offset) / packed.scale, true);
     }
   }
   return bytes;
