@@ -67,7 +67,7 @@ export const reduce: Operation = {
     max_fill_s: quantitySchema('s', { minimum: 0, default: D.maxFillS, description: 'A longer gap than this is never interpolated.' }),
     heading: { type: 'boolean', default: D.heading, description: 'Take the heading effect off, where lines walked in different directions tell it.' },
     drift: { type: 'string', enum: ['auto', 'always', 'never'], default: D.drift, description: 'Follow slow drift in time; "auto" where there is no base log.' },
-    drift_window_s: quantitySchema('s', { exclusiveMinimum: 0, default: D.driftWindowS, description: 'Window of the drift: longer than a line takes.' }),
+    drift_window_s: quantitySchema('s', { exclusiveMinimum: 0, description: 'Window of the drift; unsaid, three times as long as a line takes and at least five minutes.' }),
     regional_m: quantitySchema('m', { minimum: 0, description: 'Width over which the regional field is taken, 0 for none; unsaid, 30 sensor heights and at least 100 m.' }),
   }, { required: ['files'] }),
   inputs: {},

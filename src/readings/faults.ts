@@ -15,6 +15,9 @@ const READING_RANGE_NT = 20_000;
 const SURVEY_RANGE_NT = 5000;
 /** Anomalies of a whole survey have a middle near zero; the ground they lie over may shift it by as much as ore does. */
 const ANOMALY_RANGE_NT = 5000;
+/** µT, mT, gauss and slips of a decimal point; nearer than this share to the main field, that is what it was. */
+const UNIT_SCALES = [0.001, 0.01, 0.1, 10, 100, 1000, 100_000, 1_000_000];
+const UNIT_NEAR = 0.02;
 /** Below this a total field is one that a sensor writes when it has none: no place on earth has less than 22,000 nT. */
 const LEAST_FIELD_NT = 1;
 
@@ -67,8 +70,9 @@ function checkMiddle(middleNT: number, { kind, mainNT, source }: FieldRange): vo
     });
   }
   if (Math.abs(middleNT - mainNT) <= SURVEY_RANGE_NT) return;
-  const advice = Math.abs(middleNT) <= ANOMALY_RANGE_NT ? 'if the main field is already taken off, state "kind": "anomaly"'
-    : [0.001, 0.01, 0.1, 10, 100, 1000].some((scale) => Math.abs(middleNT * scale - mainNT) <= SURVEY_RANGE_NT) ? 'the values are in another unit; give them in nT'
+  const scaled = UNIT_SCALES.some((scale) => Math.abs(middleNT * scale - mainNT) <= UNIT_NEAR * mainNT);
+  const advice = scaled ? 'the values seem to be in another unit: give them in nT'
+    : Math.abs(middleNT) <= ANOMALY_RANGE_NT ? 'if the main field is already taken off, state "kind": "anomaly"'
       : 'check which column holds the field, the place and the date';
   throw new UserError({ code: 'field_out_of_range', where: source, found: `a total field of ${middleNT.toFixed(1)} nT in the middle of the readings`, wanted: `values near ${total}`, advice });
 }

@@ -22,7 +22,8 @@ export interface ReduceOptions {
   readonly heading: boolean;
   /** Follow the slow drift of the field in time; by itself only where there is no base log. */
   readonly drift: 'auto' | 'always' | 'never';
-  readonly driftWindowS: number;
+  /** Window of the drift; null for one that suits the lines. */
+  readonly driftWindowS: number | null;
   /** Width over which the regional field is taken; 0 for none, null for a width that suits the sensor's height. */
   readonly regionalM: number | null;
 }
@@ -44,7 +45,6 @@ export const REDUCE_DEFAULTS: ReduceOptions = Object.freeze({
   maxFillS: 900,
   heading: true,
   drift: 'auto',
-  /** Longer than a line takes, so that no source along one line is taken for drift. */
-  driftWindowS: 300,
+  driftWindowS: null,
   regionalM: null,
 });

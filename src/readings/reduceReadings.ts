@@ -22,6 +22,9 @@ import { FLAGS, type Readings, type ReductionStep } from './types.js';
 /** The regional field is as wide as this many sensor heights, and never narrower than the metres beside it. */
 const REGIONAL_HEIGHTS = 30;
 const REGIONAL_LEAST_M = 100;
+/** The drift's window holds this many lines, so that a source along one of them is not taken for drift. */
+const DRIFT_LINES = 3;
+const DRIFT_LEAST_S = 300;
 /** Stretches that slow things are estimated from, as a share of the regional width. */
 const CHUNK_SHARE = 1 / 40;
 /** Readings from another month than the survey's date are more likely a wrong date than a late visit. */
@@ -176,12 +179,14 @@ function mainStep(work: Work, main: Float64Array): void {
 
 function driftStep(work: Work, settings: ReduceOptions): void {
   const chunks = chunksOf(work, work.field);
-  const drift = timeDrift(chunks, { windowS: settings.driftWindowS, regionalM: work.regionalM });
+  const lineS = median(work.runs.map(({ start, end }) => work.timeS[end - 1]! - work.timeS[start]!));
+  const windowS = settings.driftWindowS ?? Math.max(DRIFT_LEAST_S, DRIFT_LINES * lineS);
+  const drift = timeDrift(chunks, { windowS, regionalM: work.regionalM > 0 ? work.regionalM : REGIONAL_LEAST_M });
   const values = chunks.timeS.map(drift);
   work.warnings.push('The variation of the main field was estimated from the readings themselves; changes faster than some minutes stay in the residual.');
   add(work, {
     column: 'drift_nt', title: 'Drift', values: work.field.map((value, i) => value - drift(work.timeS[i]!)),
-    summary: `Slow drift from ${Math.min(...values).toFixed(1)} to ${Math.max(...values).toFixed(1)} nT over windows of ${settings.driftWindowS} s taken off.`,
+    summary: `Slow drift from ${Math.min(...values).toFixed(1)} to ${Math.max(...values).toFixed(1)} nT over windows of ${Math.round(windowS)} s taken off.`,
   });
 }
 
