@@ -38,7 +38,6 @@ interface Ground {
 export class OpenWays {
   private readonly ground: Ground;
   private readonly origin: readonly [number, number];
-  private readonly known = new Map<string, Way>();
   private readonly seen = new Map<string, Array<readonly [corner: number, lengthM: number]>>();
 
   constructor(open: Area) {
@@ -50,13 +49,7 @@ export class OpenWays {
   way(ax: number, ay: number, bx: number, by: number): Way {
     const straight = Math.hypot(bx - ax, by - ay);
     if (this.ground.index === null || straight === 0) return { lengthM: straight, kind: 'straight' };
-    const key = ax < bx || (ax === bx && ay <= by) ? `${ax},${ay},${bx},${by}` : `${bx},${by},${ax},${ay}`;
-    let found = this.known.get(key);
-    if (!found) {
-      found = this.find(ax - this.origin[0], ay - this.origin[1], bx - this.origin[0], by - this.origin[1]);
-      this.known.set(key, found);
-    }
-    return found;
+    return this.find(ax - this.origin[0], ay - this.origin[1], bx - this.origin[0], by - this.origin[1]);
   }
 
   /** Length that counts in the search for an order. */

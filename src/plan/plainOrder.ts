@@ -1,5 +1,5 @@
 import type { Piece } from './parallelLines.js';
-import type { Step } from './walkOrder.js';
+import type { Step } from './tour.js';
 
 /** Lines one after the other, every second one backwards; the pieces of a line in the order they lie. `pieces` go by v, then u. */
 export function plainOrder(pieces: readonly Piece[]): Step[] {
