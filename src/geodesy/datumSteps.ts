@@ -1,6 +1,6 @@
 import { ELLIPSOIDS, fromGeocentric, toGeocentric } from './ellipsoid.js';
 import { UNSTATED_ACCURACY_M } from './gridIdentity.js';
-import { applyHelmert, ITRF2014_TO_ITRF2020, ITRF2014_TO_NAD83_2011, reverseHelmert, type Xyz } from './helmert.js';
+import { applyHelmert, helmertAt, ITRF2014_TO_ITRF2020, ITRF2014_TO_NAD83_2011, reverseHelmert, type Xyz } from './helmert.js';
 import { meanShiftAt } from './meanShift.js';
 import { reverseOffsetAt } from './offsetTables.js';
 import type { Datum, DatumSetting, ShiftGrid } from './types.js';
@@ -75,14 +75,16 @@ export function receiverStep({ frame, epoch }: Receiver, reverse: boolean): Step
   if (frame === 'NAD83(2011)') return (lonDeg, latDeg) => ({ lonDeg, latDeg, name: 'none (receiver on NAD83(2011))', sdM: 0, sharedSdM: 0 });
   const ellipsoid = frame === 'WGS 84' ? ELLIPSOIDS['WGS 84'] : ELLIPSOIDS.NAD83;
   const nad83 = ELLIPSOIDS['NAD83(2011)'];
-  const toItrf2014 = (xyz: Xyz): Xyz => (frame === 'ITRF2020' ? reverseHelmert(ITRF2014_TO_ITRF2020, epoch, xyz) : xyz);
-  const fromItrf2014 = (xyz: Xyz): Xyz => (frame === 'ITRF2020' ? applyHelmert(ITRF2014_TO_ITRF2020, epoch, xyz) : xyz);
+  const toNad83 = helmertAt(ITRF2014_TO_NAD83_2011, epoch);
+  const toItrf2020 = helmertAt(ITRF2014_TO_ITRF2020, epoch);
+  const toItrf2014 = (xyz: Xyz): Xyz => (frame === 'ITRF2020' ? reverseHelmert(toItrf2020, xyz) : xyz);
+  const fromItrf2014 = (xyz: Xyz): Xyz => (frame === 'ITRF2020' ? applyHelmert(toItrf2020, xyz) : xyz);
   const name = reverse ? `NAD83(2011) to ${frame} at ${at} (EPSG:8970, reversed)` : `${frame} at ${at} to NAD83(2011) (EPSG:8970)`;
   const years = Math.abs(epoch - ITRF2014_TO_NAD83_2011.epoch);
   return (lonDeg, latDeg) => {
     const [lon, lat] = reverse
-      ? fromGeocentric(ellipsoid, ...fromItrf2014(reverseHelmert(ITRF2014_TO_NAD83_2011, epoch, toGeocentric(nad83, lonDeg, latDeg))))
-      : fromGeocentric(nad83, ...applyHelmert(ITRF2014_TO_NAD83_2011, epoch, toItrf2014(toGeocentric(ellipsoid, lonDeg, latDeg))));
+      ? fromGeocentric(ellipsoid, ...fromItrf2014(reverseHelmert(toNad83, toGeocentric(nad83, lonDeg, latDeg))))
+      : fromGeocentric(nad83, ...applyHelmert(toNad83, toItrf2014(toGeocentric(ellipsoid, lonDeg, latDeg))));
     const motion = (lonDeg < PACIFIC_BELT_EAST_DEG ? MOTION_PACIFIC_M_PER_YEAR : MOTION_STABLE_M_PER_YEAR) * years;
     return { lonDeg: lon, latDeg: lat, name, sdM: 0, sharedSdM: Math.hypot(motion, frame === 'WGS 84' ? WGS84_SD_M : 0) };
   };

@@ -26,16 +26,32 @@ export const ITRF2014_TO_ITRF2020: Helmert = {
 
 const MAS_RAD = Math.PI / 180 / 3600 / 1000;
 
-/** Earth-centred metres at a time (decimal year) from the shift's source frame to its target. Source: EPSG Guidance Note 7-2, method 1056. */
-export function applyHelmert(shift: Helmert, year: number, [x, y, z]: Xyz): Xyz {
+/** A shift at one time: metres, radians, ratio. */
+export interface HelmertAt {
+  readonly t: Xyz;
+  readonly r: Xyz;
+  readonly scale: number;
+}
+
+/** The parameters at a time (decimal year). */
+export function helmertAt(shift: Helmert, year: number): HelmertAt {
   const dt = year - shift.epoch;
-  const [tx, ty, tz] = shift.translationM.map((value, axis) => value + shift.translationRate[axis]! * dt) as [number, number, number];
-  const [rx, ry, rz] = shift.rotationMas.map((value, axis) => (value + shift.rotationRate[axis]! * dt) * MAS_RAD) as [number, number, number];
-  const scale = 1 + (shift.scalePpb + shift.scaleRate * dt) * 1e-9;
+  const at = (values: Xyz, rates: Xyz, axis: 0 | 1 | 2): number => values[axis] + rates[axis] * dt;
+  const { translationM, translationRate, rotationMas, rotationRate } = shift;
+  return {
+    t: [at(translationM, translationRate, 0), at(translationM, translationRate, 1), at(translationM, translationRate, 2)],
+    r: [at(rotationMas, rotationRate, 0) * MAS_RAD, at(rotationMas, rotationRate, 1) * MAS_RAD, at(rotationMas, rotationRate, 2) * MAS_RAD],
+    scale: 1 + (shift.scalePpb + shift.scaleRate * dt) * 1e-9,
+  };
+}
+
+/** Earth-centred metres from the shift's source frame to its target. Source: EPSG Guidance Note 7-2, method 1056. */
+export function applyHelmert({ t, r, scale }: HelmertAt, [x, y, z]: Xyz): Xyz {
+  const [rx, ry, rz] = r;
   return [
-    tx + scale * (x + rz * y - ry * z),
-    ty + scale * (-rz * x + y + rx * z),
-    tz + scale * (ry * x - rx * y + z),
+    t[0] + scale * (x + rz * y - ry * z),
+    t[1] + scale * (-rz * x + y + rx * z),
+    t[2] + scale * (ry * x - rx * y + z),
   ];
 }
 
@@ -43,10 +59,10 @@ export function applyHelmert(shift: Helmert, year: number, [x, y, z]: Xyz): Xyz 
 const REVERSE_ROUNDS = 3;
 
 /** The same shift backwards, exact to rounding: not with signs changed, which would leave the products of rotations. */
-export function reverseHelmert(shift: Helmert, year: number, target: Xyz): Xyz {
+export function reverseHelmert(shift: HelmertAt, target: Xyz): Xyz {
   let source = target;
   for (let round = 0; round < REVERSE_ROUNDS; round++) {
-    const forward = applyHelmert(shift, year, source);
+    const forward = applyHelmert(shift, source);
     source = [source[0] + target[0] - forward[0], source[1] + target[1] - forward[1], source[2] + target[2] - forward[2]];
   }
   return source;
