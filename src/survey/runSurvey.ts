@@ -58,6 +58,7 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
     const inputs = Object.fromEntries(Object.keys(operation.inputs).filter((role) => values.has(role)).map((role) => [role, values.get(role)]));
     const outputs = await operation.run({
       site, parameters, inputs, files: host.files, seed: survey.seed,
+      before: { warnings: [...warnings], operations: steps.map((step) => step.operation) },
       progress: (message) => host.progress(`${operation.id}: ${message}`),
       warn: (message) => warn(`${operation.id}: ${message}`),
     });
