@@ -26,16 +26,16 @@ export const RESIDUAL_RAMP: Ramp = Object.freeze({
 });
 
 /**
- * For a chance from 0 to 1: pale yellow over green to deep blue. Our own, laid out in OKLab with lightness falling
- * evenly all the way, so that it also reads in grey and with any colour blindness.
+ * For a chance from 0 to 1: pale yellow over green to blue. Our own, laid out in OKLab with lightness falling evenly all
+ * the way, so that it also reads in grey and with any colour blindness; it stays light enough for lines drawn over it.
  */
 export const CHANCE_RAMP: Ramp = Object.freeze({
   name: 'chance', kind: 'sequential',
   stops: [
-    { t: 0, lightness: 0.97, chroma: 0.03, hueDeg: 100 },
-    { t: 0.35, lightness: 0.77, chroma: 0.1, hueDeg: 150 },
-    { t: 0.65, lightness: 0.6, chroma: 0.1, hueDeg: 195 },
-    { t: 1, lightness: 0.4, chroma: 0.1, hueDeg: 250 },
+    { t: 0, lightness: 0.97, chroma: 0.055, hueDeg: 102 },
+    { t: 0.35, lightness: 0.823, chroma: 0.1, hueDeg: 150 },
+    { t: 0.65, lightness: 0.697, chroma: 0.1, hueDeg: 195 },
+    { t: 1, lightness: 0.55, chroma: 0.105, hueDeg: 240 },
   ],
 });
 

@@ -14,7 +14,7 @@ export function findingsSection({ findings }: ReportContent): Html | null {
 <section id="findings">
 <h2>Findings</h2>
 ${table(findings.list, [
-    { head: 'Record', names: true, cell: ({ recordId }) => recordId || NONE },
+    { head: 'Record', names: true, cell: ({ recordId }) => html`<span class="word">${recordId || NONE}</span>` },
     { head: 'Anomaly', cell: ({ anomalyId }) => anomalyId || NONE },
     { head: 'Finding', cell: ({ finding }) => html`<span class="word">${findingSign(finding)} ${FINDING_WORDS[finding]}</span>` },
     { head: 'Match', kind: 'number', cell: ({ pMatch }) => chanceCell(pMatch) },
@@ -49,7 +49,7 @@ export function digSection(content: ReportContent): Html | null {
 <p>In this order. Read the <a href="#cautions">cautions</a> first. Coordinates: ${site.frame.name} (${site.frame.code}), and WGS 84 in degrees.</p>
 ${table(list, [
     { head: 'Dig', names: true, kind: 'number', cell: ({ digOrder }) => digOrder },
-    { head: 'Casing', cell: ({ anomalyId, recordId }) => html`${anomalyId || recordId}${anomalyId && recordId ? html`<br><small>record ${recordId}</small>` : ''}` },
+    { head: 'Casing', cell: ({ anomalyId, recordId }) => html`${anomalyId || recordId}${anomalyId && recordId ? html`<br><small class="word">record ${recordId}</small>` : ''}` },
     { head: `Easting, ${symbol}`, kind: 'number', cell: ({ x, y }) => framePlace(site, x, y).east },
     { head: `Northing, ${symbol}`, kind: 'number', cell: ({ x, y }) => framePlace(site, x, y).north },
     { head: 'Latitude, °', kind: 'number', cell: ({ x, y }) => geographicPlace(site, x, y).lat },

@@ -81,8 +81,9 @@ export function capital(text: string): string {
   return text.charAt(0).toUpperCase() + text.slice(1);
 }
 
-/** Ends a sentence of somebody else's with one full stop. */
+/** Makes a sentence of somebody else's words: a capital, unless it begins with a name of a file or column, and one full stop. */
 export function sentence(text: string): string {
-  const trimmed = capital(text.trim());
-  return /[.!?]$/.test(trimmed) || trimmed === '' ? trimmed : `${trimmed}.`;
+  const trimmed = text.trim();
+  const begun = /^[a-z][a-z-]*(?:[ ,;]|$)/.test(trimmed) ? capital(trimmed) : trimmed;
+  return /[.!?]$/.test(begun) || begun === '' ? begun : `${begun}.`;
 }

@@ -5,13 +5,15 @@ import { gridPicture, type GridPicture } from './gridPicture.js';
 import { html, type Html } from './html.js';
 import { mapLayers } from './mapDrawing.js';
 import { mapFrame } from './mapFrame.js';
-import { LEGEND_HEIGHT, LEGEND_WIDTH, mapLegend, type ColourKey } from './mapLegend.js';
+import { LEGEND_WIDTH, mapLegend, type ColourKey } from './mapLegend.js';
 import { legendValues, residualRange } from './residualRange.js';
 import { round } from './symbols.js';
 import type { ReportContent, ReportOptions } from './types.js';
 
 /** Between a map and its legend. */
 const GAP = 26;
+/** Below a map. */
+const FOOT = 14;
 
 /** Residual field with all that was walked, recorded and found. */
 export function residualMap(content: ReportContent, { pictureCells }: ReportOptions): Html {
@@ -24,7 +26,7 @@ export function residualMap(content: ReportContent, { pictureCells }: ReportOpti
   const picture = grid && range ? gridPicture(grid, { ramp: RESIDUAL_RAMP, range, mostCells: pictureCells }) : null;
   return figure(content, {
     id: 'residual', picture, key, title: 'Map of the residual field',
-    caption: html`Residual magnetic field, records, and anomalies. ${range && html`Colours bend: even through the noise (to about ±${number(range.knee!, 1)}${NBSP}nT), by logarithm above it. `}${cells(grid, picture)}`,
+    caption: html`Residual magnetic field, records, and anomalies. ${range && html`Colours go evenly through the noise (to about ±${number(range.knee!, 1)}${NBSP}nT) and by logarithm above it. `}${cells(grid, picture)}`,
   });
 }
 
@@ -47,12 +49,13 @@ export function detectionMap(content: ReportContent, { pictureCells }: ReportOpt
 function figure(content: ReportContent, { id, picture, key, title, caption }: { id: string; picture: GridPicture | null; key: ColourKey | null; title: string; caption: Html }): Html {
   const frame = mapFrame(content);
   const width = Math.round(frame.left + frame.width + GAP + LEGEND_WIDTH);
-  const height = Math.round(frame.top + Math.max(frame.height + 6, LEGEND_HEIGHT - (key ? 0 : 230)));
+  const legend = mapLegend(content, frame, key, frame.left + frame.width + GAP);
+  const height = Math.round(Math.max(frame.top + frame.height + FOOT, legend.bottom));
   return html`
 <figure class="map">
 <div class="scroll"><svg viewBox="0 0 ${width} ${height}" role="img" aria-labelledby="${id}-title ${id}-caption"><title id="${id}-title">${title}</title>
 ${mapLayers(content, frame, picture, id)}
-${mapLegend(content, frame, key, frame.left + frame.width + GAP)}
+${legend.drawing}
 </svg></div>
 <figcaption id="${id}-caption">${caption}</figcaption>
 </figure>`;

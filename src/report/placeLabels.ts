@@ -27,6 +27,8 @@ const CHARACTER = 6.6;
 const LINE = 13;
 /** Half-width of a marker that labels keep off. */
 const MARKER = 8;
+/** Corners that overlap by no more than this, in square units, do not touch to the eye. */
+const SLIGHT = 16;
 const RINGS = [11, 20, 32, 46];
 const DIRECTIONS = [[1, 0], [-1, 0], [0, -1], [0, 1], [0.8, -0.7], [-0.8, -0.7], [0.8, 0.7], [-0.8, 0.7]] as const;
 
@@ -41,9 +43,9 @@ export function placeLabels(labels: readonly Label[], bounds: Box): PlacedLabel[
         const middle = label.x + dx * (distance + (dx === 0 ? 0 : width / 2));
         const box = around(middle, label.y + dy * distance, width);
         const cost = taken.reduce((sum, other) => sum + overlap(box, other), 0) + outside(box, bounds) * 4;
-        if (best === null || cost < best.cost) best = { box, cost, ring };
+        if (best === null || (best.cost > SLIGHT && cost < best.cost)) best = { box, cost, ring };
       }
-      if (best!.cost === 0) break;
+      if (best!.cost <= SLIGHT) break;
     }
     const { box, ring } = best!;
     taken.push(box);

@@ -12,9 +12,9 @@ export function recordsSection({ records, site }: ReportContent): Html | null {
 <section id="records">
 <h2>Records</h2>
 ${table(records.placed, [
-    { head: 'Record', names: true, cell: ({ recordId, source, row }) => html`${recordId}<br><small>${source}, row ${row}</small>` },
+    { head: 'Record', names: true, cell: ({ recordId, source, row }) => html`<span class="word">${recordId}</span><br><small>${source}, row ${row}</small>` },
     { head: 'Datum', cell: ({ datum }) => datum },
-    { head: 'Moved by', cell: ({ shift, group }) => html`${shift}${group && group.sharedSdM > 0 ? html`<br><small>shared error ${number(group.sharedSdM, 1)} m on each axis</small>` : ''}` },
+    { head: 'Moved by', cell: ({ shift, group }) => html`${shift}${group && group.sharedSdM > 0 ? html`<br><small>shared error ${number(group.sharedSdM, 2)} m on each axis</small>` : ''}` },
     { head: 'Rests on', cell: ({ basis, note }) => html`${basis}${note ? html`<br><small>${note}</small>` : ''}` },
     { head: `Place, ${symbol}`, kind: 'number', cell: ({ x, y }) => { const place = framePlace(site, x, y); return html`E ${place.east}<br>N ${place.north}`; } },
     { head: '95 % half-axes, m', kind: 'number', cell: ({ semiMajM, semiMinM }) => `${number(semiMajM, 1)} × ${number(semiMinM, 1)}` },
@@ -25,7 +25,7 @@ ${table(records.placed, [
     none: 'No record has a place.',
   })}
 ${records.unplaced.length > 0 && table(records.unplaced, [
-    { head: 'Record', names: true, cell: ({ recordId, row }) => recordId || `row ${row}` },
+    { head: 'Record', names: true, cell: ({ recordId, row }) => html`<span class="word">${recordId || `row ${row}`}</span>` },
     { head: 'File and row', cell: ({ source, row }) => `${source}, row ${row}` },
     { head: 'Column', cell: ({ column }) => column },
     { head: 'Value', cell: ({ value }) => html`<q>${value}</q>` },

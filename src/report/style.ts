@@ -22,15 +22,15 @@ p{margin:.7em 0;max-width:74ch}
 .kind{margin:0;color:var(--mark);font-weight:600;letter-spacing:.02em}
 .lead{font-size:1.2rem;line-height:1.5}
 a{color:var(--mark);text-underline-offset:.15em}
-small{color:var(--soft);font-size:.86em}
+small{font-weight:400;color:var(--soft);font-size:.86em}
 code{font:.9em ui-monospace,"SF Mono",Consolas,monospace}
 q{quotes:"“" "”"}
 .facts{display:grid;grid-template-columns:repeat(auto-fit,minmax(210px,1fr));gap:.2em 2.2em;margin:0 0 1.2em;padding:0}
 .facts dt{color:var(--soft);font-size:.86em}
 .facts dd{margin:0}
-nav ul{list-style:none;display:flex;flex-wrap:wrap;gap:.25em 1.3em;margin:0;padding:.8em 0;border-top:1px solid var(--line);border-bottom:1px solid var(--line)}
+nav ul{max-width:none;list-style:none;display:flex;flex-wrap:wrap;gap:.25em 1.3em;margin:0;padding:.8em 0;border-top:1px solid var(--line);border-bottom:1px solid var(--line)}
 .note{border-left:3px solid var(--line);padding-left:1em}
-.tally{list-style:none;display:grid;grid-template-columns:repeat(auto-fit,minmax(132px,1fr));gap:10px;margin:1.4em 0;padding:0}
+.tally{max-width:none;list-style:none;display:grid;grid-template-columns:repeat(auto-fit,minmax(138px,1fr));gap:10px;margin:1.4em 0;padding:0}
 .tally li{display:flex;align-items:center;gap:.6em;background:var(--panel);border:1px solid var(--line);border-radius:6px;padding:.5em .8em;line-height:1.25}
 .tally b{display:block;font:600 1.5rem/1.1 "Iowan Old Style","Palatino Linotype",Palatino,Georgia,serif}
 .tally .none{color:var(--soft)}
@@ -49,13 +49,15 @@ nav ul{list-style:none;display:flex;flex-wrap:wrap;gap:.25em 1.3em;margin:0;padd
 ul{max-width:78ch}
 li{margin:.3em 0}
 .scroll{overflow-x:auto}
+.scroll+.scroll{margin-top:2em}
 figure{margin:1.4em 0 2em}
 figcaption{color:var(--soft);font-size:.92em;max-width:80ch;margin-top:.5em}
 .map svg{display:block;width:100%;min-width:620px;height:auto;background:#fff;border:1px solid var(--line);border-radius:6px;font:12px "Source Sans 3","Segoe UI",system-ui,"Helvetica Neue",Arial,sans-serif}
 .map .ground{fill:#f4f2ec}
 .map .neat{fill:none;stroke:#1d2529;stroke-width:1.2}
 .map .graticule{fill:none;stroke:#1d2529;stroke-opacity:.13;stroke-width:.7}
-.map .tick,.map .bar{fill:none;stroke:#1d2529;stroke-width:.9}
+.map .tick{fill:none}
+.map .tick,.map .bar{stroke:#1d2529;stroke-width:.9}
 .map .axis,.map .key{fill:#1d2529}
 .map .axis{font-size:11px;font-variant-numeric:tabular-nums}
 .map .middle{text-anchor:middle}

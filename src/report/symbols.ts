@@ -4,7 +4,7 @@ import { html, type Html } from './html.js';
 
 /** What each class is called and how it is drawn; the shape tells them apart, colour does not have to. */
 export const CLASS_WORDS: Readonly<Record<AnomalyClass, string>> = Object.freeze({
-  casing: 'casing', linear: 'line (pipe, cable, fence)', compact: 'compact iron', unresolved: 'unresolved',
+  casing: 'casing', linear: 'pipe, cable, fence', compact: 'compact iron', unresolved: 'unresolved',
 });
 
 export const FINDING_WORDS: Readonly<Record<FindingWord, string>> = Object.freeze({

@@ -48,7 +48,7 @@ export function planSection({ plan, site, findings }: ReportContent): Html | nul
   return html`
 <section id="plan">
 <h2>Plan</h2>
-<p>${number(areaM2(plan.searchArea) / 10_000, 2)} ha to be searched, lines ${length(plan.spacingM, unit)} apart, ${number(plan.lineAzimDeg)}° from grid north. ${counted(survey.length, 'line')} of ${total(survey)} km and ${counted(tie.length, 'tie line')} of ${total(tie)} km, in ${counted(new Set(plan.lines.map(({ sortie }) => sortie)).size, 'outing')}.</p>
+<p>${number(areaM2(plan.searchArea) / 10_000, 2)} ha to be searched, lines ${length(plan.spacingM, unit)} apart, ${number(plan.lineAzimDeg)}° from grid north. ${counted(survey.length, 'line')} (${total(survey)} km) and ${counted(tie.length, 'tie line')} (${total(tie)} km), in ${counted(new Set(plan.lines.map(({ sortie }) => sortie)).size, 'outing')}.</p>
 ${table(plan.chances, [
     { head: 'Record', names: true, cell: ({ recordId }) => recordId },
     { head: 'Planned: covered', kind: 'number', cell: ({ pCovered }) => chanceCell(pCovered) },
