@@ -11,7 +11,7 @@ import { crs } from '../geodesy/crs.js';
 import { datumShift, type DatumSetting } from '../geodesy/datumShift.js';
 import { decimalYear } from '../geodesy/decimalYear.js';
 import { readShiftGrid, type ShiftGrid } from '../geodesy/shiftGrid.js';
-import type { Crs, Datum, DatumShift } from '../geodesy/types.js';
+import type { Crs, Datum, DatumShift, ReceiverFrame } from '../geodesy/types.js';
 import { clipAreas } from './clipAreas.js';
 import { readArea } from './readArea.js';
 import type { Site } from './types.js';
@@ -27,7 +27,7 @@ export interface SiteSettings {
   readonly exclusions: readonly string[];
   /** Datum-shift grids, or folders of them. */
   readonly grids: readonly string[];
-  readonly receiver?: DatumSetting['receiver'];
+  readonly receiver?: { readonly frame: ReceiverFrame; readonly epoch?: number };
   readonly target?: {
     readonly poleAm?: readonly [number, number];
     readonly depthM?: readonly [number, number];
@@ -48,27 +48,27 @@ export const SITE_DEFAULTS = Object.freeze({
 
 /** A parcel wider than this is more likely in another unit than a day's work on foot or from the air, m. */
 const WIDEST_PARCEL_M = 300_000;
+const DATUMS: ReadonlySet<string> = new Set<Datum>(['NAD27', 'NAD83', 'NAD83(2011)', 'WGS 84']);
 const GRID_FILES: ReadonlySet<string> = new Set(['gsb', 'tif', 'tiff', 'ct2', 'lla', '']);
 
 /** Reads the ground and settles the frame, the datum shifts, the main field and the target. */
-export async function makeSite(settings: SiteSettings, { files, where, warn }: {
-  files: FileSource & { list?(folder: string): Promise<string[]> }; where: string; warn(message: string): void;
-}): Promise<Site> {
+export async function makeSite(settings: SiteSettings, { files, where, warn }: { files: Files; where: string; warn(message: string): void }): Promise<Site> {
   const frame = crs(settings.crs, `${where}, crs`);
   if (frame.kind !== 'projected') {
     throw new UserError({ code: 'crs_unknown', where: `${where}, crs`, found: `${frame.code} (${frame.name}), which is geographic`, wanted: 'a projected CRS: its State Plane or UTM zone' });
   }
   const year = decimalYear(settings.date, `${where}, date`);
-  const grids = await readGrids(settings.grids, files);
+  const grids = await readGrids(settings.grids, { files, warn });
+  const setting: Partial<DatumSetting> = { grids, ...(settings.receiver ? { receiver: { epoch: year, ...settings.receiver } } : {}) };
   const shifts = new Map<Datum, DatumShift>();
   const shiftFrom = (datum: Datum): DatumShift => {
     const known = shifts.get(datum);
     if (known) return known;
-    const made = datumShift(datum, frame.datum, { grids, ...(settings.receiver ? { receiver: settings.receiver } : {}) });
+    const made = datumShift(datum, frame.datum, setting);
     shifts.set(datum, made);
     return made;
   };
-  const toWgs84 = datumShift(frame.datum, 'WGS 84', { grids, ...(settings.receiver ? { receiver: settings.receiver } : {}) });
+  const toWgs84 = datumShift(frame.datum, 'WGS 84', setting);
   const namedCrs = settings.parcelCrs === undefined ? undefined : crs(settings.parcelCrs, `${where}, parcel_crs`);
   const read = (path: string): Promise<Area> => readArea(path, { files, frame, shiftFrom, crs: namedCrs, warn });
   const parcel = await read(settings.parcel);
@@ -87,14 +87,19 @@ export async function makeSite(settings: SiteSettings, { files, where, warn }: {
   };
 }
 
-async function readGrids(paths: readonly string[], files: FileSource & { list?(folder: string): Promise<string[]> }): Promise<ShiftGrid[]> {
+type Files = FileSource & { list?(folder: string): Promise<string[]> };
+
+async function readGrids(paths: readonly string[], { files, warn }: { files: Files; warn(message: string): void }): Promise<ShiftGrid[]> {
   const names: string[] = [];
   for (const path of paths) {
-    if (await files.has(path)) names.push(path);
-    else if (files.list) names.push(...(await files.list(path)).filter((name) => GRID_FILES.has(extension(name))).toSorted());
-    else await files.read(path);
+    if (!await files.has(path) && files.list) names.push(...(await files.list(path)).filter((name) => GRID_FILES.has(extension(name))).toSorted());
+    else names.push(path);
   }
-  return Promise.all(names.map(async (name) => readShiftGrid(baseName(name), await files.read(name))));
+  const grids = await Promise.all(names.map(async (name) => readShiftGrid(baseName(name), await files.read(name))));
+  for (const { name, from, to } of grids) {
+    if (!DATUMS.has(from) || !DATUMS.has(to)) warn(`${name} leads from ${from} to ${to}, between which Ironplat moves nothing; it is not used`);
+  }
+  return grids;
 }
 
 function checkExtent(parcel: Area, source: string, frame: Crs, warn: (message: string) => void): void {

@@ -15,8 +15,8 @@ export const COMMON_SCHEMA: ObjectSchema = objectSchema({
   grids: { type: 'array', items: pathSchema({}), description: 'Datum-shift grids (NTv2, GeoTIFF, CTABLE V2), or folders of them.', default: SITE_DEFAULTS.grids },
   receiver: objectSchema({
     frame: { type: 'string', enum: ['WGS 84', 'ITRF2014', 'ITRF2020', 'NAD83(2011)'], description: 'Reference frame that the receiver\'s positions stand in.' },
-    epoch: { type: 'number', minimum: 1980, maximum: 2100, description: 'When they were taken, decimal year.' },
-  }, { required: ['frame', 'epoch'], description: 'What the receiver\'s "WGS 84" really is. Unsaid, WGS 84 and NAD83 are taken as the same within a stated accuracy of metres.' }),
+    epoch: { type: 'number', minimum: 1980, maximum: 2100, description: 'When they were taken, decimal year; the date where it is not said.' },
+  }, { required: ['frame'], description: 'What the receiver\'s "WGS 84" really is. Unsaid, WGS 84 and NAD83 are taken as the same within a stated accuracy of metres.' }),
   target: objectSchema({
     pole_am: rangeSchema('A.m', { description: 'Pole strength of the casing\'s top, lowest and highest.' }),
     depth_m: rangeSchema('m', { description: 'Depth of the casing\'s top below ground, lowest and highest.', default: SITE_DEFAULTS.depthM }),
