@@ -140,16 +140,8 @@ function cleanStep(work: Work, settings: ReduceOptions): void {
 function baseStep(work: Work, base: NonNullable<ReadingsSource['base']>, settings: ReduceOptions): void {
   const log = readBase(base);
   const { variation, datumNT, filled, longestFilledS, uncovered } = baseVariation(work.timeS, log, settings);
-  let low = Infinity;
-  let high = -Infinity;
-  for (let i = 0; i < variation.length; i++) {
-    if (Number.isNaN(variation[i]!)) {
-      if (work.flag[i] === 0) work.flag[i] = FLAG.base_gap;
-      continue;
-    }
-    low = Math.min(low, variation[i]!);
-    high = Math.max(high, variation[i]!);
-  }
+  const { low, high } = rangeOf(variation);
+  for (let i = 0; i < variation.length; i++) if (Number.isNaN(variation[i]!) && work.flag[i] === 0) work.flag[i] = FLAG.base_gap;
   if (filled > 0) work.warnings.push(`${log.source}: ${filled} readings lie in gaps of the base log of up to ${Math.round(longestFilledS)} s, interpolated across; short pulsations stay in them.`);
   if (uncovered > 0) work.warnings.push(`${log.source}: ${uncovered} readings are not covered by the base log and were left out (base_gap).`);
   if (uncovered === variation.length) {
@@ -170,10 +162,10 @@ function headStep(work: Work, main: Float64Array): void {
 }
 
 function mainStep(work: Work, main: Float64Array): void {
-  const known = main.filter((value) => !Number.isNaN(value)).toSorted();
+  const { low, high } = rangeOf(main);
   add(work, {
     column: 'main_nt', title: 'Main field', values: work.field.map((value, i) => value - main[i]!),
-    summary: `Main field (World Magnetic Model) from ${known[0]!.toFixed(1)} to ${known[known.length - 1]!.toFixed(1)} nT taken off.`,
+    summary: `Main field (World Magnetic Model) from ${low.toFixed(1)} to ${high.toFixed(1)} nT taken off.`,
   });
 }
 
@@ -182,11 +174,11 @@ function driftStep(work: Work, settings: ReduceOptions): void {
   const lineS = median(work.runs.map(({ start, end }) => work.timeS[end - 1]! - work.timeS[start]!));
   const windowS = settings.driftWindowS ?? Math.max(DRIFT_LEAST_S, DRIFT_LINES * lineS);
   const drift = timeDrift(chunks, { windowS, regionalM: work.regionalM > 0 ? work.regionalM : REGIONAL_LEAST_M });
-  const values = chunks.timeS.map(drift);
+  const { low, high } = rangeOf(chunks.timeS.map(drift));
   work.warnings.push('The variation of the main field was estimated from the readings themselves; changes faster than some minutes stay in the residual.');
   add(work, {
     column: 'drift_nt', title: 'Drift', values: work.field.map((value, i) => value - drift(work.timeS[i]!)),
-    summary: `Slow drift from ${Math.min(...values).toFixed(1)} to ${Math.max(...values).toFixed(1)} nT over windows of ${Math.round(windowS)} s taken off.`,
+    summary: `Slow drift from ${low.toFixed(1)} to ${high.toFixed(1)} nT over windows of ${Math.round(windowS)} s taken off.`,
   });
 }
 
@@ -200,10 +192,10 @@ function regionalStep(work: Work): void {
     // A reading with too few others near has no regional field of its own; the survey's middle stands for it.
     return Number.isNaN(value) ? middle : value;
   });
-  const known = removed.filter((value) => !Number.isNaN(value)).toSorted();
+  const { low, high } = rangeOf(removed);
   add(work, {
     column: 'reg_nt', title: 'Regional field', values: work.field.map((value, i) => value - removed[i]!),
-    summary: `Regional field over ${Math.round(work.regionalM)} m from ${known[0]!.toFixed(1)} to ${known[known.length - 1]!.toFixed(1)} nT taken off (robust local planes).`,
+    summary: `Regional field over ${Math.round(work.regionalM)} m from ${low.toFixed(1)} to ${high.toFixed(1)} nT taken off (robust local planes).`,
   });
 }
 
@@ -240,6 +232,17 @@ function walkedTimes(x: Float64Array, y: Float64Array, { speedMS, decimalYear }:
     if (!Number.isNaN(step)) time += step / speedMS;
     return time;
   });
+}
+
+/** Least and greatest of the values; NaN ignored. */
+function rangeOf(values: Float64Array): { low: number; high: number } {
+  let low = Infinity;
+  let high = -Infinity;
+  for (const value of values) {
+    if (value < low) low = value;
+    if (value > high) high = value;
+  }
+  return { low, high };
 }
 
 function percent(part: number, whole: number): string {
