@@ -15,8 +15,8 @@ export interface Listening extends DetectorOptions {
   readonly heightM: number;
 }
 
-/** Ground that counts for a record's own place; the rest of its density weighs a thousandth. */
-const PLACE_MASS = 0.999;
+/** Ground that counts for a record's own place; what of its density lies beyond weighs nothing. */
+const PLACE_MASS = 1 - 1e-5;
 /** Cells of one grid at most: a blunder spreads over a mile, and its mean needs no finer ones. */
 const MOST_CELLS = 40_000;
 /** Readings are taken together over this share of the distance to the source: nothing of a signal is lost on that. */
@@ -32,16 +32,16 @@ export function planChances(lines: readonly PlanLine[], records: readonly WellRe
   const { heard, pooled } = pooledReadings(lines, listening);
   const near = searchArea(records.map(({ density }) => density), open, { mass: PLACE_MASS, marginM: 0 });
   const fine = near.length > 0 ? gridsOver(near, heard, pooled) : null;
-  const coarse = gridsOver(open, heard, pooled);
+  const coarse = records.some(({ density }) => partsOf(density, 'blunder').parts.length > 0) ? gridsOver(open, heard, pooled) : null;
   return records.map(({ recordId, density }) => {
     const [place, blunder] = [partsOf(density, 'place'), partsOf(density, 'blunder')];
-    const over = (of: 'covered' | 'chance'): number => (fine ? expectation(place, fine[of]) : 0) + expectation(blunder, coarse[of]);
+    const over = (of: 'covered' | 'chance'): number => (fine ? expectation(place, fine[of]) : 0) + (coarse ? expectation(blunder, coarse[of]) : 0);
     return { recordId, pCovered: over('covered'), pDetect: over('chance') };
   });
 }
 
 function partsOf(density: Density, role: 'place' | 'blunder'): Density {
-  return { parts: density.parts.filter((part) => part.role === role) };
+  return { parts: density.parts.filter((part) => part.role === role && part.weight > 0) };
 }
 
 function gridsOver(area: Area, heard: Heard, detector: DetectorOptions): DetectionGrids {
