@@ -29,7 +29,7 @@ export function cautionsSection(): Html {
 <section id="cautions" class="cautions">
 <h2>Cautions</h2>
 <ul>
-<li><b>Before any digging, call the local one-call service</b> (811 in the United States) and wait until buried lines are marked. An anomaly that this report calls a line may be a pipeline or cable in use; so may one that it calls something else.</li>
+<li><b>Before any digging, call the local one-call service</b> (811 in the United States) and wait until buried lines are marked. An anomaly that this report takes for a pipe or cable may be in use and under pressure or voltage; so may one that it takes for something else.</li>
 <li><b>Old wells give off gas.</b> Methane burns and explodes; hydrogen sulphide kills in low concentrations and dulls the sense of smell; both can fill a hole. Measure with a gas meter before and during the work, come from upwind, and do not enter an excavation without the precautions for confined spaces.</li>
 <li><b>No ignition sources</b> near a well or an open excavation: no flame, no smoking, no spark, no running engine that is not rated for it.</li>
 <li><b>Dig by hand or by vacuum</b> near the casing. A bucket can break a wellhead or an old plug and start a flow. Have a plan for one.</li>

@@ -63,7 +63,8 @@ ${legend.drawing}
 
 function cells(grid: Grid | undefined, picture: GridPicture | null): string {
   if (!grid || !picture) return 'No grid was made.';
-  const shown = picture.columns === grid.width ? '' : `, shown by means of ${number(grid.width / picture.columns, 1)} of them`;
+  const side = Math.round(grid.width / picture.columns);
+  const shown = side === 1 ? '' : `, shown by means over ${side} × ${side} of them`;
   return `Cells of ${number(grid.cellM, decimalsOf(grid.cellM))}${NBSP}m${shown}.`;
 }
 

@@ -5,8 +5,8 @@ import { Html } from './html.js';
  * colours mean the same by night. Contrast of text is at least 4.5 to 1 (WCAG 2.2, success criterion 1.4.3).
  */
 export const STYLE = new Html(`
-:root{--paper:#fbfaf6;--panel:#ffffff;--ink:#1d2529;--soft:#566066;--line:#d9d6cb;--hair:#e9e6dc;--mark:#0f5c5c;--markpale:#e4efec;--warn:#8a3d0a;--warnpale:#fbf0e4;color-scheme:light dark}
-@media (prefers-color-scheme:dark){:root{--paper:#15191b;--panel:#1c2225;--ink:#e6e4dc;--soft:#a5aeb1;--line:#3a4347;--hair:#2a3235;--mark:#7fcdc4;--markpale:#1d3533;--warn:#f0b27a;--warnpale:#33261a}}
+:root{--paper:#fbfaf6;--panel:#ffffff;--ink:#1d2529;--soft:#566066;--line:#d9d6cb;--hair:#e9e6dc;--mark:#0f5c5c;--warn:#8a3d0a;--warnpale:#fbf0e4;color-scheme:light dark}
+@media (prefers-color-scheme:dark){:root{--paper:#15191b;--panel:#1c2225;--ink:#e6e4dc;--soft:#a5aeb1;--line:#3a4347;--hair:#2a3235;--mark:#7fcdc4;--warn:#f0b27a;--warnpale:#33261a}}
 *{box-sizing:border-box}
 html{-webkit-text-size-adjust:100%}
 body{margin:0;background:var(--paper);color:var(--ink);font:16px/1.55 "Source Sans 3","Segoe UI",system-ui,"Helvetica Neue",Arial,sans-serif}
