@@ -1,3 +1,4 @@
+import { UserError } from '../errors.js';
 import { publicSchema } from './schema.js';
 import type { Operation, Slot } from './types.js';
 
@@ -16,9 +17,17 @@ const MEDIA: Readonly<Record<Slot['form'], readonly string[]>> = {
 
 /**
  * An operation as a process description of OGC API - Processes - Part 1 (OGC 18-062r2): its parameters and input
- * slots are the inputs, its output slots the outputs.
+ * slots are the inputs, its output slots the outputs. Throws UserError `operation_invalid` where a parameter and an
+ * input slot share a name.
  */
 export function processDescription(operation: Operation): Record<string, unknown> {
+  const twice = Object.keys(operation.inputs).find((role) => role in operation.parameters.properties);
+  if (twice !== undefined) {
+    throw new UserError({
+      code: 'operation_invalid', where: `operation "${operation.id}"`, found: `"${twice}" both as a parameter and as an input`,
+      wanted: 'names of their own: a process description lists both among its inputs',
+    });
+  }
   const required = new Set(operation.parameters.required ?? []);
   const parameters = Object.entries(operation.parameters.properties).map(([key, schema]) => [key, {
     title: schema.title ?? key.replaceAll('_', ' '),
@@ -50,7 +59,7 @@ function slotSchema(slot: Slot): Record<string, unknown> {
 }
 
 /**
- * The schema dialect of OGC 18-062r2 is that of OpenAPI 3.0: no `examples`, no `const`, and exclusive bounds are
+ * The schema dialect of OGC 18-062r2 is that of OpenAPI 3.0: no `examples`, and exclusive bounds are
  * flags beside the bound.
  */
 function openApi(schema: unknown): unknown {
@@ -59,8 +68,9 @@ function openApi(schema: unknown): unknown {
   const { examples, exclusiveMinimum, exclusiveMaximum, properties, ...rest } = schema as Record<string, unknown>;
   const out: Record<string, unknown> = Object.fromEntries(Object.entries(rest).map(([key, value]) => [key, key === 'default' || key === 'enum' ? value : openApi(value)]));
   if (Array.isArray(examples) && examples.length > 0) out.example = examples[0];
-  if (exclusiveMinimum !== undefined) Object.assign(out, { minimum: exclusiveMinimum, exclusiveMinimum: true });
-  if (exclusiveMaximum !== undefined) Object.assign(out, { maximum: exclusiveMaximum, exclusiveMaximum: true });
+  // With both bounds given the tighter one holds; there is one place for it.
+  if (typeof exclusiveMinimum === 'number' && !(Number(out.minimum) > exclusiveMinimum)) Object.assign(out, { minimum: exclusiveMinimum, exclusiveMinimum: true });
+  if (typeof exclusiveMaximum === 'number' && !(Number(out.maximum) < exclusiveMaximum)) Object.assign(out, { maximum: exclusiveMaximum, exclusiveMaximum: true });
   if (properties) out.properties = Object.fromEntries(Object.entries(properties).map(([key, value]) => [key, openApi(value)]));
   return out;
 }

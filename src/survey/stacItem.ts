@@ -1,6 +1,6 @@
 import { areaBounds } from '../density/area.js';
-import type { Area } from '../density/types.js';
 import type { Site } from '../site/types.js';
+import { orientRings } from '../vector/rings.js';
 import { VERSION } from '../version.js';
 import type { OutputTrace } from './provenance.js';
 
@@ -23,7 +23,7 @@ export interface AssetTrace extends OutputTrace {
   readonly roles: readonly string[];
   /** Present for a raster. */
   readonly raster?: { readonly epsg: number; readonly width: number; readonly height: number; readonly west: number; readonly north: number; readonly cell: number; readonly unit: string; readonly statistics?: Readonly<Record<string, number>> };
-  /** Present for a vector layer or table in a CRS other than WGS 84. */
+  /** CRS of a vector layer or table (4326 for GeoJSON and GPX); absent for a file without coordinates. */
   readonly epsg?: number;
 }
 
@@ -37,20 +37,22 @@ export function stacItem(site: Site, assets: readonly AssetTrace[], { id, start,
     return [round(lonDeg), round(latDeg)];
   };
   const box = areaBounds(site.parcel);
-  const corners = [place(box.west, box.south), place(box.east, box.south), place(box.east, box.north), place(box.west, box.north)];
-  const lons = corners.map(([lon]) => lon);
-  const lats = corners.map(([, lat]) => lat);
+  const polygons = site.parcel.map((rings) => orientRings(rings.map((ring) => ring.map(([x, y]) => place(x, y))), 'counter-clockwise'));
+  const places = polygons.flat(2);
+  const lons = places.map(([lon]) => lon!);
+  const lats = places.map(([, lat]) => lat!);
+  const hasRaster = assets.some(({ raster }) => raster);
   return {
     type: 'Feature',
     stac_version: STAC_VERSION,
-    stac_extensions: Object.values(EXTENSIONS),
+    // The raster extension is valid only where one of its fields is used.
+    stac_extensions: Object.values(EXTENSIONS).filter((url) => hasRaster || url !== EXTENSIONS.raster),
     id,
-    geometry: multiPolygon(site.parcel, place),
+    geometry: polygons.length === 1 ? { type: 'Polygon', coordinates: polygons[0] } : { type: 'MultiPolygon', coordinates: polygons },
     bbox: [Math.min(...lons), Math.min(...lats), Math.max(...lons), Math.max(...lats)],
     properties: {
       title: site.title,
-      datetime: start === null ? `${date}T00:00:00Z` : start === end ? start : null,
-      ...(start !== null && start !== end ? { start_datetime: start, end_datetime: end } : {}),
+      ...timeOf(start, end, date),
       'proj:code': frame.code,
       'proj:bbox': [box.west, box.south, box.east, box.north].map((value) => value / frame.metresPerUnit),
       'processing:software': { ironplat: VERSION, ...Object.fromEntries(steps.map((step) => [`ironplat ${step.id}`, step.version])) },
@@ -58,6 +60,12 @@ export function stacItem(site: Site, assets: readonly AssetTrace[], { id, start,
     links: [],
     assets: Object.fromEntries(assets.map((asset) => [asset.key, assetObject(asset)])),
   };
+}
+
+/** Start and end together, or one time; STAC takes neither end of a span without the other. */
+function timeOf(start: string | null, end: string | null, date: string): Record<string, string | null> {
+  if (start !== null && end !== null && start !== end) return { datetime: null, start_datetime: start, end_datetime: end };
+  return { datetime: start ?? end ?? `${date}T00:00:00Z` };
 }
 
 function assetObject(asset: AssetTrace): Record<string, unknown> {
@@ -69,19 +77,15 @@ function assetObject(asset: AssetTrace): Record<string, unknown> {
     roles: asset.roles,
     'file:size': asset.bytes,
     'file:checksum': `${SHA256_MULTIHASH}${asset.sha256}`,
-    ...(asset.epsg !== undefined ? { 'proj:code': `EPSG:${asset.epsg}` } : {}),
+    // The item's own code would hold for an asset that says nothing; null stands for a file without coordinates.
+    'proj:code': asset.epsg === undefined ? null : `EPSG:${asset.epsg}`,
     ...(raster ? {
       'proj:code': `EPSG:${raster.epsg}`,
       'proj:shape': [raster.height, raster.width],
       'proj:transform': [raster.cell, 0, raster.west, 0, -raster.cell, raster.north, 0, 0, 1],
-      bands: [{ data_type: 'float32', nodata: 'nan', ...(raster.unit ? { unit: raster.unit } : {}), ...(raster.statistics ? { statistics: raster.statistics } : {}) }],
+      bands: [{ data_type: 'float32', nodata: 'nan', 'raster:sampling': 'area', ...(raster.unit ? { unit: raster.unit } : {}), ...(raster.statistics ? { statistics: raster.statistics } : {}) }],
     } : {}),
   };
-}
-
-function multiPolygon(area: Area, place: (x: number, y: number) => [number, number]): unknown {
-  const polygons = area.map((rings) => rings.map((ring) => ring.map(([x, y]) => place(x, y))));
-  return polygons.length === 1 ? { type: 'Polygon', coordinates: polygons[0] } : { type: 'MultiPolygon', coordinates: polygons };
 }
 
 function round(degrees: number): number {
