@@ -7,6 +7,9 @@ export interface ReduceOptions {
   readonly positionCorrS: number;
   /** Time by which a recorded position is older than the reading beside it. */
   readonly positionLagS: number;
+  /** Where the sensor is from the receiver's antenna, along the course and to the right of it. */
+  readonly sensorForwardM: number;
+  readonly sensorRightM: number;
   /** Speed from which times are made where a file has none; null leaves them unknown. */
   readonly speedMS: number | null;
   /** Ground above the ellipsoid, for the main field. */
@@ -35,6 +38,8 @@ export const REDUCE_DEFAULTS: ReduceOptions = Object.freeze({
   /** Errors of such a receiver wander over about a minute (common practice). */
   positionCorrS: 60,
   positionLagS: 0,
+  sensorForwardM: 0,
+  sensorRightM: 0,
   speedMS: null,
   groundHeightM: 0,
   despike: true,

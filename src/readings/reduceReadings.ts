@@ -15,6 +15,7 @@ import { rawReadings, type RawReadings } from './rawReadings.js';
 import type { ReadingsSource } from './readingSource.js';
 import { REDUCE_DEFAULTS, type ReduceOptions } from './reduceOptions.js';
 import { regionalField } from './regionalField.js';
+import { sensorPlaces } from './sensorPlaces.js';
 import { findRuns, type Run } from './runs.js';
 import { timeDrift } from './timeDrift.js';
 import { FLAGS, type Readings, type ReductionStep } from './types.js';
@@ -22,8 +23,8 @@ import { FLAGS, type Readings, type ReductionStep } from './types.js';
 /** The regional field is as wide as this many sensor heights, and never narrower than the metres beside it. */
 const REGIONAL_HEIGHTS = 30;
 const REGIONAL_LEAST_M = 100;
-/** The drift's window holds this many lines, so that a source along one of them is not taken for drift. */
-const DRIFT_LINES = 3;
+/** The drift's window holds this many lines: one in its middle has a third of the weight, so a source along it is no drift. */
+const DRIFT_LINES = 5;
 const DRIFT_LEAST_S = 300;
 /** Stretches that slow things are estimated from, as a share of the regional width. */
 const CHUNK_SHARE = 1 / 40;
@@ -101,8 +102,9 @@ function prepare(raw: RawReadings, settings: ReduceOptions, site: Site, source: 
   }
   const first = findRuns({ ...raw, timeS });
   const timed = timeS.some((time) => !Number.isNaN(time));
-  const { x, y } = settings.positionLagS !== 0 && timed ? advancePositions({ x: raw.x, y: raw.y, timeS }, first, settings.positionLagS) : raw;
-  const courseDeg = courses({ x, y }, first);
+  const antenna = settings.positionLagS !== 0 && timed ? advancePositions({ x: raw.x, y: raw.y, timeS }, first, settings.positionLagS) : raw;
+  const courseDeg = courses(antenna, first);
+  const { x, y } = sensorPlaces(antenna, courseDeg, settings);
   const { line, lineNames } = nameLines(raw, { x, y, courseDeg }, first);
   const runs = findRuns({ count: raw.count, x, y, timeS, line });
   if (!timed && settings.speedMS !== null) {

@@ -1,5 +1,5 @@
 import { choleskyInverse, choleskySolve, tryCholesky } from '../numerics/cholesky.js';
-import { madSd } from '../numerics/robust.js';
+import { madSd, median } from '../numerics/robust.js';
 
 export interface RobustFit {
   readonly parameters: Float64Array;
@@ -24,6 +24,9 @@ export interface RobustRows {
 /** Misfits beyond this many deviations count nothing: 95 % as efficient as least squares where noise is Gaussian. */
 const BIWEIGHT_SD = 4.685;
 const ROUNDS = 12;
+/** Rounds of least absolute deviations before; a misfit below this share of the spread weighs no more than it. */
+const ABSOLUTE_ROUNDS = 4;
+const ABSOLUTE_FLOOR = 0.1;
 /** Smaller changes of every parameter, against the spread, end the rounds. */
 const SETTLED = 1e-4;
 
@@ -36,15 +39,16 @@ const SETTLED = 1e-4;
 export function robustFit(rows: RobustRows): RobustFit | null {
   const { count, width, target } = rows;
   if (count < width) return null;
-  const misfit = Float64Array.from(target);
+  // The start weighs by distance from the median: a least-squares start would lean on the very rows to be left out.
+  const middle = median(target);
+  const misfit = Float64Array.from(target, (value) => value - middle);
   let scale = madSd(misfit);
   let fit: { parameters: Float64Array; normal: Float64Array } | null = null;
   for (let round = 0; round < ROUNDS; round++) {
-    // The first rounds weigh by the reciprocal misfit: few outliers cannot bend the start then.
-    const floor = Math.max(scale, Number.MIN_VALUE) * 1e-3;
     const next = solve(rows, (i) => {
-      if (scale === 0) return 1;
-      if (round < 4) return round === 0 ? 1 : 1 / Math.max(Math.abs(misfit[i]!) / scale, floor, 0.1);
+      // Half of the rows agree to the last digit: they alone decide.
+      if (scale === 0) return misfit[i] === 0 ? 1 : 1e-12;
+      if (round < ABSOLUTE_ROUNDS) return 1 / Math.max(Math.abs(misfit[i]!) / scale, ABSOLUTE_FLOOR);
       const u = misfit[i]! / (BIWEIGHT_SD * scale);
       return Math.abs(u) < 1 ? (1 - u * u) ** 2 : 0;
     });
@@ -58,7 +62,7 @@ export function robustFit(rows: RobustRows): RobustFit | null {
       misfit[i] = value;
     }
     scale = madSd(misfit);
-    if (round > 4 && change < SETTLED * scale) break;
+    if (round > ABSOLUTE_ROUNDS && change <= SETTLED * scale) break;
   }
   const inverse = choleskyInverse(fit!.normal, width);
   return { parameters: fit!.parameters, scale, sd: Float64Array.from({ length: width }, (_, k) => scale * Math.sqrt(inverse[k * width + k]!)) };

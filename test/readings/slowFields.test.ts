@@ -147,8 +147,8 @@ describe('timeDrift', () => {
 
   it('leaves a pipeline along a line where it is', () => {
     const made = chunks(walked(), (walk, i) => 80 * (1 + ((walk.x[i]! - CORNER[0] - 105) / 3) ** 2) ** -1);
-    const drift = timeDrift(made, { windowS: 3 * 167, regionalM: 100 });
-    // One line is on top of it: its own median would be all 80 nT; an eighth of that is let pass.
-    for (const time of made.timeS) expect(Math.abs(drift(time))).toBeLessThan(10);
+    const drift = timeDrift(made, { windowS: 5 * 167, regionalM: 100 });
+    // One line is on top of it: its own median would be all 80 nT.
+    expect(Math.max(...made.timeS.map((time) => Math.abs(drift(time))))).toBeLessThan(4);
   });
 });

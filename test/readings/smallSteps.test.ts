@@ -5,6 +5,7 @@ import { courses } from '../../src/readings/courses.js';
 import { findLines } from '../../src/readings/findLines.js';
 import { advancePositions } from '../../src/readings/positionLag.js';
 import { robustFit } from '../../src/readings/robustFit.js';
+import { sensorPlaces } from '../../src/readings/sensorPlaces.js';
 import { findRuns } from '../../src/readings/runs.js';
 import { walked } from './support.js';
 
@@ -27,6 +28,17 @@ describe('advancePositions', () => {
   it('leaves a run of one and rows without a time alone', () => {
     expect([...advancePositions({ ...columns, timeS: new Float64Array(4).fill(NaN) }, run, 1).x]).toEqual([0, 1, 2, 4]);
     expect([...advancePositions(columns, [{ start: 0, end: 1 }], 1).x]).toEqual([0, 1, 2, 4]);
+  });
+});
+
+describe('sensorPlaces', () => {
+  it('turns with the course, by hand', () => {
+    const at = { x: new Float64Array(4), y: new Float64Array(4) };
+    const { x, y } = sensorPlaces(at, Float64Array.from([0, 90, 180, NaN]), { sensorForwardM: 2, sensorRightM: 0.5 });
+    [[0.5, 2], [2, -0.5], [-0.5, -2], [0, 0]].forEach(([e, n], i) => {
+      expect(x[i]).toBeCloseTo(e!, 12);
+      expect(y[i]).toBeCloseTo(n!, 12);
+    });
   });
 });
 
