@@ -2,6 +2,7 @@ import { UserError } from '../errors.js';
 import { median } from '../numerics/robust.js';
 import { formatUtc } from '../table/calendar.js';
 import { numberColumn } from '../table/numberColumn.js';
+import { inOtherUnit } from './faults.js';
 import { despike } from './despike.js';
 import { readTimes } from './rawReadings.js';
 import type { BaseFile } from './readingSource.js';
@@ -38,8 +39,11 @@ const STATION = { stepM: 0, sourceM: Infinity } as const;
 /** What a base sensor writes when it has no field. */
 const LEAST_FIELD_NT = 1;
 
-/** Reads a base log: times in order, false readings and doubles left out. */
-export function readBase(base: BaseFile): BaseLog {
+/**
+ * Reads a base log: times in order, false readings and doubles left out. A log may count from any zero, but one in
+ * another unit than nT is a UserError `field_out_of_range`: its variation would be too small by that factor.
+ */
+export function readBase(base: BaseFile, mainNT: number): BaseLog {
   const { table, columns } = base;
   const times = readTimes(table, columns, base);
   const field = numberColumn(table, columns.field, { allowEmpty: true });
@@ -49,6 +53,13 @@ export function readBase(base: BaseFile): BaseLog {
     throw new UserError({ code: 'no_data', where: table.source, found: `${single.length} base readings with time and field`, wanted: 'two or more' });
   }
   const values = Float64Array.from(single, (i) => field[i]!);
+  const middle = median(values);
+  if (inOtherUnit(middle, mainNT)) {
+    throw new UserError({
+      code: 'field_out_of_range', where: `${table.source}, column ${columns.field}`, found: `a field of ${middle.toFixed(3)} in the middle of the base log`,
+      wanted: `values in nT, as the main field there, ${Math.round(mainNT)} nT`, advice: 'the values seem to be in another unit',
+    });
+  }
   const spike = despike(values, [{ start: 0, end: values.length }], STATION);
   return {
     source: table.source, spikes: spike.reduce((sum, one) => sum + one, 0),

@@ -60,6 +60,11 @@ export function flagFaults(raw: RawReadings, range: FieldRange): Uint8Array {
   return flag;
 }
 
+/** Whether a total field would be the main field in another unit or with its decimal point elsewhere. */
+export function inOtherUnit(middleNT: number, mainNT: number): boolean {
+  return UNIT_SCALES.some((scale) => Math.abs(middleNT * scale - mainNT) <= UNIT_NEAR * mainNT);
+}
+
 function checkMiddle(middleNT: number, { kind, mainNT, source }: FieldRange): void {
   const total = `the main field there, ${Math.round(mainNT)} nT`;
   if (kind === 'anomaly') {
@@ -70,8 +75,7 @@ function checkMiddle(middleNT: number, { kind, mainNT, source }: FieldRange): vo
     });
   }
   if (Math.abs(middleNT - mainNT) <= SURVEY_RANGE_NT) return;
-  const scaled = UNIT_SCALES.some((scale) => Math.abs(middleNT * scale - mainNT) <= UNIT_NEAR * mainNT);
-  const advice = scaled ? 'the values seem to be in another unit: give them in nT'
+  const advice = inOtherUnit(middleNT, mainNT) ? 'the values seem to be in another unit: give them in nT'
     : Math.abs(middleNT) <= ANOMALY_RANGE_NT ? 'if the main field is already taken off, state "kind": "anomaly"'
       : 'check which column holds the field, the place and the date';
   throw new UserError({ code: 'field_out_of_range', where: source, found: `a total field of ${middleNT.toFixed(1)} nT in the middle of the readings`, wanted: `values near ${total}`, advice });

@@ -70,7 +70,7 @@ export function reduceReadings(source: ReadingsSource, site: Site, options: Part
   const raw = rawReadings(source.files, site, { timesNeeded: settings.speedMS === null && (source.base !== undefined || drifts) });
   const work = prepare(raw, settings, site, name);
   cleanStep(work, settings);
-  if (source.base) baseStep(work, source.base, settings);
+  if (source.base) baseStep(work, source.base, { ...settings, mainNT: site.mainField.totalNT });
   if (settings.kind === 'total_field') {
     const main = mainFieldAlong({ ...work, timeS: work.timeS }, site, settings.groundHeightM);
     if (settings.heading) headStep(work, main);
@@ -139,8 +139,8 @@ function cleanStep(work: Work, settings: ReduceOptions): void {
   });
 }
 
-function baseStep(work: Work, base: NonNullable<ReadingsSource['base']>, settings: ReduceOptions): void {
-  const log = readBase(base);
+function baseStep(work: Work, base: NonNullable<ReadingsSource['base']>, settings: ReduceOptions & { readonly mainNT: number }): void {
+  const log = readBase(base, settings.mainNT);
   const { variation, datumNT, filled, longestFilledS, uncovered } = baseVariation(work.timeS, log, settings);
   const { low, high } = rangeOf(variation);
   for (let i = 0; i < variation.length; i++) if (Number.isNaN(variation[i]!) && work.flag[i] === 0) work.flag[i] = FLAG.base_gap;

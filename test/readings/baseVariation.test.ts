@@ -5,7 +5,7 @@ import { REDUCE_DEFAULTS } from '../../src/readings/reduceOptions.js';
 import { START_S, table } from './support.js';
 
 function log(times: readonly number[], field: readonly number[]) {
-  return readBase({ table: table([{ name: 't', utcS: times.map((t) => START_S + t), decimals: 2 }, { name: 'f', values: field, decimals: 2 }], 'base.csv'), columns: { time: 't', field: 'f' } });
+  return readBase({ table: table([{ name: 't', utcS: times.map((t) => START_S + t), decimals: 2 }, { name: 'f', values: field, decimals: 2 }], 'base.csv'), columns: { time: 't', field: 'f' } }, 51_600);
 }
 
 function variation(times: readonly number[], base: ReturnType<typeof log>, options = {}) {
@@ -74,6 +74,13 @@ describe('baseVariation', () => {
     expect(error.message).toContain('2026-04-14T13:05:00Z to 2026-04-14T13:15:00Z');
     expect(error.message).toContain('4 h apart');
     expect(complaint(() => variation([-40 * 86_400], base)).message).toContain('check the dates');
+  });
+
+  it('refuses a log in microtesla and takes one that counts from its own zero', () => {
+    const error = complaint(() => log([0, 3, 6], [51.61, 51.62, 51.61]));
+    expect(error.code).toBe('field_out_of_range');
+    expect(error.message).toContain('base.csv, column f');
+    expect([...variation([3], log([0, 3, 6], [-4, 2, 6])).variation]).toEqual([0]);
   });
 
   it('refuses a log with fewer than two readings', () => {

@@ -4,6 +4,8 @@ import { describe, expect, it } from 'vitest';
 import { DEMO_SEED, demoFiles, demoScenario } from '../../fixtures/demo/generate.js';
 import { distanceTo, HOUSE, isInside, PARCEL, PIPELINE, POND } from '../../fixtures/demo/ground.js';
 import { degreesMinutesSeconds } from '../../fixtures/demo/permits.js';
+import { readParameters } from '../../src/operations/readParameters.js';
+import { SCENARIO_SCHEMA } from '../../src/simulation/scenarioSchema.js';
 import { parseCsv } from '../../src/table/parseCsv.js';
 
 const FOLDER = join(import.meta.dirname, '../../fixtures/demo');
@@ -50,6 +52,12 @@ describe('the files in fixtures/demo', () => {
 });
 
 describe('demoScenario', () => {
+  it('is a scenario file that the schema takes as it is', () => {
+    const { scenario } = demoScenario(DEMO_SEED);
+    const read = readParameters(JSON.parse(JSON.stringify(scenario)), SCENARIO_SCHEMA, { where: 'scenario.json', resolve: (path) => path });
+    expect(read).toEqual(JSON.parse(JSON.stringify(scenario)));
+  });
+
   it.each(SEEDS)('lays seed %d out as stated', (seed) => {
     const { scenario, wells } = demoScenario(seed);
     expect(wells.filter((well) => well.permit === 'none' && well.casing)).toHaveLength(1);
