@@ -19,14 +19,17 @@ export interface Nature {
  */
 export const PRIOR = Object.freeze({ casing: 0.35, otherPole: 0.1, compact: 0.35, linear: 0.2 });
 
-/** Strengths of poles that are no casings: log-uniform over this range, A·m (from memory: rods to heavy pipe). */
+/** Strengths of poles that are no casings, A·m, and moments of compact iron, A·m²: log-uniform (from memory: rods to heavy pipe; a ton of steel 100 to 1,000 A·m²). */
 const OTHER_POLE_AM: readonly [number, number] = [1, 2000];
+const COMPACT_AM2: readonly [number, number] = [0.3, 3000];
+/** Scrap and pipe ends lie shallow: depths fall off exponentially over this length, metres (common practice: ploughed in, backfilled). */
+const SHALLOW_M = 1;
+/** Density of ln strength and depth for a line, which has neither stated: that of the middle of the others. */
+const LINE_DENSITY = 0.05;
 /** The stated range of strengths is softened by this share at either end (one standard deviation of ln). */
 const STRENGTH_SOFT = 0.3;
 /** Tops are believed above or below the stated range by this share of the reach (one standard deviation). */
 const DEPTH_SOFT_REACHES = 0.12;
-/** Depths of other poles and their likes: uniform down to this many reaches. */
-const OTHER_DEPTH_REACHES = 2;
 /** No chance is stated nearer to 0 or 1 than this: models are never that true. */
 export const LEAST_CHANCE = 0.01;
 
@@ -34,20 +37,20 @@ export const LEAST_CHANCE = 0.01;
  * Posterior of a source's nature: information criterion of each kind, tempered by the misfit of the best (quasi-likelihood,
  * Burnham & Anderson 2002, section 2.5), times prior odds, times how well the pole fits the stated casing.
  */
-export function natureOf(refined: Refined, target: Target, pole: PoleValues | null, reachM: number): Nature {
+export function natureOf(refined: Refined, { pole, compact }: Candidates, { target, reachM }: { readonly target: Target; readonly reachM: number }): Nature {
   const { fit, bic } = refined;
   const misfit = Math.max(1, fit.chi2 / Math.max(1, fit.count - fit.parameters));
   const least = Math.min(bic.pole, bic.dipole, bic.line);
   const weight = (value: number) => Math.exp(-0.5 * (value - least) / misfit);
-  const fitOfCasing = pole ? casingDensity(pole, target, reachM) : 0;
-  const fitOfOther = pole ? 1 / (Math.log(OTHER_POLE_AM[1] / OTHER_POLE_AM[0]) * OTHER_DEPTH_REACHES * reachM) : 0;
-  const total = PRIOR.casing + PRIOR.otherPole;
-  // Where the pole is not the best fit its strength and depth are not at hand: the stated casing is given its benefit.
+  // Where a kind is not the best fit its strength and depth come from its own, worse fit: still what it would have to be.
+  const asCasing = PRIOR.casing * (pole ? casingDensity(pole, target, reachM) : 0);
+  const asOther = PRIOR.otherPole * (pole ? logUniform(Math.abs(pole.poleAM), OTHER_POLE_AM) * shallow(pole.depthM, pole.depthSdM) : 0);
+  const asCompact = PRIOR.compact * (compact ? logUniform(compact.momentAM2, COMPACT_AM2) * shallow(compact.depthM, compact.depthSdM) : 0);
   const parts = {
-    casing: weight(bic.pole) * (pole ? (total * PRIOR.casing * fitOfCasing) / (PRIOR.casing * fitOfCasing + PRIOR.otherPole * fitOfOther) : PRIOR.casing),
-    otherPole: weight(bic.pole) * (pole ? (total * PRIOR.otherPole * fitOfOther) / (PRIOR.casing * fitOfCasing + PRIOR.otherPole * fitOfOther) : PRIOR.otherPole),
-    compact: weight(bic.dipole) * PRIOR.compact,
-    linear: weight(bic.line) * PRIOR.linear,
+    casing: weight(bic.pole) * asCasing,
+    otherPole: weight(bic.pole) * asOther,
+    compact: weight(bic.dipole) * asCompact,
+    linear: weight(bic.line) * PRIOR.linear * LINE_DENSITY,
   };
   const sum = parts.casing + parts.otherPole + parts.compact + parts.linear;
   return { casing: parts.casing / sum, otherPole: parts.otherPole / sum, compact: parts.compact / sum, linear: parts.linear / sum, misfit };
@@ -59,6 +62,24 @@ export interface PoleValues {
   readonly depthM: number;
   readonly depthSdM: number;
 }
+
+/** What the source would be as each kind; null where that was not tried. */
+export interface Candidates {
+  readonly pole: PoleValues | null;
+  readonly compact: { readonly momentAM2: number; readonly depthM: number; readonly depthSdM: number } | null;
+}
+
+/** Density of ln value. A value outside the range counts a hundredth: nothing is impossible. */
+function logUniform(value: number, [low, high]: readonly [number, number]): number {
+  return (value >= low && value <= high ? 1 : 0.01) / Math.log(high / low);
+}
+
+/** Density of an exponential depth, one above ground counting by how far its error lets it reach below. */
+function shallow(depthM: number, depthSdM: number): number {
+  const sd = Math.hypot(depthSdM, DEPTH_SOFT_M);
+  return (normalCdf(depthM / sd) * Math.exp(-Math.max(0, depthM) / SHALLOW_M)) / SHALLOW_M;
+}
+const DEPTH_SOFT_M = 0.3;
 
 /** Density of ln strength and depth that the stated casing has, its edges softened, with the errors of the fit. */
 function casingDensity({ poleAM, poleSdAM, depthM, depthSdM }: PoleValues, { poleAM: [weak, strong], depthM: [shallow, deep] }: Target, reachM: number): number {

@@ -7,7 +7,7 @@ import type { Grid } from '../raster/types.js';
 import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
 import type { Alignment } from './alignment.js';
-import { LEAST_CHANCE, natureOf, type Nature, type PoleValues } from './classify.js';
+import { LEAST_CHANCE, natureOf, type Candidates, type Nature, type PoleValues } from './classify.js';
 import { parameterRange, type Fit, type Window } from './fitSources.js';
 import { circleOutline, contourOutline } from './outline.js';
 import type { Refined } from './refine.js';
@@ -53,9 +53,8 @@ export function sourceAnomaly(refined: Refined, context: DescribeContext): Draft
   const [x, y] = placeOf(source);
   const depthM = -source.values[2]!;
   const depthSdM = Math.sqrt(variance(2, 2));
-  const pole: PoleValues | null = source.kind === 'pole'
-    ? { poleAM: source.values[3]!, poleSdAM: Math.sqrt(variance(3, 3)), depthM, depthSdM } : null;
-  const nature = natureOf(refined, site.target, pole, survey.reachM);
+  const pole = asPole(refined.fits.pole);
+  const nature = natureOf(refined, { pole, compact: asCompact(refined.fits.dipole) }, { target: site.target, reachM: survey.reachM });
   const cov = source.kind === 'line' ? lineCovariance(source, variance(0, 0), survey.windowM) : [variance(0, 0), variance(0, 1), variance(1, 1)] as const;
   const { semiMajM, semiMinM, azimDeg } = ellipseOfCovariance(x, y, cov);
   const posSdM = Math.sqrt((cov[0] + cov[2]) / 2);
@@ -69,11 +68,28 @@ export function sourceAnomaly(refined: Refined, context: DescribeContext): Draft
     anomaly: {
       anomalyId: '', class: cls, pCasing: Math.min(1 - LEAST_CHANCE, Math.max(LEAST_CHANCE, nature.casing)), x, y, cov, semiMajM, semiMinM, azimDeg, posSdM,
       peakNT, snr: deflectionOf(refined.window, fit, source) / Math.sqrt(misfit), depthM, depthSdM,
-      poleAM: pole ? pole.poleAM : NaN, poleSdAM: pole ? pole.poleSdAM : NaN, momentAM2: sizes,
+      poleAM: source.kind === 'pole' ? source.values[3]! : NaN, poleSdAM: source.kind === 'pole' ? Math.sqrt(variance(3, 3)) : NaN, momentAM2: sizes,
       strikeDeg: source.kind === 'line' ? ((((source.values[1]! * 180) / Math.PI) % 180) + 180) % 180 : NaN,
       outline: outline.area, areaM2: outline.areaM2, note: why + outline.note,
     },
   };
+}
+
+function asPole(fit: Fit | undefined): PoleValues | null {
+  if (!fit) return null;
+  const { values, sd } = ownValues(fit);
+  return { poleAM: values[3]!, poleSdAM: sd(3), depthM: -values[2]!, depthSdM: sd(2) };
+}
+
+function asCompact(fit: Fit | undefined): Candidates['compact'] {
+  if (!fit) return null;
+  const { values, sd } = ownValues(fit);
+  return { momentAM2: Math.hypot(values[3]!, values[4]!, values[5]!), depthM: -values[2]!, depthSdM: sd(2) };
+}
+
+function ownValues(fit: Fit): { values: Float64Array; sd: (k: number) => number } {
+  const [from] = parameterRange(fit.sources, 0);
+  return { values: fit.sources[0]!.values, sd: (k) => Math.sqrt(fit.covariance[(from + k) * fit.parameters + from + k]!) };
 }
 
 /** Several sources in a row become one: a pipe, cable or fence. */

@@ -66,6 +66,8 @@ const LITTLE = 0.01;
 const COLLAR_SHARE = 0.3;
 /** The loose prior on height: this many sensor–source distances about the expected top. */
 const HEIGHT_PRIOR = 1;
+/** Averaging over a block and simplifying a casing to poles leave this share of the model as error, independent from block to block. */
+const MODEL_SHARE = 0.003;
 const MAX_LAMBDA = 1e8;
 
 /** Standard deviation and mean of the prior on every parameter. */
@@ -194,7 +196,7 @@ function linearise(window: Window, { sources, plane, states, model }: State, siz
   }
   columns.set(model.columns, (1 + PLANE) * n);
   const { slopeX, slopeY } = model;
-  const whiteVar = window.walk.whiteVar.map((variance, i) => variance + window.jitterVar[i]! * (slopeX[i]! ** 2 + slopeY[i]! ** 2));
+  const whiteVar = window.walk.whiteVar.map((variance, i) => variance + window.jitterVar[i]! * (slopeX[i]! ** 2 + slopeY[i]! ** 2) + (MODEL_SHARE * model.value[i]!) ** 2);
   const walk: Walk = { ...window.walk, whiteVar };
   const whitened = whiten(walk, model, columns);
   const prior = priors(window, sources, size);

@@ -15,6 +15,8 @@ export interface Refined {
   readonly bic: Readonly<Record<Kind | 'none', number>>;
   /** The source as each kind, to begin the next fit with. */
   readonly asKind: Readonly<Record<Kind, Source | undefined>>;
+  /** Best fit with the source as each kind. */
+  readonly fits: Readonly<Partial<Record<Kind, Fit>>>;
 }
 
 /** Neighbours that are fitted along with a source, at most, and how near they have to lie, in windows. */
@@ -59,6 +61,7 @@ export function refine(map: SourceMap, entry: Entry, { noise, kinds, before }: R
   const none = fitSources(window, others);
   return {
     entry, fit, window, bic: { pole: fits.pole?.bic ?? Infinity, dipole: fits.dipole?.bic ?? Infinity, line: fits.line?.bic ?? Infinity, none: none.bic },
+    fits,
     asKind: { pole: fits.pole?.sources[0], dipole: fits.dipole?.sources[0], line: fits.line?.sources[0] },
   };
 }
