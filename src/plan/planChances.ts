@@ -17,8 +17,9 @@ export interface Listening extends DetectorOptions {
 
 /** Ground that counts for a record's own place; what of its density lies beyond weighs nothing. */
 const PLACE_MASS = 1 - 1e-5;
-/** Cells of one grid at most: a blunder spreads over a mile, and its mean needs no finer ones. */
-const MOST_CELLS = 40_000;
+/** Cells of the grid round the places at most, and of the one for blunders: a mean over a mile needs no finer ones. */
+const PLACE_CELLS = 40_000;
+const BLUNDER_CELLS = 4_000;
 /** Readings are taken together over this share of the distance to the source: nothing of a signal is lost on that. */
 const POOL_DISTANCES = 0.15;
 
@@ -31,8 +32,8 @@ export function planChances(lines: readonly PlanLine[], records: readonly WellRe
   const { open, listening } = options;
   const { heard, pooled } = pooledReadings(lines, listening);
   const near = searchArea(records.map(({ density }) => density), open, { mass: PLACE_MASS, marginM: 0 });
-  const fine = near.length > 0 ? gridsOver(near, heard, pooled) : null;
-  const coarse = records.some(({ density }) => partsOf(density, 'blunder').parts.length > 0) ? gridsOver(open, heard, pooled) : null;
+  const fine = near.length > 0 ? gridsOver(near, heard, { ...pooled, mostCells: PLACE_CELLS }) : null;
+  const coarse = records.some(({ density }) => partsOf(density, 'blunder').parts.length > 0) ? gridsOver(open, heard, { ...pooled, mostCells: BLUNDER_CELLS }) : null;
   return records.map(({ recordId, density }) => {
     const [place, blunder] = [partsOf(density, 'place'), partsOf(density, 'blunder')];
     const over = (of: 'covered' | 'chance'): number => (fine ? expectation(place, fine[of]) : 0) + (coarse ? expectation(blunder, coarse[of]) : 0);
@@ -44,8 +45,8 @@ function partsOf(density: Density, role: 'place' | 'blunder'): Density {
   return { parts: density.parts.filter((part) => part.role === role && part.weight > 0) };
 }
 
-function gridsOver(area: Area, heard: Heard, detector: DetectorOptions): DetectionGrids {
-  return detectionGrid(heard, area, { ...detector, cellM: Math.max(DETECTION_GRID_DEFAULTS.cellM, Math.sqrt(areaM2(area) / MOST_CELLS)) });
+function gridsOver(area: Area, heard: Heard, { mostCells, ...detector }: DetectorOptions & { readonly mostCells: number }): DetectionGrids {
+  return detectionGrid(heard, area, { ...detector, cellM: Math.max(DETECTION_GRID_DEFAULTS.cellM, Math.sqrt(areaM2(area) / mostCells)) });
 }
 
 /** Readings along the lines, neighbours taken together with the noise that their mean has. */

@@ -1,6 +1,17 @@
 /** A plain decimal number, as coordinates are written. */
 export const numberText = /^[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?$/;
 
+/**
+ * For each text of a column whether it may have lost trailing zeros: it has fewer decimals than others, and none of the
+ * column's decimals ends in a zero, as where a spreadsheet has written them. Texts that are no plain number never have.
+ */
+export function mayLackZeros(texts: readonly string[]): boolean[] {
+  const plain = texts.map((text) => (numberText.test(text) ? decimalsOf(text) : null));
+  const most = plain.reduce<number>((largest, decimals) => Math.max(largest, decimals ?? 0), 0);
+  const keepsZeros = texts.some((text, i) => (plain[i] ?? 0) > 0 && text.endsWith('0'));
+  return plain.map((decimals) => !keepsZeros && decimals !== null && decimals < most);
+}
+
 /** Digits after the point of a plain number: `40.50` has 2. An exponent counts: `4.05e1` has 1. */
 export function decimalsOf(text: string): number {
   const [mantissa, exponent] = text.toLowerCase().split('e') as [string, string | undefined];

@@ -32,7 +32,7 @@ export function featureRecords(features: readonly InputFeature[], settings: { co
       const value = columns[key] === undefined ? null : feature.properties[columns[key]];
       return value === null || value === undefined ? '' : String(value).trim();
     };
-    return { ...recordHead(cell, { columns, source: name, row: i + 1 }), ...pointOf(feature, crs, resolution) };
+    return { ...recordHead(cell, { columns, row: i + 1 }), ...pointOf(feature, crs, resolution) };
   });
 }
 

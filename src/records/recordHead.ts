@@ -12,7 +12,7 @@ export type Cell = (key: keyof RecordColumns) => string;
 export type RecordHead = Omit<RawRecord, 'place' | 'coordinates'>;
 
 /** Everything but the coordinates; a length that nobody can read becomes the row's fault. */
-export function recordHead(cell: Cell, about: { columns: RecordColumns; source: string; row: number }): RecordHead {
+export function recordHead(cell: Cell, about: { columns: RecordColumns; row: number }): RecordHead {
   const { columns } = about;
   const lengths = { errorM: null as number | null, error90M: null as number | null, error95M: null as number | null };
   let fault: Fault | null = null;

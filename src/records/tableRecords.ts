@@ -2,9 +2,13 @@ import { UserError } from '../errors.js';
 import type { Crs } from '../geodesy/types.js';
 import type { TextTable } from '../table/types.js';
 import { anglesOf, projectedOf } from './coordinateText.js';
+import { mayLackZeros } from './digits.js';
 import type { RawPlace, RawRecord } from './rawRecord.js';
 import { mappedColumn, recordHead, type Cell } from './recordHead.js';
 import type { RecordColumns } from './recordSource.js';
+
+/** Said of a coordinate that is shorter than its column's others. */
+const LACKS_ZEROS = 'fewer decimals than others of the file, read as rounded; if a program cut zeros off, the place is better than said';
 
 /** Rows of a table with their coordinates as numbers. */
 export function tableRecords(table: TextTable, settings: { columns: RecordColumns; crs: Crs | null; westPositive: boolean }): RawRecord[] {
@@ -14,10 +18,13 @@ export function tableRecords(table: TextTable, settings: { columns: RecordColumn
     if (name !== undefined) stored.set(key, mappedColumn(table.columns, name, { key, source: table.source, names: table.names }));
   }
   const form = coordinateForm(table, settings);
+  const [first, second] = (form === 'angles' ? ['latitude', 'longitude'] as const : ['easting', 'northing'] as const)
+    .map((key) => mayLackZeros(stored.get(key)!.map((text) => text.trim())));
   return Array.from({ length: table.rows }, (_, i) => {
     const cell: Cell = (key) => (stored.get(key)?.[i] ?? '').trim();
+    const head = recordHead(cell, { columns, row: i + 1 });
     return {
-      ...recordHead(cell, { columns, source: table.source, row: i + 1 }),
+      ...head, note: first![i] || second![i] ? [head.note, LACKS_ZEROS].filter((text) => text !== '').join('; ') : head.note,
       ...(form === 'angles' ? anglesOf(cell, columns, westPositive) : projectedOf(cell, columns, settings.crs!)),
     };
   });

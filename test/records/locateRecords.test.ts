@@ -103,6 +103,18 @@ describe('error budget', () => {
   });
 });
 
+describe('digits', () => {
+  it('count per value; a shorter one among cut ones is noted', () => {
+    const { placed } = locateRecords([csv('id,lat,lon\nA,39.3001,-80.2001\nB,39.301,-80.2002\nC,39.3003,-80.2003\n')], testSite());
+    expect(placed[1]!.semiMajM).toBeCloseTo(2.4477 * NORTH_M * 1e-3 / Math.sqrt(12), 0);
+    expect(placed.map(({ note }) => note.includes('fewer decimals'))).toEqual([false, true, false]);
+  });
+  it('are not doubted where the column keeps its zeros', () => {
+    const { placed } = locateRecords([csv('id,lat,lon\nA,39.3010,-80.2001\nB,39.301,-80.2002\n')], testSite());
+    expect(placed.map(({ note }) => note)).toEqual(['', '']);
+  });
+});
+
 describe('datum', () => {
   const rows = 'id,lat,lon,datum\nA,39.30000,-80.20000,NAD 27\nB,39.30010,-80.20000,nad1983\nC,39.30020,-80.20000,\n';
   const columns = { ...LATLON, datum: 'datum' };
