@@ -151,6 +151,19 @@ describe('reduceReadings', () => {
     expect([...readings.line]).toEqual([...WALK.line]);
   });
 
+  it.each([[1, 0], [1, 2], [2, 6], [1, 200]])('works on %d lines of %d m with every step on', (lines, lengthM) => {
+    const walk = walked({ lines, lengthM });
+    const main = mainFieldAlong({ ...walk, flag: new Uint8Array(walk.x.length) }, SITE, 0);
+    const made = file(walk, main.map((value, i) => value + 40 + 0.1 * Math.sin(i)));
+    const base = baseLog(START_S - 60, walk.timeS.at(-1)! + 60, () => 51_700);
+    for (const source of [{ files: [made], base }, { files: [made] }]) {
+      const readings = reduceReadings(source, SITE);
+      expect(readings.count).toBe(walk.x.length);
+      // Regional field or the survey's middle is taken off: what is left is the ripple.
+      for (const value of readings.residual) expect(Math.abs(value)).toBeLessThan(0.25);
+    }
+  });
+
   it('takes a made day apart: base, heading and slope go, the casing stays', () => {
     const walk = walked({ lines: 20, spacingM: 10, stepM: 0.4 });
     const random = new Random(11);
