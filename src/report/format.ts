@@ -73,8 +73,8 @@ export function counted(count: number, one: string, many = `${one}s`): string {
 }
 
 /** `a`, `a and b`, `a, b and c`. */
-export function listed(words: readonly string[]): string {
-  return words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} and ${words.at(-1)}`;
+export function listed(words: readonly string[], last: 'and' | 'or' = 'and'): string {
+  return words.length < 2 ? words.join('') : `${words.slice(0, -1).join(', ')} ${last} ${words.at(-1)}`;
 }
 
 export function capital(text: string): string {

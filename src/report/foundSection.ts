@@ -1,7 +1,7 @@
 import type { Finding, FindingWord } from '../findings/types.js';
 import { counted, number } from './format.js';
 import { html, type Html } from './html.js';
-import { findingSentence, headline, unplacedSentence } from './sentences.js';
+import { findingSentence, headline, toldFindings, unplacedSentence } from './sentences.js';
 import { FINDING_WORDS, findingSign } from './symbols.js';
 import type { ReportContent } from './types.js';
 
@@ -11,7 +11,7 @@ const ORDER: readonly FindingWord[] = ['located', 'unrecorded', 'ambiguous', 'no
 /** What was found, in plain words. */
 export function foundSection(content: ReportContent): Html {
   const { findings, records } = content;
-  const list = findings?.list ?? [];
+  const list = toldFindings(content);
   const unplaced = records?.unplaced ?? [];
   return html`
 <section id="found">

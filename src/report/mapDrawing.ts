@@ -75,5 +75,5 @@ function tickLabels(content: ReportContent, frame: MapFrame): Html {
 <path class="tick" d="${east.map(({ at }) => `M${round(frame.x(at))} ${frame.top - 5}V${frame.top}`).join('')}${north.map(({ at }) => `M${frame.left - 5} ${round(frame.y(at))}H${frame.left}`).join('')}"/>
 ${east.map(({ at, value }) => html`<text class="axis middle" x="${round(frame.x(at))}" y="${frame.top - 9}">${number(value)}</text>`)}
 ${north.map(({ at, value }) => html`<text class="axis end" x="${frame.left - 8}" y="${round(frame.y(at) + 3.5)}">${number(value)}</text>`)}
-<text class="axis end" x="${frame.left - 8}" y="${frame.top - 9}">${symbol}</text>`;
+<text class="axis end" x="${frame.left - 8}" y="${round(frame.top + frame.height + 15)}">${symbol}</text>`;
 }

@@ -13,7 +13,7 @@ import type { ReportContent, ReportOptions } from './types.js';
 /** Between a map and its legend. */
 const GAP = 26;
 /** Below a map. */
-const FOOT = 14;
+const FOOT = 24;
 
 /** Residual field with all that was walked, recorded and found. */
 export function residualMap(content: ReportContent, { pictureCells }: ReportOptions): Html {

@@ -1,6 +1,6 @@
 import type { NoiseModel } from '../detection/types.js';
 import { madSd, quantile } from '../numerics/robust.js';
-import type { ColourRange } from '../raster/colourRange.js';
+import { rampPlace, type ColourRange } from '../raster/colourRange.js';
 import type { Grid } from '../raster/types.js';
 
 /** Share of the cells that the ends of the scale leave out, so that one cell does not set it. */
@@ -9,6 +9,8 @@ const CUT = 0.0005;
 const LEAST_KNEE_NT = 0.1;
 /** Steps of a legend that fit a bent scale: each about three times the last. */
 const STEPS = [1, 3];
+/** Share of the legend's bar that a label takes. */
+const ROOM = 0.068;
 
 /**
  * Colours for a residual: the same for both signs, even through the noise and by logarithm above it, up to a round
@@ -23,14 +25,18 @@ export function residualRange(grid: Grid, noise?: NoiseModel): ColourRange | nul
   return { low: -end, high: end, knee };
 }
 
-/** Values that the legend names, ascending, the ends and zero among them. */
-export function legendValues({ high, knee = 1 }: ColourRange): number[] {
+/** Values that the legend names, ascending, the ends and zero among them: round ones, as many as have room. */
+export function legendValues(range: ColourRange): number[] {
+  const { high, knee = 1 } = range;
   const above: number[] = [];
+  let last = 0.5;
   for (let power = Math.floor(Math.log10(knee)); power <= Math.log10(high); power += 1) {
     for (const step of STEPS) {
       const value = step * 10 ** power;
-      // Labels nearer to zero or to the end than this would touch theirs.
-      if (value >= knee && value <= high / 1.8) above.push(Number(value.toPrecision(6)));
+      const place = rampPlace(range, value);
+      if (place - last < ROOM || 1 - place < ROOM) continue;
+      last = place;
+      above.push(Number(value.toPrecision(6)));
     }
   }
   return [-high, ...above.toReversed().map((value) => -value), 0, ...above, high];

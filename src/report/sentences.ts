@@ -1,7 +1,7 @@
 import type { Anomaly } from '../anomalies/types.js';
-import type { Finding, PairChance } from '../findings/types.js';
+import type { Finding } from '../findings/types.js';
 import type { UnplacedRecord } from '../records/types.js';
-import { capital, chanceWords, compass, counted, frameUnit, length, listed, sentence } from './format.js';
+import { chanceWords, compass, counted, frameUnit, length, listed, sentence } from './format.js';
 import { html, type Html } from './html.js';
 import { hasPlace, placeWords } from './places.js';
 import type { ReportContent } from './types.js';
@@ -17,7 +17,7 @@ export function findingSentence(finding: Finding, content: ReportContent): Html 
 
 const WORDS: Readonly<Record<Finding['finding'], (finding: Finding, content: ReportContent) => Html>> = {
   located: (finding, content) => html`Its casing stands at ${where(finding, content)}${distance(finding, content)}${anomalyWords(finding, content)}. The chance that this casing is the recorded well is ${chanceWords(finding.pMatch)}.`,
-  ambiguous: (finding, content) => html`The search does not settle which casing it is. ${candidates(finding, content)}${hasPlace(finding) ? html` The place given here is ${where(finding, content)}.` : ''} ${remains(finding)}`,
+  ambiguous: (finding, content) => html`${candidates(finding, content)}${hasPlace(finding) ? html` The place given here is ${where(finding, content)}.` : ''} ${remains(finding)}`,
   not_found: (finding) => html`No anomaly is likely to be its casing. The chance that the well lies in ground searched is ${chanceWords(finding.pCovered)}, and that it lies there and a casing as stated would have been detected, ${chanceWords(finding.pDetect)}. ${remains(finding)}`,
   not_searched: (finding) => html`The ground where it may lie was hardly searched: the chance that it lies in ground searched is ${chanceWords(finding.pCovered)}. The search therefore says next to nothing about it. ${remains(finding)}`,
   unrecorded: (finding, content) => html`A casing that no record tells of stands at ${where(finding, content)}${anomalyWords(finding, content)}. The chance that none of the records is this casing is ${chanceWords(finding.pMatch)}.`,
@@ -44,11 +44,14 @@ function anomalyWords(finding: Finding, content: ReportContent): Html | string {
   return html` (anomaly ${finding.anomalyId}${depth})`;
 }
 
+/** The casings that it may be, and that it may be none of them. */
 function candidates({ recordId, anomalyId, pMatch }: Finding, { findings }: ReportContent): string {
-  const pairs: PairChance[] = (findings?.pairs ?? []).filter((pair) => pair.recordId === recordId && pair.p >= WORTH_NAMING).toSorted((a, b) => b.p - a.p || (a.anomalyId < b.anomalyId ? -1 : 1));
-  const named = pairs.map((pair) => `anomaly ${pair.anomalyId} with ${chanceWords(pair.p)}`);
-  if (named.length > 0) return `${capital(listed(named))}.`;
-  return anomalyId ? `Anomaly ${anomalyId} is the likeliest, with ${chanceWords(pMatch)}.` : '';
+  const told = (findings?.pairs ?? []).filter((pair) => pair.recordId === recordId && pair.p >= WORTH_NAMING).toSorted((a, b) => b.p - a.p || (a.anomalyId < b.anomalyId ? -1 : 1));
+  const pairs = told.length > 0 ? told : anomalyId ? [{ recordId, anomalyId, p: pMatch }] : [];
+  if (pairs.length === 0) return 'The search does not settle which casing it is.';
+  const none = 1 - pairs.reduce((sum, { p }) => sum + p, 0);
+  const named = pairs.map((pair) => `anomaly ${pair.anomalyId} (${chanceWords(pair.p)})`);
+  return `The search does not settle which casing it is: ${listed([...named, ...(none >= WORTH_NAMING ? [`none of ${pairs.length === 1 ? 'the anomalies' : 'these'} (${chanceWords(none)})`] : [])], 'or')}.`;
 }
 
 function remains({ pRemains }: Finding): string {
@@ -61,12 +64,18 @@ export function unplacedSentence({ source, row, column, value, problem, advice }
   return html`${source}, row ${row}, ${column}: <q>${value}</q>. ${sentence(problem)} ${sentence(advice)}`;
 }
 
+/** Findings to be told as such: a record without a place is told of with the rows that need mending. */
+export function toldFindings({ records, findings }: ReportContent): Finding[] {
+  const unplaced = new Set(records?.unplaced.map(({ recordId }) => recordId));
+  return (findings?.list ?? []).filter((finding) => hasPlace(finding) || finding.recordId === '' || !unplaced.has(finding.recordId));
+}
+
 /** All findings in one sentence. */
-export function headline({ records, findings }: ReportContent): string {
-  const list = findings?.list ?? [];
+export function headline(content: ReportContent): string {
+  const list = toldFindings(content);
   const count = (word: Finding['finding']): number => list.filter(({ finding }) => finding === word).length;
   const given = list.filter(({ finding }) => finding !== 'unrecorded').length;
-  const unplaced = records?.unplaced.length ?? 0;
+  const unplaced = content.records?.unplaced.length ?? 0;
   const parts = [
     [count('located'), (n: number) => `${n} ${be(n)} located`],
     [count('ambiguous'), (n: number) => `${n} ${be(n)} ambiguous`],
@@ -76,7 +85,7 @@ export function headline({ records, findings }: ReportContent): string {
   const told = parts.filter(([n]) => n > 0).map(([n, words]) => words(n));
   const sentences = [
     ...(given > 0 ? [`Of ${counted(given, 'record')} with a place, ${listed(told)}.`] : []),
-    ...(count('unrecorded') > 0 ? [`${capital(counted(count('unrecorded'), 'casing'))} on the ground ${count('unrecorded') === 1 ? 'is' : 'are'} on no record.`] : []),
+    ...(count('unrecorded') > 0 ? [`${counted(count('unrecorded'), 'casing')} on the ground ${count('unrecorded') === 1 ? 'is' : 'are'} on no record.`] : []),
     ...(unplaced > 0 ? [`${counted(unplaced, 'record')} could not be placed and ${unplaced === 1 ? 'needs' : 'need'} mending.`] : []),
   ];
   return sentences.join(' ');

@@ -152,6 +152,7 @@ export const content: ReportContent = {
       finding('not_found', '37-0415', '', { pCovered: 0.9523, pDetect: 0.8871, pRemains: 0.1234, x: WEST + 365, y: SOUTH + 110 }),
       finding('not_searched', '37-0416', '', { pCovered: 0.021, pDetect: 0.0004, pRemains: 0.8911, x: WEST + 250, y: SOUTH + 325 }),
       finding('not_found', '37-0417', '', { pCovered: 0.81, pDetect: 0.77, pRemains: 0.31, x: WEST + 62, y: SOUTH + 262 }),
+      finding('not_searched', '37-0418', '', { pCovered: NaN, pDetect: NaN, pRemains: NaN, note: 'no place' }),
       finding('unrecorded', '', 'A6', { pMatch: 0.941, x: WEST + 160, y: SOUTH + 55, digOrder: 4, pCovered: NaN, pDetect: NaN, pRemains: NaN }),
     ],
     pairs: [{ recordId: '37-0414', anomalyId: 'A5', p: 0.62 }, { recordId: '37-0414', anomalyId: 'A4', p: 0.33 }, { recordId: '37-0414', anomalyId: 'A2', p: 0.01 }],

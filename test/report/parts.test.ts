@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { chanceCell, chanceWords, compass, counted, frameUnit, length, listed, number, sentence } from '../../src/report/format.js';
+import { rampPlace } from '../../src/raster/colourRange.js';
 import { html } from '../../src/report/html.js';
 import { mapFrame, mapTicks, roundStep, ticks } from '../../src/report/mapFrame.js';
 import { mapLegend } from '../../src/report/mapLegend.js';
@@ -125,6 +126,10 @@ describe('the colours', () => {
     expect(values).toEqual(values.toSorted((a, b) => a - b));
     expect(values).toContain(0);
     expect(values.at(-1)).toBe(range.high);
+    for (const wide of [range, { low: -3e14, high: 3e14, knee: 5 }, { low: -3, high: 3, knee: 1 }]) {
+      const places = legendValues(wide).map((value) => rampPlace(wide, value));
+      for (let i = 1; i < places.length; i += 1) expect(places[i]! - places[i - 1]!).toBeGreaterThan(0.06);
+    }
   });
 
   it('are null for a grid without values, and finite for one that is flat', () => {
