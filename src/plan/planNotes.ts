@@ -14,7 +14,7 @@ const SAID_FROM = 5e-4;
 export function planNotes(plan: {
   readonly ground: Area; readonly spacing: AdvisedSpacing; readonly wantedChance: number | null; readonly listening: Listening;
   readonly azimuthDeg: number; readonly mainField: MainField; readonly minLengthM: number;
-  readonly survey: FilledLines; readonly ties: { readonly pieces: readonly unknown[]; readonly dropped: number };
+  readonly survey: FilledLines; readonly ties: { readonly pieces: readonly unknown[]; readonly dropped: number; readonly untied: number };
   readonly sorties: Sorties; readonly savedM: number;
 }): string[] {
   const { survey, ties, sorties, azimuthDeg, mainField, spacing: { spacingM } } = plan;
@@ -25,6 +25,9 @@ export function planNotes(plan: {
     ...spacingNotes(plan),
   ];
   if (plan.savedM >= 1) notes.push(`The order of the lines saves ${kilometres(plan.savedM)} of ways against walking them one after the other.`);
+  if (ties.pieces.length > 0 && ties.untied > 0) {
+    notes.push(`${count(ties.untied, 'survey line')} ${ties.untied === 1 ? 'is' : 'are'} crossed by no tie line: without a base station nothing ties their level.`);
+  }
   const dropped = survey.dropped + ties.dropped;
   if (dropped > 0) notes.push(`${count(dropped, 'piece')} of lines shorter than ${number(plan.minLengthM)} m ${dropped === 1 ? 'was' : 'were'} left out.`);
   const share = survey.uncoveredM2 / areaM2(plan.ground);

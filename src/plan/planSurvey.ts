@@ -90,7 +90,7 @@ export function planSurvey(site: Site, records: Records | null, options: PlanOpt
   const across = lineFrame(azimuthDeg + 90, [(west + east) / 2, (south + north) / 2]);
   const groundUV = areaToUV(ground, along);
   const survey = fillGaps(groundUV, parallelLines(groundUV, spacingM), { spacingM, minLengthM });
-  const ties = tieLines(tieRatio > 0 ? parallelLines(areaToUV(ground, across), tieRatio * spacingM) : [], minLengthM);
+  const ties = tieLines(tieRatio > 0 ? parallelLines(areaToUV(ground, across), tieRatio * spacingM) : [], survey.pieces, minLengthM);
   if (survey.pieces.length === 0) {
     throw new UserError({
       code: 'no_data', where: 'plan', found: `no line of ${minLengthM} m on the ground to be searched (${Math.round(areaM2(ground))} m²)`,
@@ -123,9 +123,12 @@ function listeningOf({ target, mainField }: Site, settings: Required<Omit<PlanOp
   };
 }
 
-function tieLines(all: readonly Piece[], minLengthM: number): { pieces: readonly Piece[]; dropped: number } {
+/** Ties long enough to walk, in the frame across the lines, and how many survey pieces (in their own frame) no tie crosses. */
+function tieLines(all: readonly Piece[], survey: readonly Piece[], minLengthM: number): { pieces: readonly Piece[]; dropped: number; untied: number } {
   const pieces = all.filter(({ u0, u1 }) => u1 - u0 >= minLengthM);
-  return { pieces, dropped: all.length - pieces.length };
+  // Seen from the lines, a tie stands at u = −v and reaches from v = u0 to u1: the frames are a quarter turn apart.
+  const untied = survey.filter(({ v, u0, u1 }) => !pieces.some((tie) => u0 <= -tie.v && -tie.v <= u1 && tie.u0 <= v && v <= tie.u1));
+  return { pieces, dropped: all.length - pieces.length, untied: untied.length };
 }
 
 function searchGround(site: Site, records: Records | null, { area, recordShare, marginM }: Required<Pick<PlanOptions, 'area' | 'recordShare' | 'marginM'>>): Area {

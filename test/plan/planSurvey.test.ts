@@ -4,7 +4,7 @@ import type { Area } from '../../src/density/types.js';
 import { UserError } from '../../src/errors.js';
 import { planSurvey } from '../../src/plan/planSurvey.js';
 import { OpenWays } from '../../src/plan/openWays.js';
-import type { SurveyPlan } from '../../src/plan/types.js';
+import type { PlanLine, SurveyPlan } from '../../src/plan/types.js';
 import { evenly, rectangle, ring, testSite, toSegment, turned } from './testSite.js';
 
 const total = (plan: SurveyPlan, kind: string): number => plan.lines.filter((line) => line.kind === kind).reduce((sum, { lengthM }) => sum + lengthM, 0);
@@ -83,6 +83,17 @@ describe('concave ground with a pond', () => {
     const kinds = plan.lines.slice(1).map((line, i) => ways.way(plan.lines[i]!.x1, plan.lines[i]!.y1, line.x0, line.y0).kind);
     expect(kinds).not.toContain('outside');
     expect(plan.notes.some((note) => note.includes('round ground that may not be walked'))).toBe(kinds.includes('round'));
+  });
+  it('counts the lines that no tie crosses', () => {
+    const ties = plan.lines.filter(({ kind }) => kind === 'tie');
+    const crosses = (a: PlanLine, b: PlanLine): boolean => {
+      const side = (l: PlanLine, x: number, y: number): number => Math.sign((l.x1 - l.x0) * (y - l.y0) - (l.y1 - l.y0) * (x - l.x0));
+      return side(a, b.x0, b.y0) !== side(a, b.x1, b.y1) && side(b, a.x0, a.y0) !== side(b, a.x1, a.y1);
+    };
+    const untied = plan.lines.filter((line) => line.kind === 'survey' && !ties.some((tie) => crosses(line, tie))).length;
+    expect(untied).toBeGreaterThan(0);
+    expect(plan.notes.find((note) => note.includes('no tie line'))).toMatch(new RegExp(`^${untied} survey lines? (is|are) crossed by no tie line`));
+    expect(planSurvey(site, null, { spacingM, tieRatio: 0 }).notes.some((note) => note.includes('no tie line'))).toBe(false);
   });
   it('saves ways against walking line by line', () => {
     expect(plan.notes.find((note) => note.includes('saves'))).toMatch(/saves [\d.]+ k?m of ways/);
