@@ -140,6 +140,7 @@ describe('a regional mean shift', () => {
         const records = locateWells(wells, site, { errorM: 0.5 });
         expect(records[0]!.shift).toContain('mean');
         expect(records[0]!.group!.sharedSdM).toBeGreaterThan(3);
+        expect(records[0]!.semiMajM).toBeLessThan(30);
         inside += shareInside(wells, records);
         places++;
       }

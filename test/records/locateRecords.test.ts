@@ -158,6 +158,13 @@ describe('rows that cannot be placed', () => {
     expect(unplaced(`id,lat,lon\n${good}A,-104.2,39.3\n`)[0]!.problem).toBe('is no place on Earth: a latitude goes to 90°, a longitude to 180°');
     expect(unplaced(`id,lat,lon\n${good}A,80.2010 W,39.3000 N\n`)[0]!.advice).toContain('latitude and longitude swapped');
   });
+  it('names a latitude in the south, and easting and northing that no CRS can express', () => {
+    expect(unplaced(`id,lat,lon\n${good}A,-39.3010,-80.2000\n`)[0]!.advice).toContain('with the sign of the latitude changed it would lie 111 m');
+    const settings = { columns: { recordId: 'id', easting: 'e', northing: 'n' }, crs: frame, datum: undefined };
+    expect(unplaced(`id,e,n\nA,1e12,-7e13\n`, settings)[0]).toMatchObject({
+      column: 'e, n', value: '1e12, -7e13', problem: 'is no place that EPSG:26917 can express', advice: expect.stringContaining('raise max_distance_m'),
+    });
+  });
   it('says only the distance where no slip explains it', () => {
     expect(unplaced(`id,lat,lon\n${good}A,38.3000,-80.2000\n`)[0]).toMatchObject({ problem: expect.stringContaining('lies 111 km'), advice: expect.stringContaining('compare the row') });
   });
@@ -205,6 +212,15 @@ describe('a file that is described wrongly as a whole', () => {
   it('is refused when every row has the same slip', () => {
     expect(failure('id,lat,lon\nA,-80.2,39.3\nB,-80.201,39.3\n')).toMatchObject({ code: 'coordinates_swapped', advice: 'exchange the two column names in the survey file' });
     expect(failure('id,lat,lon\nA,39.3,80.2\nB,39.3,80.201\n')).toMatchObject({ code: 'position_invalid', advice: expect.stringContaining('west_positive') });
+  });
+  it('is refused when every row is in the other unit', () => {
+    const [e, n] = [centreX / 0.3048, centreY / 0.3048];
+    const columns = { recordId: 'id', easting: 'e', northing: 'n' };
+    expect(failure(`id,e,n\nA,${e},${n}\nB,${e + 30},${n}\n`, { columns, crs: frame, datum: undefined }))
+      .toMatchObject({ code: 'position_invalid', found: expect.stringContaining('the numbers read as feet'), advice: 'state a CRS whose unit is the foot' });
+  });
+  it('leaves the rows to their own fate where the slips differ', () => {
+    expect(unplaced('id,lat,lon\nA,-80.2,39.3\nB,39.3,80.201\n')).toHaveLength(2);
   });
   it('reads unsigned west longitudes where it says so', () => {
     const { placed } = locateRecords([csv('id,lat,lon\nA,39.3000,80.2000\nB,39.3001,80.2000 W\nC,39.3002,-80.2000\n', { westPositive: true })], testSite());
