@@ -11,15 +11,17 @@ export function nearest(word: string, known: readonly string[]): string | null {
   return best;
 }
 
-/** Levenshtein 1966: least number of letters put in, left out or changed. */
+/** Least number of letters put in, left out, changed, or swapped with their neighbour (Damerau 1964, restricted). */
 function editDistance(a: string, b: string): number {
+  let before: number[] = [];
   let row = Array.from({ length: b.length + 1 }, (_, j) => j);
   for (let i = 1; i <= a.length; i++) {
     const next = [i];
     for (let j = 1; j <= b.length; j++) {
       next[j] = Math.min(row[j]! + 1, next[j - 1]! + 1, row[j - 1]! + (a[i - 1] === b[j - 1] ? 0 : 1));
+      if (i > 1 && j > 1 && a[i - 1] === b[j - 2] && a[i - 2] === b[j - 1]) next[j] = Math.min(next[j]!, before[j - 2]! + 1);
     }
-    row = next;
+    [before, row] = [row, next];
   }
   return row[b.length]!;
 }

@@ -15,7 +15,7 @@ export async function readArea(path: string, { files, frame, shiftFrom, crs, war
   files: FileSource; frame: Crs; shiftFrom(datum: Datum): DatumShift; crs: Crs | undefined; warn(message: string): void;
 }): Promise<Area> {
   const source = baseName(path);
-  const input = await readVector(path, files, crs ? { crs } : {});
+  const input = await readVector(path, files, { crs: crs ?? null, crsKey: 'parcel_crs' });
   const from = input.crs;
   input.notes.forEach(warn);
   const area: Rings[] = [];

@@ -12,8 +12,10 @@ import type { InputFeature, RawVector, VectorInput } from './types.js';
 export interface ReadVectorOptions {
   /** CRS stated by the user for a file that names none; one that names another is refused. */
   readonly crs: Crs | null;
+  /** Key of the survey file that states a CRS for this file, for messages. */
+  readonly crsKey: string;
 }
-export const READ_VECTOR_DEFAULTS: ReadVectorOptions = Object.freeze({ crs: null });
+export const READ_VECTOR_DEFAULTS: ReadVectorOptions = Object.freeze({ crs: null, crsKey: 'crs' });
 
 const READERS: Readonly<Record<string, (path: string, files: FileSource) => Promise<RawVector>>> = {
   geojson: readGeoJson, json: readGeoJson, shp: readShapefile, fgb: readFlatGeobuf,
@@ -29,7 +31,7 @@ export const VECTOR_EXTENSIONS: readonly string[] = Object.keys(READERS);
  * (RFC 7946, section 4, "prior arrangement"). Coordinates in feet become metres. Heights are left out, with a note.
  */
 export async function readVector(path: string, files: FileSource, options: Partial<ReadVectorOptions> = {}): Promise<VectorInput> {
-  const stated = { ...READ_VECTOR_DEFAULTS, ...options }.crs;
+  const { crs: stated, crsKey } = { ...READ_VECTOR_DEFAULTS, ...options };
   const source = baseName(path);
   const reader = READERS[extension(path)];
   if (!reader) {
@@ -41,7 +43,7 @@ export async function readVector(path: string, files: FileSource, options: Parti
   const raw = await reader(path, files);
   if (raw.features.length === 0) throw new UserError({ code: 'file_empty', where: source, found: 'no features', wanted: 'at least one' });
   for (const [index, { geometry }] of raw.features.entries()) if (geometry) checkInputGeometry(geometry, `${source}, feature ${index + 1}`);
-  const crs = crsOf(raw, stated, source);
+  const crs = crsOf(raw, { stated, crsKey, source });
   const heights = { count: 0 };
   checkPlausible(raw.features, crs, source);
   const features = raw.features.map(({ geometry, properties }) => ({ properties, geometry: geometry && toMetres(geometry, crs, heights) }));
@@ -49,7 +51,7 @@ export async function readVector(path: string, files: FileSource, options: Parti
   return { source, crs, features, rows: features.length, notes };
 }
 
-function crsOf(raw: RawVector, stated: Crs | null, source: string): Crs {
+function crsOf(raw: RawVector, { stated, crsKey, source }: { stated: Crs | null; crsKey: string; source: string }): Crs {
   if (raw.crs && stated && raw.crs.epsg !== stated.epsg) {
     throw new UserError({
       code: 'key_invalid', where: `crs stated for ${source}`, found: `${stated.code} (${stated.name})`, wanted: `${raw.crs.code} (${raw.crs.name}), which the file itself names`,
@@ -63,7 +65,7 @@ function crsOf(raw: RawVector, stated: Crs | null, source: string): Crs {
   throw new UserError({
     code: 'crs_missing', where: source, wanted: 'one, since positions mean nothing without it',
     found: `no coordinate reference system; its first feature lies at ${box[0]}, ${box[1]}${degrees ? ', which looks like degrees' : ''}`,
-    advice: extension(source) === 'shp' ? 'put its .prj file beside it, or name the CRS in the survey file, as in "EPSG:2272"' : 'name the CRS in the survey file, as in "EPSG:2272"',
+    advice: `${extension(source) === 'shp' ? 'put its .prj file beside it, or ' : ''}name it in the survey file, as in "${crsKey}": "EPSG:2272"`,
   });
 }
 
