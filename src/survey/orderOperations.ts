@@ -3,7 +3,7 @@ import type { Operation } from '../operations/types.js';
 
 /**
  * Operations in an order in which every input (an optional one too) is made before it is used; where that leaves a
- * choice, the order of the list stands. A ring of inputs, or two operations that make the same role, is refused.
+ * choice, the order of the list stands, but a document comes after everything that it may tell of. A ring of inputs, or two operations that make the same role, is refused.
  */
 export function orderOperations(operations: readonly Operation[]): Operation[] {
   const makers = new Map<string, Operation>();
@@ -27,7 +27,8 @@ export function orderOperations(operations: readonly Operation[]): Operation[] {
     open.delete(operation);
     ordered.push(operation);
   };
-  operations.forEach(visit);
+  const tells = ({ outputs }: Operation): boolean => Object.values(outputs).some(({ form }) => form === 'html');
+  [...operations.filter((operation) => !tells(operation)), ...operations.filter(tells)].forEach(visit);
   return ordered;
 }
 
