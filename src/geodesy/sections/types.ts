@@ -87,3 +87,36 @@ export interface VertexInfluence {
   /** Rows of the 2 × 2 Jacobian: place east by vertex east and north, place north by vertex east and north. */
   readonly jacobian: readonly [xByX: number, xByY: number, yByX: number, yByY: number];
 }
+
+export type CornerName = 'NE' | 'NW' | 'SE' | 'SW';
+
+/** A point of the ground plane, metres. */
+export type PlanePoint = readonly [east: number, north: number];
+
+/** Metres on the ground about a section: true east and true north of its middle, at height 0. */
+export interface GroundPlane {
+  readonly crs: Crs;
+  toPlane(x: number, y: number): [east: number, north: number];
+  toFrame(east: number, north: number): [x: number, y: number];
+  /** Frame metres for plane metres in the middle: x by east and north, y by east and north. */
+  readonly jacobian: readonly [number, number, number, number];
+}
+
+/** A section with its corners and lines found. Vertices are in its ground plane, counter-clockwise, not repeated. */
+export interface Section {
+  /** File and feature, for messages. */
+  readonly where: string;
+  /** As in `section 3, T35S R29E`. */
+  readonly name: string;
+  readonly plane: GroundPlane;
+  readonly vertices: readonly PlanePoint[];
+  /** Indices of the vertices of each line, both corners included: west to east for N and S, south to north for E and W. */
+  readonly lines: Readonly<Record<Side, readonly number[]>>;
+  /** Index of the quarter corner of each line where the layer has a vertex for it, else null: then its midpoint serves. */
+  readonly quarters: Readonly<Record<Side, number | null>>;
+  /** Likewise the two sixteenth corners, in the order of the line. */
+  readonly sixteenths: Readonly<Record<Side, readonly [number | null, number | null]>>;
+  /** Lines too crooked to measure from (meandered along water, broken by a grant). */
+  readonly irregular: readonly Side[];
+  readonly notes: readonly string[];
+}
