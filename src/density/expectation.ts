@@ -1,7 +1,7 @@
 import type { Grid } from '../raster/types.js';
 import { normalCdf } from '../numerics/special.js';
-import { areaM2 } from './area.js';
-import { coverage } from './coverage.js';
+import { areaBounds, areaM2 } from './area.js';
+import { coverage, type Lattice } from './coverage.js';
 import { discArea } from './discArea.js';
 import { steadyCovariance } from './parts.js';
 import type { Area, Covariance, Density } from './types.js';
@@ -26,19 +26,45 @@ export function expectation(density: Density, grid: Grid): number {
   for (const part of density.parts) {
     if (part.weight === 0) continue;
     if (part.kind === 'gaussian') sum += part.weight * overGaussian(grid, part);
-    else sum += part.weight * overArea(grid, part.kind === 'disc' ? discArea(part) : part.area);
+    else sum += part.weight * (part.kind === 'disc' ? overDisc(grid, part) : overArea(grid, part.area));
   }
   return sum;
 }
 
 function overArea(grid: Grid, area: Area): number {
-  const shares = coverage(area, grid);
+  const part = cropped(grid, area);
+  if (!part) return 0;
+  const shares = coverage(area, part.lattice);
   let sum = 0;
-  for (let i = 0; i < shares.length; i++) {
-    const value = grid.values[i]!;
-    if (shares[i]! > 0 && value === value) sum += shares[i]! * value;
+  for (let row = 0; row < part.lattice.height; row++) {
+    for (let column = 0; column < part.lattice.width; column++) {
+      const value = grid.values[(part.row + row) * grid.width + part.column + column]!;
+      if (value === value) sum += shares[row * part.lattice.width + column]! * value;
+    }
   }
   return (sum * grid.cellM * grid.cellM) / areaM2(area);
+}
+
+/** A disc that holds the whole grid, as a blunder's usually does, needs no cutting. */
+function overDisc(grid: Grid, disc: { x: number; y: number; radiusM: number }): number {
+  const { west, north, width, height, cellM, values } = grid;
+  const farX = Math.max(Math.abs(west - disc.x), Math.abs(west + width * cellM - disc.x));
+  const farY = Math.max(Math.abs(north - disc.y), Math.abs(north - height * cellM - disc.y));
+  if (Math.hypot(farX, farY) > disc.radiusM) return overArea(grid, discArea(disc));
+  let sum = 0;
+  for (let i = 0; i < values.length; i++) if (values[i] === values[i]) sum += values[i]!;
+  return (sum * cellM * cellM) / (Math.PI * disc.radiusM ** 2);
+}
+
+/** The part of the grid within an area's bounds, and where it begins; null where they do not meet. */
+function cropped({ west, north, width, height, cellM }: Grid, area: Area): { lattice: Lattice; column: number; row: number } | null {
+  const bounds = areaBounds(area);
+  const column = Math.max(0, Math.floor((bounds.west - west) / cellM));
+  const row = Math.max(0, Math.floor((north - bounds.north) / cellM));
+  const columns = Math.min(width, Math.ceil((bounds.east - west) / cellM)) - column;
+  const rows = Math.min(height, Math.ceil((north - bounds.south) / cellM)) - row;
+  if (!(columns > 0 && rows > 0)) return null;
+  return { column, row, lattice: { width: columns, height: rows, west: west + column * cellM, north: north - row * cellM, cellM } };
 }
 
 /**

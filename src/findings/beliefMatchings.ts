@@ -2,7 +2,7 @@ import type { MatchingProblem, MatchingSolution } from './matchings.js';
 
 /** Rounds of messages at most, and the change of a message at which they have settled. */
 const MOST_ROUNDS = 500;
-const SETTLED = 1e-10;
+const SETTLED = 1e-7;
 
 /**
  * The same sums by belief propagation: rows and columns tell one another how free they are until nothing changes. It

@@ -26,6 +26,7 @@ const MOST_OPEN = 30;
  * Source: dynamic programming over subsets (Bellman 1962; Held & Karp 1962), as a forward–backward pass.
  */
 export function exactMatchings({ columns, weights }: MatchingProblem, mostStates = MOST_STATES): MatchingSolution | null {
+  if (columns.length === 1) return alone(weights[0]!);
   const layout = openColumns(columns);
   if (!layout) return null;
   const { bits, closing } = layout;
@@ -38,13 +39,13 @@ export function exactMatchings({ columns, weights }: MatchingProblem, mostStates
     const keep = ~closing[i]!;
     let sum = 0;
     for (const [mask, weight] of forward[i]!) {
-      const alone = weight * scales[i]!;
-      add(next, mask & keep, alone);
-      sum += alone;
+      const apart = weight * scales[i]!;
+      add(next, mask & keep, apart);
+      sum += apart;
       for (let k = 0; k < bits[i]!.length; k++) {
         const bit = bits[i]![k]!;
         if ((mask & bit) !== 0) continue;
-        const value = alone * weights[i]![k]!;
+        const value = apart * weights[i]![k]!;
         add(next, (mask | bit) & keep, value);
         sum += value;
       }
@@ -55,6 +56,12 @@ export function exactMatchings({ columns, weights }: MatchingProblem, mostStates
     forward.push(next);
   }
   return { logZ, chances: backward({ bits, closing, weights }, forward) };
+}
+
+/** One row by itself: each of its columns against none. */
+function alone(row: ArrayLike<number>): MatchingSolution {
+  const sum = 1 + total(row);
+  return { logZ: Math.log(sum), chances: [Float64Array.from(row, (weight) => weight / sum)] };
 }
 
 interface Lattice {

@@ -2,7 +2,7 @@ import type { Anomaly } from '../anomalies/types.js';
 import type { WellRecord } from '../records/types.js';
 import { beliefMatchings } from './beliefMatchings.js';
 import { clusters } from './clusters.js';
-import { exactMatchings, type MatchingProblem, type MatchingSolution } from './matchings.js';
+import { exactMatchings, MOST_STATES, type MatchingProblem, type MatchingSolution } from './matchings.js';
 import { narrowestSdM, pairDensity, shiftedDensity, type PairDensity } from './pairDensity.js';
 import { shiftPosterior, type ShiftNode } from './shiftQuadrature.js';
 
@@ -138,11 +138,10 @@ function settle({ columns, weights, groups, at }: Linked): { chances: Float64Arr
   const chances = weights.map((row) => new Float64Array(row.length));
   const current = [...weights];
   const found = clusters(columns);
-  const solveWith = (cluster: readonly number[], of: (row: number) => ArrayLike<number>): MatchingSolution =>
-    solve({ columns: cluster.map((row) => columns[row]!), weights: cluster.map(of) });
+  const solver = new Solver(columns);
   const groupOf = new Map(groups.flatMap((group) => group.rows.map((row) => [row, group] as const)));
   for (const cluster of found) {
-    if (!cluster.some((row) => groupOf.has(row))) solveWith(cluster, (row) => weights[row]!).chances.forEach((row, k) => { chances[cluster[k]!]!.set(row); });
+    if (!cluster.some((row) => groupOf.has(row))) solver.solve(cluster, (row) => weights[row]!, STATES.once).chances.forEach((row, k) => { chances[cluster[k]!]!.set(row); });
   }
   const shifts = new Map<string, GroupShift>();
   const meet = found.some((cluster) => new Set(cluster.map((row) => groupOf.get(row)?.id).filter(Boolean)).size > 1);
@@ -152,7 +151,7 @@ function settle({ columns, weights, groups, at }: Linked): { chances: Float64Arr
       const near = found.filter((cluster) => cluster.some((row) => members.has(row)));
       const weightsAt = (row: number, east: number, north: number): ArrayLike<number> => (members.has(row) ? at(row, east, north) : current[row]!);
       const nodes = shiftPosterior(
-        (east, north) => near.reduce((sum, cluster) => sum + solveWith(cluster, (row) => weightsAt(row, east, north)).logZ, 0),
+        (east, north) => near.reduce((sum, cluster) => sum + solver.solve(cluster, (row) => weightsAt(row, east, north), STATES.often).logZ, 0),
         { priorSdM: group.sharedSdM, leastSdM: group.leastSdM },
       );
       for (const row of group.rows) current[row] = average(nodes, ({ east, north }) => at(row, east, north));
@@ -161,7 +160,7 @@ function settle({ columns, weights, groups, at }: Linked): { chances: Float64Arr
         const mine = cluster.map((row) => members.has(row) || (!groupOf.has(row) && groupOf.get(cluster.find((r) => groupOf.has(r))!) === group));
         cluster.forEach((row, k) => { if (mine[k]) chances[row]!.fill(0); });
         for (const { east, north, weight } of nodes) {
-          const { chances: part } = solveWith(cluster, (row) => weightsAt(row, east, north));
+          const { chances: part } = solver.solve(cluster, (row) => weightsAt(row, east, north), STATES.often);
           cluster.forEach((row, k) => { if (mine[k]) part[k]!.forEach((value, c) => { chances[row]![c]! += weight * value; }); });
         }
       }
@@ -171,9 +170,24 @@ function settle({ columns, weights, groups, at }: Linked): { chances: Float64Arr
   return { chances, shifts: [...shifts.values()] };
 }
 
-/** Exact where it can be, else by belief propagation. */
-export function solve(problem: MatchingProblem): MatchingSolution {
-  return exactMatchings(problem) ?? beliefMatchings(problem);
+/** States that the exact sums may have open where they are wanted once, and where at hundreds of shifts. */
+const STATES = Object.freeze({ once: MOST_STATES, often: 64 });
+
+/** Exact where it can be, else by belief propagation. A group that proved too large is not tried again. */
+class Solver {
+  readonly #large = new Set<readonly number[]>();
+  readonly #columns: readonly (readonly number[])[];
+
+  constructor(columns: readonly (readonly number[])[]) {
+    this.#columns = columns;
+  }
+
+  solve(cluster: readonly number[], of: (row: number) => ArrayLike<number>, mostStates: number): MatchingSolution {
+    const problem: MatchingProblem = { columns: cluster.map((row) => this.#columns[row]!), weights: cluster.map(of) };
+    const exact = this.#large.has(cluster) ? null : exactMatchings(problem, mostStates);
+    if (!exact) this.#large.add(cluster);
+    return exact ?? beliefMatchings(problem);
+  }
 }
 
 function average(nodes: readonly ShiftNode[], of: (node: ShiftNode) => Float64Array): Float64Array {

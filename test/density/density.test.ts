@@ -144,6 +144,14 @@ describe('massIn, densityAt and expectation agree', () => {
     expect(expectation(one({ kind: 'disc', weight: 1, x: 4, y: -2, radiusM: 1, role: 'blunder' }), grid)).toBeCloseTo(0.5, 6);
   });
 
+  it('a disc that holds the grid counts as the disc cut at the cells does', () => {
+    const grid = gridOf(40, 30, (x, y) => (x * y > 0 ? Number.NaN : Math.abs(Math.sin(x + 2 * y))), { west: -20, north: 15 });
+    const sum = Array.from(grid.values).reduce((a, b) => (b === b ? a + b : a), 0);
+    for (const radiusM of [26, 60]) {
+      expect(expectation(one({ kind: 'disc', weight: 1, x: 0.5, y: 0, radiusM, role: 'blunder' }), grid)).toBeCloseTo(sum / (Math.PI * radiusM ** 2), 5);
+    }
+  });
+
   it('a larger grid of ones never holds less, and a plane of them holds all', () => {
     let before = 0;
     for (const half of [5, 10, 20, 40, 900]) {
