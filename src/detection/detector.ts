@@ -3,7 +3,7 @@ import { median } from '../numerics/robust.js';
 import { isHeard, type Heard } from './heard.js';
 import { Listener } from './listener.js';
 import { readingTree } from './readingTree.js';
-import { targetAverage, targetDepths } from './targetAverage.js';
+import { targetAverage, targetDepths, type HeardPole } from './targetAverage.js';
 import { detectionThreshold } from './threshold.js';
 import type { NoiseModel, Target } from './types.js';
 
@@ -13,10 +13,17 @@ export interface DetectorOptions {
   readonly mainField: Pick<MainField, 'unit'>;
   /** False alarms by noise alone that are put up with on a hectare. */
   readonly falseAlarmsPerHa: number;
+  /** Deflection that whoever decides on sources asks for in any case; the threshold is never below it. */
+  readonly leastDeflection?: number;
+  /** How many times noisier a place (frame metres) is than the noise model says; 1 where unsaid. */
+  readonly noiseScale?: (x: number, y: number) => number;
 }
 
-/** One false alarm by noise alone on ten hectares: less than what clutter costs anyway (common practice). */
-export const DETECTOR_DEFAULTS = Object.freeze({ falseAlarmsPerHa: 0.1 });
+/**
+ * One false alarm by noise alone on ten hectares: less than what clutter costs anyway; and six times the noise, for real
+ * noise has longer tails than a Gaussian (both common practice).
+ */
+export const DETECTOR_DEFAULTS = Object.freeze({ falseAlarmsPerHa: 0.1, leastDeflection: 6 });
 
 /** Readings count up to this many sensor–source distances away: there a pole's anomaly is down to 1.5 %. */
 const WINDOW_DISTANCES = 4;
@@ -55,7 +62,7 @@ export interface Detector {
  * Source: Kay (1998), Fundamentals of Statistical Signal Processing II, ch. 4 and 7; Van Trees (1968).
  */
 export function makeDetector(heard: Heard, options: DetectorOptions): Detector {
-  const { target, noise, mainField: { unit } } = options;
+  const { target, noise, mainField: { unit }, noiseScale } = options;
   const heights: number[] = [];
   for (let i = 0; i < heard.x.length; i++) if (isHeard(heard, i)) heights.push(heard.heightM[i]!);
   if (heights.length === 0) return { threshold: NaN, distanceM: NaN, hear: () => ({ deflection: 0, wander: 0 }), chanceAt: () => 0 };
@@ -64,20 +71,25 @@ export function makeDetector(heard: Heard, options: DetectorOptions): Detector {
   const [depthLow, depthHigh] = target.depthM;
   const distanceM = heightM + (depthLow + depthHigh) / 2;
   if (!(heightM + depthHigh > 0)) throw new Error(`makeDetector: sensors at ${heightM} m do not lie above a target ${depthHigh} m deep`);
-  const threshold = detectionThreshold({ falseAlarmsPerHa: options.falseAlarmsPerHa, distanceM });
+  const threshold = Math.max(options.leastDeflection ?? DETECTOR_DEFAULTS.leastDeflection, detectionThreshold({ falseAlarmsPerHa: options.falseAlarmsPerHa, distanceM }));
   const windowM = WINDOW_DISTANCES * (heightM + depthHigh);
   const tree = readingTree(heard, { leafM: Math.max(LEAST_LEAF_M, LEAF_SHARE * (heightM + depthLow)), rootM: windowM / 2 });
   const pooling = { windowM, depthM: depthLow + POOL_DEPTH_SHARE * (depthHigh - depthLow), poolShare: POOL_SHARE };
   const listener = new Listener(tree, { noise, unit, pooling });
   const depths = targetDepths(target, heightM);
+  const hear = (x: number, y: number, at: readonly number[]): HeardPole | null => {
+    const pole = listener.hear(x, y, at);
+    const scale = noiseScale ? noiseScale(x, y) : 1;
+    return pole && scale !== 1 ? { perAM: Array.from(pole.perAM, (d) => d / scale), wander: pole.wander } : pole;
+  };
   return {
     threshold, distanceM,
     hear(x, y, { poleAM, depthM }) {
-      const pole = listener.hear(x, y, [depthM]);
+      const pole = hear(x, y, [depthM]);
       return { deflection: pole ? pole.perAM[0]! * Math.abs(poleAM) : 0, wander: pole ? pole.wander[0]! : 0 };
     },
     chanceAt(x, y) {
-      const pole = listener.hear(x, y, depths);
+      const pole = hear(x, y, depths);
       return pole ? targetAverage(target, pole, { threshold, heightM }) : 0;
     },
   };

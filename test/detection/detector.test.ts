@@ -12,7 +12,7 @@ import { choleskySolve, cholesky } from '../../src/numerics/cholesky.js';
 
 const unit = fieldDirection(66, -9);
 const options: DetectorOptions = {
-  target: { poleAM: [4, 40], depthM: [0.5, 2.5], basis: 'made' }, noise: PLANNING_NOISE, mainField: { unit }, falseAlarmsPerHa: 0.1,
+  target: { poleAM: [4, 40], depthM: [0.5, 2.5], basis: 'made' }, noise: PLANNING_NOISE, mainField: { unit }, falseAlarmsPerHa: 0.1, leastDeflection: 0,
 };
 const lines = (spacingM: number, lengthM = 60): LineToWalk[] =>
   Array.from({ length: Math.floor(lengthM / spacingM) + 1 }, (_, i) =>
@@ -154,6 +154,17 @@ describe('chance at a place', () => {
     expect(detectionChance(heard, place, { ...weak, target: { ...weak.target, poleAM: [2, 16] } })).toBeGreaterThan(usual);
   });
 
+  it('falls where a place is noisier than the model, and where more is asked of a source', () => {
+    const of = (more: Partial<DetectorOptions>): number => detectionChance(heard, place, { ...weak, ...more });
+    expect(of({ noiseScale: () => 1 })).toBe(usual);
+    expect(of({ noiseScale: (x) => (x > 20 ? 2 : 1) })).toBeLessThan(usual - 0.1);
+    expect(of({ noiseScale: (x) => (x > 40 ? 2 : 1) })).toBe(usual);
+    const { leastDeflection: _, ...unsaid } = weak;
+    expect(detectionChance(heard, place, unsaid)).toBeLessThan(usual);
+    expect(makeDetector(heard, unsaid).threshold).toBe(6);
+    expect(of({ leastDeflection: 2 })).toBe(usual);
+  });
+
   it('does not depend on where the frame begins, on the clock, on the order of readings or on the sign of the field', () => {
     const far = shifted(heard, { east: 4_500_000, north: -2_000_000, later: 1.77e9 });
     expect(detectionChance(far, [place[0] + 4_500_000, place[1] - 2_000_000], weak)).toBeCloseTo(usual, 3);
@@ -179,7 +190,7 @@ describe('chance at a place', () => {
 
 describe('detection grid', () => {
   const open: Area = [[[[0, 0], [60, 0], [60, 60], [0, 60], [0, 0]], [[20, 20], [30, 20], [30, 30], [20, 30], [20, 20]]]];
-  const weak = { target: { poleAM: [1, 8], depthM: [0.5, 2.5], basis: 'made' } as const, noise: PLANNING_NOISE, mainField: { unit } };
+  const weak = { target: { poleAM: [1, 8], depthM: [0.5, 2.5], basis: 'made' } as const, noise: PLANNING_NOISE, mainField: { unit }, leastDeflection: 0 };
   const western = heardAlongLines(lines(8).slice(0, 4), { stepM: 0.25 });
 
   it('is NaN outside open ground, 0 where not searched, else a chance no larger than covered', () => {

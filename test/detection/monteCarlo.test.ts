@@ -102,7 +102,7 @@ const raws = new Map<Float64Array, Float64Array>();
 describe('stated chance against made field days', () => {
   // Three standard errors of 600 days at worst; pools and a bank that does not know the depth cost far less.
   const TOLERANCE = 0.05;
-  const base: DetectorOptions = { target: { poleAM: [2, 20], depthM: [0.5, 3], basis: 'made' }, noise, mainField: { unit }, falseAlarmsPerHa: 1 };
+  const base: DetectorOptions = { target: { poleAM: [2, 20], depthM: [0.5, 3], basis: 'made' }, noise, mainField: { unit }, falseAlarmsPerHa: 1, leastDeflection: 0 };
 
   it.each([
     ['between two lines', [16, 20], base],
