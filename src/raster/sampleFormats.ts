@@ -1,8 +1,6 @@
 /** How a cell is kept in a file: real numbers as they are, or whole numbers with `value = stored × scale + offset`. */
 export type SampleKind = 'float32' | 'int16' | 'byte';
 
-export type SampleArray = Float32Array | Int16Array | Uint8Array;
-
 export interface SampleFormat {
   readonly kind: SampleKind;
   readonly bits: number;
@@ -23,28 +21,33 @@ export const SAMPLE_FORMATS: Readonly<Record<SampleKind, SampleFormat>> = Object
   byte: { kind: 'byte', bits: 8, tiffFormat: 1, predictor: 2, nodata: 255, lowest: 0, highest: 254 },
 });
 
-export function emptySamples(kind: SampleKind, count: number): SampleArray {
-  if (kind === 'float32') return new Float32Array(count).fill(NaN);
-  const { nodata } = SAMPLE_FORMATS[kind];
-  return kind === 'int16' ? new Int16Array(count).fill(nodata) : new Uint8Array(count).fill(nodata);
-}
+export type Samples = Float32Array | Int16Array | Uint8Array;
 
 /**
  * Cell values as they are stored. NaN becomes the format's nodata. A value that the stored range cannot hold throws,
- * since a clipped number in a file cannot be told from a true one.
+ * since a clipped number in a file cannot be told from a true one. 32-bit floats are given back as they are, uncopied.
  */
-export function toSamples(values: Float32Array | Float64Array, format: SampleFormat, scaling: { scale: number; offset: number }): SampleArray {
+export function toSamples(values: Float32Array | Float64Array, format: SampleFormat, scaling: { scale: number; offset: number }): Samples {
+  if (format.kind === 'float32') return values instanceof Float32Array ? values : toFloats(values);
   const { scale, offset } = scaling;
-  const samples = emptySamples(format.kind, values.length);
-  const whole = format.kind !== 'float32';
+  const samples = format.kind === 'int16' ? new Int16Array(values.length) : new Uint8Array(values.length);
   for (let i = 0; i < values.length; i += 1) {
     const value = values[i]!;
-    if (Number.isNaN(value)) continue;
-    const stored = whole ? Math.round((value - offset) / scale) : value;
+    const stored = Math.round((value - offset) / scale);
     if (stored < format.lowest || stored > format.highest) {
       throw new RangeError(`Cell value ${value} does not fit ${format.kind} with scale ${scale} and offset ${offset}`);
     }
-    samples[i] = stored;
+    // NaN differs from itself, and passes the comparisons above.
+    samples[i] = value === value ? stored : format.nodata;
+  }
+  return samples;
+}
+
+/** A finite value that 32 bits can only call infinite is refused too: nobody could tell it from a fault. */
+function toFloats(values: Float64Array): Float32Array {
+  const samples = new Float32Array(values);
+  for (let i = 0; i < samples.length; i += 1) {
+    if (Math.abs(samples[i]!) === Infinity && Math.abs(values[i]!) !== Infinity) throw new RangeError(`Cell value ${values[i]} does not fit float32`);
   }
   return samples;
 }

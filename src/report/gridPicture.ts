@@ -23,7 +23,7 @@ export interface GridPicture {
 const LEVEL = 9;
 
 export function gridPicture(grid: Grid, look: { ramp: Ramp; range: ColourRange; mostCells: number }): GridPicture {
-  let level: Level = { ...grid, cover: null };
+  let level: Level = grid;
   while (Math.max(level.width, level.height) > look.mostCells && Math.min(level.width, level.height) > 1) level = halve(level);
   const rgba = paintGrid({ ...grid, width: level.width, height: level.height, values: level.values }, look.ramp, look.range);
   const png = encodePng(rgba, level, (bytes) => zlibSync(bytes, { level: LEVEL }));
