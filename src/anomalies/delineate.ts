@@ -2,11 +2,11 @@ import { UserError } from '../errors.js';
 import type { Grid } from '../raster/types.js';
 import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
-import { alignments } from './alignment.js';
-import { linearAnomaly, sourceAnomaly, type Draft } from './describe.js';
+import { linearAnomaly, sourceAnomaly } from './describe.js';
 import { noiseModel, whiteNoise } from './noise.js';
-import { refine, type Refined } from './refine.js';
-import type { Entry } from './sourceMap.js';
+import { findPipes } from './pipes.js';
+import { isNeeded, refine, type Refined } from './refine.js';
+import { SourceMap, type Entry } from './sourceMap.js';
 import { searchSources } from './search.js';
 import { surveyOf, type SurveyOptions } from './survey.js';
 import type { Anomalies, Anomaly } from './types.js';
@@ -36,15 +36,6 @@ const KINDS = ['pole', 'dipole', 'line'] as const;
 const LEAST_BLOCKS = 12;
 /** Where known sources make more than this share of the residual's spread, a block tells nothing about noise. */
 const QUIET_SHARE = 0.5;
-/** Sources line up within this share of the reach … */
-const ALIGN_REACHES = 0.5;
-/** … no further apart than this many spacings (or double reaches), at least so many, over so many spacings. */
-const ALIGN_GAP = 2.5;
-const ALIGN_MEMBERS = 4;
-const ALIGN_LENGTH = 4;
-/** A source this surely a casing is never taken for a piece of a pipe. */
-const SURE_CASING = 0.9;
-
 /**
  * Sources in the residual: found along the passes, decided on the readings, outlined on the grid.
  *
@@ -66,7 +57,10 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const whiteSdNT = whiteNoise(readings);
   const search = { detectSnr: settings.detectSnr, localRadiusM, maxSources: settings.maxSources, maxRounds: MAX_ROUNDS };
   const rough = noiseModel(survey, survey.blocks.value, { whiteSdNT, skip: new Uint8Array(survey.blocks.count) });
-  const { map, full } = searchSources(survey, rough, search);
+  const map = new SourceMap(survey);
+  const full = searchSources(map, rough, search);
+  const pipes = findPipes(map, site.target);
+  const held = new Set(pipes.flatMap((pipe) => pipe.pieces));
   const left = survey.blocks.value.map((value, i) => value - map.made[i]!);
   const quiet = QUIET_SHARE * rough.correlatedSdNT;
   const noise = noiseModel(survey, left, { whiteSdNT, skip: Uint8Array.from(map.made, (made) => (Math.abs(made) > quiet ? 1 : 0)) });
@@ -74,28 +68,16 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const known = new Map<Entry, Refined>();
   for (let sweep = 0; sweep < SWEEPS; sweep++) {
     for (const entry of [...map.entries]) {
-      const refined = refine(map, entry, { noise, kinds: KINDS, before: known.get(entry) });
-      known.set(entry, refined);
+      if (held.has(entry)) continue;
+      const refined = refine(map, entry, { noise, kinds: KINDS, before: known.get(entry), held });
+      if (isNeeded(refined)) known.set(entry, refined);
+      else map.remove(entry);
     }
   }
-  const refined = map.entries.map((entry) => known.get(entry)!);
   const context = { map, survey, readings, residual, site, noise, settings, localRadiusM };
-  const drafts: Draft[] = refined.map((one) => sourceAnomaly(one, context));
-  const pins = drafts.map(({ anomaly }) => ({ x: anomaly.x, y: anomaly.y, sdM: anomaly.posSdM }));
-  const step = Math.max(survey.spacingM, 2 * survey.reachM);
-  const candidates = [...drafts.keys()].filter((k) => drafts[k]!.anomaly.pCasing < SURE_CASING);
-  const runs = alignments(candidates.map((k) => pins[k]!), {
-    toleranceM: ALIGN_REACHES * survey.reachM, gapM: ALIGN_GAP * step, leastMembers: ALIGN_MEMBERS, leastLengthM: ALIGN_LENGTH * step,
-  });
-  const merged = new Set<number>();
-  const list: Anomaly[] = runs.map((run) => {
-    const members = run.members.map((k) => candidates[k]!);
-    for (const k of members) merged.add(k);
-    return linearAnomaly(run, members.map((k) => drafts[k]!), context);
-  });
-  drafts.forEach(({ anomaly }, k) => {
-    if (!merged.has(k)) list.push(anomaly);
-  });
+  const drafts = map.entries.filter((entry) => !held.has(entry)).map((entry) => sourceAnomaly(known.get(entry)!, context));
+  const list: Anomaly[] = drafts.map(({ anomaly }) => anomaly);
+  for (const pipe of pipes) list.push(linearAnomaly(pipe, context));
   list.sort((a, b) => b.snr - a.snr || a.x - b.x || a.y - b.y);
   const notes = [
     `Sensor to source ${survey.reachM.toFixed(1)} m, lines ${survey.spacingM.toFixed(1)} m apart, sources fitted within ${survey.windowM.toFixed(0)} m. Ground is taken as flat.`,

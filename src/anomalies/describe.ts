@@ -2,11 +2,12 @@ import { ellipseOfCovariance } from '../density/ellipse.js';
 import type { Covariance } from '../density/types.js';
 import type { NoiseModel } from '../detection/types.js';
 import { HALF_WIDTH_FACTORS } from '../field/halfWidth.js';
-import { madSd } from '../numerics/robust.js';
+import { madSd, median } from '../numerics/robust.js';
 import type { Grid } from '../raster/types.js';
 import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
-import type { Alignment } from './alignment.js';
+import { straighten } from './alignment.js';
+import type { Pipe } from './pipes.js';
 import { LEAST_CHANCE, natureOf, type Candidates, type Nature, type PoleValues } from './classify.js';
 import { parameterRange, type Fit, type Window } from './fitSources.js';
 import { circleOutline, contourOutline } from './outline.js';
@@ -92,40 +93,59 @@ function ownValues(fit: Fit): { values: Float64Array; sd: (k: number) => number 
   return { values: fit.sources[0]!.values, sd: (k) => Math.sqrt(fit.covariance[(from + k) * fit.parameters + from + k]!) };
 }
 
-/** Several sources in a row become one: a pipe, cable or fence. */
-export function linearAnomaly(run: Alignment, members: readonly Draft[], context: DescribeContext): Anomaly {
-  const { survey, noise } = context;
-  const strongest = members.reduce((a, b) => (b.anomaly.snr > a.anomaly.snr ? b : a));
-  const s = Math.sin(run.azimuth);
-  const c = Math.cos(run.azimuth);
+/** A row of sources is one anomaly: a pipe, cable or fence. */
+export function linearAnomaly({ run, pieces }: Pipe, { survey, map }: DescribeContext): Anomaly {
+  const places = pieces.map(({ source }) => placeOf(source));
+  const straight = straighten(places.map(([x, y]) => ({ x, y, sdM: 0 })));
+  const azimuth = ((straight.azimuth % Math.PI) + Math.PI) % Math.PI;
+  const s = Math.sin(azimuth);
+  const c = Math.cos(azimuth);
+  const halfM = (run.to - run.from) / 2;
   const middle = (run.from + run.to) / 2;
-  const x = run.x + middle * s;
-  const y = run.y + middle * c;
-  const across = members.map(({ anomaly }) => (anomaly.x - run.x) * c - (anomaly.y - run.y) * s);
-  const acrossVar = (across.reduce((sum, a) => sum + a * a, 0) / across.length + noise.positionSdM ** 2) / Math.sqrt(across.length);
-  const alongVar = (run.to - run.from) ** 2 / 12;
+  // The middle of the run, moved across onto the straightened line.
+  const [mx, my] = [run.x + middle * Math.sin(run.azimuth), run.y + middle * Math.cos(run.azimuth)];
+  const off = (straight.x - mx) * c - (straight.y - my) * s;
+  const x = mx + off * c;
+  const y = my - off * s;
+  const acrossVar = places.reduce((sum, [px, py]) => sum + ((px - x) * c - (py - y) * s) ** 2, 0) / places.length ** 2 + survey.motion.positionSdM ** 2 / places.length;
+  const alongVar = halfM ** 2 / 3;
   const cov: Covariance = [alongVar * s * s + acrossVar * c * c, (alongVar - acrossVar) * s * c, alongVar * c * c + acrossVar * s * s];
   const { semiMajM, semiMinM, azimDeg } = ellipseOfCovariance(x, y, cov);
-  const weights = members.map(({ anomaly }) => 1 / (anomaly.depthSdM ** 2 + (0.1 * survey.reachM) ** 2));
-  const sum = weights.reduce((a, b) => a + b, 0);
-  const depthM = members.reduce((total, { anomaly }, k) => total + anomaly.depthM * weights[k]!, 0) / sum;
-  const depthSdM = Math.sqrt(members.reduce((total, { anomaly }, k) => total + (anomaly.depthM - depthM) ** 2 * weights[k]!, 0) / sum);
-  const outline = corridor({ ...run, x, y, from: run.from - middle - survey.reachM, to: run.to - middle + survey.reachM }, survey.reachM);
+  const depths = pieces.map(({ source }) => -source.values[2]!);
+  const outline = corridor({ x, y, azimuth, halfLengthM: halfM + survey.reachM }, survey.reachM);
+  const own = new Map<number, number>();
+  for (const { index, made } of pieces) index.forEach((i, k) => own.set(i, (own.get(i) ?? 0) + made[k]!));
+  const left = madSd(Float64Array.from(own.keys(), (i) => survey.blocks.value[i]! - map.made[i]!));
+  let peakNT = 0;
+  let energy = 0;
+  for (const [i, value] of own) {
+    energy += value * value;
+    if (Math.abs(value) > Math.abs(peakNT) && Math.abs(map.made[i]! - value) < Math.abs(value)) peakNT = value;
+  }
   return {
     anomalyId: '', class: 'linear', pCasing: LEAST_CHANCE, x, y, cov, semiMajM, semiMinM, azimDeg, posSdM: Math.sqrt((cov[0] + cov[2]) / 2),
-    peakNT: members.reduce((peak, { anomaly }) => (Math.abs(anomaly.peakNT) > Math.abs(peak) ? anomaly.peakNT : peak), 0),
-    snr: strongest.anomaly.snr, depthM, depthSdM, poleAM: NaN, poleSdAM: NaN, momentAM2: NaN,
-    strikeDeg: (run.azimuth * 180) / Math.PI, outline: outline.area, areaM2: outline.areaM2,
-    note: `${members.length} sources in a row over ${(run.to - run.from).toFixed(0)} m: a pipe, cable or fence. The place is the middle of the row; the outline is its course, ${(2 * survey.reachM).toFixed(1)} m wide.`,
+    peakNT, snr: Math.sqrt(energy * INDEPENDENT_BLOCKS) / Math.max(left, 1e-9), depthM: median(depths), depthSdM: madSd(depths),
+    poleAM: NaN, poleSdAM: NaN, momentAM2: NaN, strikeDeg: (azimuth * 180) / Math.PI, outline: outline.area, areaM2: outline.areaM2,
+    note: `${pieces.length} sources in a row over ${(2 * halfM).toFixed(0)} m: a pipe, cable or fence. The place is the middle of the row; the outline is its course, ${(2 * survey.reachM).toFixed(1)} m wide; depth is the median of its pieces.`,
   };
 }
 
-function corridor(run: Alignment, halfM: number): { area: Anomaly['outline']; areaM2: number } {
-  const s = Math.sin(run.azimuth);
-  const c = Math.cos(run.azimuth);
-  const corner = (along: number, across: number): [number, number] => [run.x + along * s + across * c, run.y + along * c - across * s];
-  const ring = [corner(run.from, -halfM), corner(run.from, halfM), corner(run.to, halfM), corner(run.to, -halfM), corner(run.from, -halfM)];
-  return { area: [[ring]], areaM2: 2 * halfM * (run.to - run.from) };
+/** Of blocks a tenth of the reach long, about one in ten hears noise of its own. */
+const INDEPENDENT_BLOCKS = 0.1;
+
+interface Corridor {
+  readonly x: number;
+  readonly y: number;
+  readonly azimuth: number;
+  readonly halfLengthM: number;
+}
+
+function corridor({ x, y, azimuth, halfLengthM }: Corridor, halfWidthM: number): { area: Anomaly['outline']; areaM2: number } {
+  const s = Math.sin(azimuth);
+  const c = Math.cos(azimuth);
+  const corner = (along: number, across: number): [number, number] => [x + along * s + across * c, y + along * c - across * s];
+  const ring = [corner(-halfLengthM, -halfWidthM), corner(halfLengthM, -halfWidthM), corner(halfLengthM, halfWidthM), corner(-halfLengthM, halfWidthM)];
+  return { area: [[[...ring, ring[0]!]]], areaM2: 4 * halfWidthM * halfLengthM };
 }
 
 function classOf(nature: Nature, vague: boolean): { cls: AnomalyClass; why: string } {

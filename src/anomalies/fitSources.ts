@@ -43,7 +43,7 @@ export interface Fit {
   /** Sum of squared whitened residuals, and the number of blocks it is over. */
   readonly chi2: number;
   readonly count: number;
-  /** Bayesian information criterion (Schwarz 1978) with the spread of collars and chains integrated out. */
+  /** Bayesian information criterion (Schwarz 1978) with the spread of collars integrated out. */
   readonly bic: number;
   /** Most likely states of the walk, 4 a block. */
   readonly states: Float64Array;
@@ -68,6 +68,8 @@ const COLLAR_SHARE = 0.3;
 const HEIGHT_PRIOR = 1;
 /** Averaging over a block and simplifying a casing to poles leave this share of the model as error, independent from block to block. */
 const MODEL_SHARE = 0.003;
+/** A lone line may strike any way. */
+const LINE_TURN = 100;
 const MAX_LAMBDA = 1e8;
 
 /** Standard deviation and mean of the prior on every parameter. */
@@ -87,8 +89,7 @@ function priors(window: Window, sources: readonly Source[], size: number): { mea
       set(1, source.anchorY, window.spacingM);
     } else {
       set(0, 0, window.spacingM);
-      precision[at + 1] = 1e-4;
-      mean[at + 1] = values[1]!;
+      set(1, values[1]!, LINE_TURN);
     }
     set(2, window.expectedZM, HEIGHT_PRIOR * window.reachM);
     for (let k = 3; k < values.length; k++) set(k, 0, strengthSd);
@@ -99,7 +100,6 @@ function priors(window: Window, sources: readonly Source[], size: number): { mea
         random[at + k] = 1;
       }
     }
-    if (kind === 'chain') random.fill(1, at + 3, at + values.length);
     at += values.length;
   }
   return { mean, precision, random };

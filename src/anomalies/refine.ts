@@ -20,8 +20,8 @@ export interface Refined {
 }
 
 /** Neighbours that are fitted along with a source, at most, and how near they have to lie, in windows. */
-const NEIGHBOURS = 3;
-const NEIGHBOUR_WINDOWS = 0.9;
+const NEIGHBOURS = 4;
+const NEIGHBOUR_WINDOWS = 1.1;
 
 export interface RefineOptions {
   readonly noise: NoiseModel;
@@ -29,13 +29,15 @@ export interface RefineOptions {
   readonly kinds: readonly Kind[];
   /** What an earlier fit of the source found: it begins there. */
   readonly before?: Refined | undefined;
+  /** Sources that may adapt to this fit but stay on the map as they are. */
+  readonly held?: ReadonlySet<Entry>;
 }
 
 /**
  * Fits a source once more, together with its neighbours, as each kind of source in turn. The map takes over the best fit,
  * neighbours included.
  */
-export function refine(map: SourceMap, entry: Entry, { noise, kinds, before }: RefineOptions): Refined {
+export function refine(map: SourceMap, entry: Entry, { noise, kinds, before, held }: RefineOptions): Refined {
   const { survey } = map;
   const [x, y] = placeOf(entry.source);
   const neighbours = map.near(x, y, NEIGHBOUR_WINDOWS * survey.windowM)
@@ -50,14 +52,19 @@ export function refine(map: SourceMap, entry: Entry, { noise, kinds, before }: R
   const left: Window = { ...near, fixed: [], value: Float64Array.from(near.index, (i) => survey.blocks.value[i]! - map.made[i]! + (own.get(i) ?? 0)) };
   const peak = peakOf(left, entry.source);
   const fits: Partial<Record<Kind, Fit>> = {};
-  for (const kind of new Set([entry.source.kind as Kind, ...kinds])) {
+  for (const kind of new Set([entry.source.kind, ...kinds])) {
+    if (kind === 'line' && passesHearing(map, entry) < LINE_PASSES) continue;
     const known = kind === entry.source.kind ? entry.source : before?.asKind[kind];
     const starts: Source[] = known ? [known] : startingPoints(left, kind, peak);
     fits[kind] = bestFit(window, starts, others)!;
   }
   const fit = Object.values(fits).reduce((a, b) => (b.bic < a.bic ? b : a));
-  map.learn(window, fit);
-  free.forEach((one, k) => map.move(one, fit.sources[k]!));
+  // On the map a source stays compact: what an endless line would do to its neighbours is anybody's guess.
+  const compact = [fits.pole, fits.dipole].filter((one) => one !== undefined).reduce((a, b) => (b.bic < a.bic ? b : a), fits.pole ?? fits.dipole ?? fit);
+  map.learn(window, compact);
+  free.forEach((one, k) => {
+    if (!held?.has(one)) map.move(one, compact.sources[k]!);
+  });
   const none = fitSources(window, others);
   return {
     entry, fit, window, bic: { pole: fits.pole?.bic ?? Infinity, dipole: fits.dipole?.bic ?? Infinity, line: fits.line?.bic ?? Infinity, none: none.bic },
@@ -77,4 +84,31 @@ function peakOf(left: Window, source: Source): { x: number; y: number; heightNT:
     if (heightNT !== 0) break;
   }
   return { x, y, heightNT };
+}
+
+/** A source is kept where it betters the information criterion by this much ("very strong", Kass & Raftery 1995), in units of the misfit. */
+export const GAIN = 10;
+
+/** Misfit of the best model in units of the noise, at least 1: evidence and covariance are weakened by it (quasi-likelihood). */
+export function misfitOf(fit: Fit): number {
+  return Math.max(1, fit.chi2 / Math.max(1, fit.count - fit.parameters));
+}
+
+export function isNeeded({ fit, bic }: Refined): boolean {
+  return fit.bic < bic.none - GAIN * misfitOf(fit);
+}
+
+/** Fewer passes than this cannot tell a line from anything else. */
+const LINE_PASSES = 3;
+/** A pass hears a source where that makes at least this share of its peak there. */
+const HEARD_SHARE = 0.25;
+
+function passesHearing({ survey }: SourceMap, { index, made }: Entry): number {
+  let peak = 0;
+  for (const value of made) peak = Math.max(peak, Math.abs(value));
+  const passes = new Set<number>();
+  index.forEach((i, k) => {
+    if (Math.abs(made[k]!) >= HEARD_SHARE * peak) passes.add(survey.blocks.pass[i]!);
+  });
+  return passes.size;
 }

@@ -2,11 +2,10 @@ import type { NoiseModel } from '../detection/types.js';
 import { bestFit } from './bestFit.js';
 import { fitSources, type Fit, type Window } from './fitSources.js';
 import { aboveMedian, findPeaks, localNoise, thinPeaks, type Peak } from './peaks.js';
-import { refine } from './refine.js';
-import { SourceMap, type Entry } from './sourceMap.js';
+import { GAIN, misfitOf, refine } from './refine.js';
+import type { Entry, SourceMap } from './sourceMap.js';
 import { placeOf } from './sources.js';
 import { startingPoints, type Kind } from './startingPoints.js';
-import type { Survey } from './survey.js';
 
 export interface SearchOptions {
   /** A peak has to stand out of the local noise by this factor. */
@@ -17,8 +16,6 @@ export interface SearchOptions {
   readonly maxRounds: number;
 }
 
-/** A source is kept where it betters the information criterion by this much ("very strong", Kass & Raftery 1995). */
-const GAIN = 10;
 /** Model and truth differ by some share of the field that is subtracted: no peak is sought in that remainder. */
 const MODEL_SHARE = 0.04;
 /** Share of the stated position error that is left after the fit has estimated it. */
@@ -36,24 +33,24 @@ const KINDS: readonly Kind[] = ['pole', 'dipole'];
 /**
  * Finds sources one after the other: peaks of what is left along the passes, the strongest of each neighbourhood first;
  * a fit of each kind of source; the best is kept where the information criterion wants it, and subtracted; again until
- * nothing stands out.
+ * nothing stands out. True where it stopped at `maxSources`.
  *
  * Source: matching pursuit, Mallat & Zhang (1993); the same idea as CLEAN, Högbom (1974).
  */
-export function searchSources(survey: Survey, noise: NoiseModel, options: SearchOptions): { map: SourceMap; full: boolean } {
-  const map = new SourceMap(survey);
+export function searchSources(map: SourceMap, noise: NoiseModel, options: SearchOptions): boolean {
+  const { survey } = map;
   const tried = new Set<number>();
   for (let round = 0; round < options.maxRounds; round++) {
     const peaks = peaksLeft(map, options).filter((peak) => !tried.has(peak.block));
     let accepted = 0;
     for (const peak of thinPeaks(peaks, Math.max(ROUND_REACHES * survey.reachM, ROUND_SPACINGS * survey.spacingM))) {
-      if (map.entries.length >= options.maxSources) return { map, full: true };
+      if (map.entries.length >= options.maxSources) return true;
       if (tryPeak(map, peak, noise)) accepted++;
       else tried.add(peak.block);
     }
     if (accepted === 0) break;
   }
-  return { map, full: false };
+  return false;
 }
 
 /** Peaks of the residual less all sources found, where model and position error cannot have made them. */
@@ -78,15 +75,14 @@ function tryPeak(map: SourceMap, peak: Peak, noise: NoiseModel): Entry | null {
     if (fit && (!best || fit.bic < best.bic)) best = fit;
   }
   if (!best) return null;
-  const misfit = Math.max(1, best.chi2 / Math.max(1, best.count - best.parameters));
-  if (best.bic > without.bic - GAIN * misfit) return null;
+  if (best.bic > without.bic - GAIN * misfitOf(best)) return null;
   const source = best.sources[0]!;
   const [x, y] = placeOf(source);
   if (Math.hypot(x - peak.x, y - peak.y) > survey.windowM) return null;
   for (const other of map.near(x, y, APART_REACHES * survey.reachM)) if (other.source.kind !== 'line') return null;
   map.learn(window, best);
   const entry = map.add(source);
-  const neighbours = map.near(x, y, survey.windowM).filter((other) => other !== entry);
+  const neighbours = map.near(x, y, survey.windowM).filter((other) => other !== entry && other.source.kind !== 'line');
   if (neighbours.length > 0) {
     refine(map, entry, { noise, kinds: KINDS });
     for (const other of neighbours.slice(0, SETTLE)) refine(map, other, { noise, kinds: KINDS });

@@ -50,17 +50,6 @@ export function addSource(b: Vector, source: Source, at: readonly [number, numbe
       b[0] += across * c;
       b[1] -= across * s;
       b[2] += k * (along * w - v[4]!);
-      return;
-    }
-    case 'chain': {
-      const c = Math.cos(v[1]!);
-      const s = Math.sin(v[1]!);
-      const baseX = x - source.anchorX - v[0]! * c;
-      const baseY = y - source.anchorY + v[0]! * s;
-      for (let k = 0; k < source.nodes.length; k++) {
-        const t = source.nodes[k]!;
-        addDipole(b, v[3 + 3 * k]!, v[4 + 3 * k]!, v[5 + 3 * k]!, baseX - t * s, baseY - t * c, z - v[2]!);
-      }
     }
   }
 }
@@ -176,26 +165,6 @@ function derivatives(out: FieldOfSources, source: Source, spot: Spot): void {
       put(3, k2 * ((2 * q * up) / p2 - uq));
       put(4, k2 * ((2 * w * up) / p2 - u[2]));
       out.slopeX[i]! += gq * c; out.slopeY[i]! -= gq * s; out.slopeZ[i]! += gw;
-      return;
-    }
-    case 'chain': {
-      const c = Math.cos(v[1]!);
-      const s = Math.sin(v[1]!);
-      let offset = 0;
-      let turn = 0;
-      let lift = 0;
-      for (let k = 0; k < source.nodes.length; k++) {
-        const t = source.nodes[k]!;
-        const rx = at[0] - source.anchorX - v[0]! * c - t * s;
-        const ry = at[1] - source.anchorY + v[0]! * s - t * c;
-        const slope = dipoleSlope([v[3 + 3 * k]!, v[4 + 3 * k]!, v[5 + 3 * k]!], rx, ry, at[2] - v[2]!, u);
-        for (let j = 0; j < 3; j++) put(3 + 3 * k + j, slope[3 + j]!);
-        offset -= slope[0]! * c - slope[1]! * s;
-        turn -= slope[0]! * (t * c - v[0]! * s) - slope[1]! * (t * s + v[0]! * c);
-        lift -= slope[2]!;
-        out.slopeX[i]! += slope[0]!; out.slopeY[i]! += slope[1]!; out.slopeZ[i]! += slope[2]!;
-      }
-      put(0, offset); put(1, turn); put(2, lift);
     }
   }
 }

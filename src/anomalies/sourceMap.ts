@@ -14,7 +14,7 @@ export interface Entry {
   made: Float64Array;
 }
 
-/** Beyond this many windows a source is not subtracted any more; from the first on it is faded out, so that no edge shows. */
+/** A source is faded out between so many windows away and so many, so that no edge shows. */
 const FADE_FROM = 2;
 const FADE_TO = 3;
 /** An endless line stands for a piece of pipe: it is subtracted in its own window only. */

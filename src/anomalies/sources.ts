@@ -3,17 +3,15 @@
  * - pole: x, y, z, a (A·m, −m: positive where it attracts), then the poles at the collars below it, same sign.
  * - dipole: x, y, z, moment east, north, up (A·m²).
  * - line: offset across, azimuth (radians), z, moment per metre across and up (A·m); endless, through its anchor.
- * - chain: offset across, azimuth, z, then east, north, up of each dipole on its line, `nodes` metres along from the anchor.
  */
 export interface Source {
-  readonly kind: 'pole' | 'dipole' | 'line' | 'chain';
+  readonly kind: 'pole' | 'dipole' | 'line';
   readonly values: Float64Array;
-  /** Where it was first suspected; for a line or chain also the point that its parameters count from. */
+  /** Where it was first suspected; for a line also the point that its parameters count from. */
   readonly anchorX: number;
   readonly anchorY: number;
   /** Standard deviation of the loose prior on each strength or moment, in its own unit. */
   readonly strengthSd: number;
-  readonly nodes: Float64Array;
 }
 
 /**
@@ -31,18 +29,13 @@ export interface Suspicion {
 }
 
 export function pole(at: Triple, a: number, suspicion: Suspicion): Source {
-  return { kind: 'pole', values: Float64Array.of(...at, a, ...COLLAR_DEPTHS_M.map(() => 0)), nodes: new Float64Array(0), ...suspicion };
+  return { kind: 'pole', values: Float64Array.of(...at, a, ...COLLAR_DEPTHS_M.map(() => 0)), ...suspicion };
 }
 export function dipole(at: Triple, moment: Triple, suspicion: Suspicion): Source {
-  return { kind: 'dipole', values: Float64Array.of(...at, ...moment), nodes: new Float64Array(0), ...suspicion };
+  return { kind: 'dipole', values: Float64Array.of(...at, ...moment), ...suspicion };
 }
 export function line(shape: Triple, momentPerM: readonly [number, number], suspicion: Suspicion): Source {
-  return { kind: 'line', values: Float64Array.of(...shape, ...momentPerM), nodes: new Float64Array(0), ...suspicion };
-}
-export function chain(shape: Triple, nodes: Float64Array, suspicion: Suspicion): Source {
-  const values = new Float64Array(3 + 3 * nodes.length);
-  values.set(shape);
-  return { kind: 'chain', values, nodes, ...suspicion };
+  return { kind: 'line', values: Float64Array.of(...shape, ...momentPerM), ...suspicion };
 }
 export function withValues(source: Source, values: Float64Array): Source {
   return { ...source, values };
@@ -50,6 +43,6 @@ export function withValues(source: Source, values: Float64Array): Source {
 /** The point of the source nearest to its anchor, or the source itself. */
 export function placeOf(source: Source): [number, number] {
   const v = source.values;
-  if (source.kind === 'pole' || source.kind === 'dipole') return [v[0]!, v[1]!];
+  if (source.kind !== 'line') return [v[0]!, v[1]!];
   return [source.anchorX + v[0]! * Math.cos(v[1]!), source.anchorY - v[0]! * Math.sin(v[1]!)];
 }
