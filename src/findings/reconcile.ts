@@ -4,6 +4,7 @@ import { expectation } from '../density/expectation.js';
 import type { Grid } from '../raster/types.js';
 import type { Records, UnplacedRecord, WellRecord } from '../records/types.js';
 import { digOrder } from './digOrder.js';
+import { intensities, type Intensities } from './intensities.js';
 import { matchPosterior, type GroupShift, type Posterior } from './posterior.js';
 import { remainsAfterEmptySearch } from './remains.js';
 import type { Finding, Findings, PairChance } from './types.js';
@@ -21,15 +22,14 @@ export interface ReconcileOptions {
   readonly unrecordedAt: number;
   /** An anomaly is worth a row of its own where it is classed as a casing or is one with at least this chance. */
   readonly casingAt: number;
-  /** Casings that no record tells of, per hectare, before any search. */
-  readonly unrecordedPerHa: number;
-  /** Sources that are no casings, per hectare; unsaid, as many as this survey's anomalies make likely. */
+  /** Casings that no record tells of, per hectare; unsaid, see `intensities`. */
+  readonly unrecordedPerHa?: number;
+  /** Sources that are no casings, per hectare; unsaid, see `intensities`. */
   readonly othersPerHa?: number;
 }
 
-/** One unrecorded casing on ten hectares of an old field (a working assumption; state what is known of yours). */
-export const RECONCILE_DEFAULTS: Readonly<Omit<ReconcileOptions, 'othersPerHa'>> = Object.freeze({
-  locatedAt: 0.9, ambiguousAt: 0.5, notSearchedBelow: 0.05, unrecordedAt: 0.5, casingAt: 0.5, unrecordedPerHa: 0.1,
+export const RECONCILE_DEFAULTS: Readonly<Omit<ReconcileOptions, 'unrecordedPerHa' | 'othersPerHa'>> = Object.freeze({
+  locatedAt: 0.9, ambiguousAt: 0.5, notSearchedBelow: 0.05, unrecordedAt: 0.5, casingAt: 0.5,
 });
 
 export interface SearchedGround {
@@ -39,8 +39,6 @@ export interface SearchedGround {
   readonly covered: Grid;
 }
 
-/** Half a source is added to those counted, so that a survey without any does not claim that there are none (Jeffreys' prior for a count). */
-const HALF_A_SOURCE = 0.5;
 /** Pairs less likely than this are not listed. */
 const LEAST_PAIR = 1e-3;
 /** A group's shift is told where the matches have narrowed it to less than this share of its prior. */
@@ -60,12 +58,12 @@ export function reconcile(records: Records, anomalies: Anomalies, ground: Search
   const list = anomalies.list;
   const covered = records.placed.map(({ density }) => share(expectation(density, ground.covered)));
   const detect = records.placed.map(({ density }, i) => Math.min(covered[i]!, share(expectation(density, ground.detection))));
-  const hectares = openM2(ground.covered) / M2_PER_HA;
-  const others = list.reduce((sum, { pCasing }) => sum + 1 - pCasing, HALF_A_SOURCE);
-  const othersPerHa = settings.othersPerHa ?? others / Math.max(hectares, Number.MIN_VALUE);
+  const perHa = intensities(list, {
+    hectares: openM2(ground.covered) / M2_PER_HA, expected: records.placed.reduce((sum, { pCasing }, i) => sum + pCasing * detect[i]!, 0), stated: settings,
+  });
   const posterior = matchPosterior({
     records: records.placed, detect, anomalies: list,
-    prior: { unrecordedPerM2: settings.unrecordedPerHa / M2_PER_HA, othersPerM2: othersPerHa / M2_PER_HA, casingOdds: CASING_SHARE / (1 - CASING_SHARE) },
+    prior: { unrecordedPerM2: perHa.unrecorded / M2_PER_HA, othersPerM2: perHa.others / M2_PER_HA, casingOdds: CASING_SHARE / (1 - CASING_SHARE) },
   });
 
   const sharedOut = list.map((_, j) => isSharedOut(posterior.pairs.map((row) => row[j]!), settings));
@@ -78,7 +76,7 @@ export function reconcile(records: Records, anomalies: Anomalies, ground: Search
   const pairs: PairChance[] = records.placed.flatMap((record, i) =>
     list.map((anomaly, j) => ({ recordId: record.recordId, anomalyId: anomaly.anomalyId, p: posterior.pairs[i]![j]! }))
       .filter(({ p }) => p >= LEAST_PAIR).toSorted((a, b) => b.p - a.p));
-  return { list: digOrder(rows, list, posterior.casing), pairs, notes: notes(settings, othersPerHa, posterior.shifts) };
+  return { list: digOrder(rows, list, posterior.casing), pairs, notes: notes(perHa, posterior.shifts) };
 }
 
 interface RecordChances {
@@ -159,10 +157,10 @@ function bearing(record: WellRecord, anomaly: Anomaly): { distM: number; azimDeg
   return { distM: Math.hypot(dx, dy), azimDeg: ((Math.atan2(dx, dy) * 180) / Math.PI + 360) % 360 };
 }
 
-function notes(settings: ReconcileOptions, othersPerHa: number, shifts: readonly GroupShift[]): string[] {
+function notes(perHa: Intensities, shifts: readonly GroupShift[]): string[] {
   return [
     'Magnetics cannot see a well whose casing was pulled, cut off below reach, or never of steel.',
-    `Before the search, ${settings.unrecordedPerHa} casings per hectare that no record tells of and ${othersPerHa.toPrecision(2)} other sources per hectare were taken as likely.`,
+    `Taken as likely for each hectare: ${perHa.unrecorded.toPrecision(2)} casings that no record tells of and ${perHa.others.toPrecision(2)} other sources.`,
     ...shifts.filter(({ sdM, priorSdM }) => sdM < TOLD_SHIFT * priorSdM).map(({ id, eastM, northM, sdM }) =>
       `Records of the group ${id} lie off the casings by a common ${Math.hypot(eastM, northM).toFixed(1)} m (${eastM.toFixed(1)} m east, ${northM.toFixed(1)} m north of where the records say, each ± ${sdM.toFixed(1)} m).`),
   ];

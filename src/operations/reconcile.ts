@@ -21,7 +21,7 @@ export const reconcile: Operation = {
     not_searched_below: chance(RECONCILE_DEFAULTS.notSearchedBelow, 'It is not searched for where its well lies in ground searched with less than this chance.'),
     unrecorded_at: chance(RECONCILE_DEFAULTS.unrecordedAt, 'A casing is unrecorded where no record tells of it with at least this chance.'),
     casing_at: chance(RECONCILE_DEFAULTS.casingAt, 'An anomaly gets a row of its own where it is classed as a casing or is one with at least this chance.'),
-    unrecorded_per_ha: { type: 'number', exclusiveMinimum: 0, default: RECONCILE_DEFAULTS.unrecordedPerHa, description: 'Casings that no record tells of, per hectare, before any search.' },
+    unrecorded_per_ha: { type: 'number', exclusiveMinimum: 0, description: 'Casings that no record tells of, per hectare; unsaid, one on ten hectares, raised by as many as the anomalies hold beyond what the records make likely.' },
     others_per_ha: { type: 'number', exclusiveMinimum: 0, description: 'Sources that are no casings, per hectare; unsaid, as many as the anomalies of this survey make likely.' },
   }),
   inputs: {

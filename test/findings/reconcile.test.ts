@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { PRIOR } from '../../src/anomalies/classify.js';
 import { CASING_SHARE } from '../../src/detection/sourcePrior.js';
+import { intensities } from '../../src/findings/intensities.js';
 import { RECONCILE_DEFAULTS, reconcile, type ReconcileOptions } from '../../src/findings/reconcile.js';
 import type { Finding, Findings } from '../../src/findings/types.js';
 import { reconcile as operation } from '../../src/operations/reconcile.js';
@@ -20,7 +21,7 @@ describe('by hand', () => {
     const F = Math.exp(-25 / (2 * s2)) / (2 * Math.PI * s2);
     const L = 9 / (0.35 / 0.65);
     const w = (0.8 * F * L) / ((1 - 0.72) * (1e-5 * L + 2e-4));
-    const findings = reconcile(records(record('R1', 0, 0)), anomalies(anomaly('A1', 3, 4)), everywhere, { othersPerHa: 2 });
+    const findings = reconcile(records(record('R1', 0, 0)), anomalies(anomaly('A1', 3, 4)), everywhere, { unrecordedPerHa: 0.1, othersPerHa: 2 });
     expect(pair(findings, 'R1', 'A1')).toBeCloseTo(w / (1 + w), 6);
     const located = row(findings, 'R1');
     expect(located.finding).toBe('located');
@@ -43,7 +44,7 @@ describe('by hand', () => {
     };
     const [a, b, c, d] = [w('R1', 'A1'), w('R1', 'A2'), w('R2', 'A1'), w('R2', 'A2')];
     const z = 1 + a + b + c + d + a * d + b * c;
-    const findings = reconcile(records(record('R1', 0, 0), record('R2', 8, 0)), anomalies(anomaly('A1', 6, 3), anomaly('A2', 12, -1)), everywhere, { othersPerHa: 2 });
+    const findings = reconcile(records(record('R1', 0, 0), record('R2', 8, 0)), anomalies(anomaly('A1', 6, 3), anomaly('A2', 12, -1)), everywhere, { unrecordedPerHa: 0.1, othersPerHa: 2 });
     expect(pair(findings, 'R1', 'A1')).toBeCloseTo((a + a * d) / z, 6);
     expect(pair(findings, 'R1', 'A2')).toBeCloseTo((b + b * c) / z, 6);
     expect(pair(findings, 'R2', 'A1')).toBeCloseTo((c + b * c) / z, 6);
@@ -65,6 +66,24 @@ describe('by hand', () => {
 
   it('starts from the same odds of casing against other as the anomalies do', () => {
     expect(CASING_SHARE).toBe(PRIOR.casing);
+  });
+});
+
+describe('how densely unrecorded sources lie', () => {
+  const of = (list: Parameters<typeof intensities>[0], expected = 0): ReturnType<typeof intensities> => intensities(list, { hectares: 20, expected, stated: {} });
+
+  it('is the prior before anything was found, then what the survey shows', () => {
+    // Gamma prior of shape 0.5 and mean 0.1 per hectare weighs like 5 hectares: 0.5/25, then (0.5 + 4 · 0.9 − 1.6)/25.
+    expect(of([]).unrecorded).toBeCloseTo(0.02, 12);
+    expect(intensities([], { hectares: 0, expected: 0, stated: {} }).unrecorded).toBeCloseTo(0.1, 12);
+    const four = [1, 2, 3, 4].map((k) => anomaly(`A${k}`, 0, 0));
+    expect(of(four, 1.6).unrecorded).toBeCloseTo(2.5 / 25, 12);
+    expect(of(four, 9).unrecorded).toBeCloseTo(0.02, 12);
+    expect(of(four).others).toBeCloseTo(0.9 / 20, 12);
+  });
+
+  it('is what the user states, where stated', () => {
+    expect(intensities([anomaly('A1', 0, 0)], { hectares: 20, expected: 0, stated: { unrecordedPerHa: 3, othersPerHa: 7 } })).toEqual({ unrecorded: 3, others: 7 });
   });
 });
 
@@ -191,7 +210,7 @@ describe('what must hold', () => {
 
   it('a likelier casing, a nearer one, a surer record: the match is the surer', () => {
     const p = (r: Parameters<typeof record>[3], a: Parameters<typeof anomaly>[3], x = 8): number =>
-      pair(reconcile(records(record('R1', 0, 0, r)), anomalies(anomaly('A1', x, 0, a)), everywhere, { othersPerHa: 5 }), 'R1', 'A1');
+      pair(reconcile(records(record('R1', 0, 0, r)), anomalies(anomaly('A1', x, 0, a)), everywhere, { unrecordedPerHa: 0.1, othersPerHa: 5 }), 'R1', 'A1');
     const base = p({}, { pCasing: 0.3 });
     expect(p({}, { pCasing: 0.6 })).toBeGreaterThan(base);
     expect(p({ pCasing: 0.95 }, { pCasing: 0.3 })).toBeGreaterThan(base);
