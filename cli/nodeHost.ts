@@ -1,20 +1,15 @@
 import { createHash } from 'node:crypto';
 import { readdir, readFile, stat } from 'node:fs/promises';
 import { isAbsolute, join, resolve } from 'node:path';
-import { promisify } from 'node:util';
-import { deflate } from 'node:zlib';
 import { UserError } from '../src/errors.js';
 import type { Host } from '../src/survey/host.js';
-
-const deflateAsync = promisify(deflate);
-/** zlib's own default: 9 is hardly smaller on noisy floats and twice as slow. */
-const DEFLATE_LEVEL = 6;
+import { deflate } from './deflate.js';
 
 /** Files, DEFLATE, SHA-256 and SQLite as Node has them. */
 export function nodeHost(progress: (message: string) => void): Host {
   return {
     files: { read: readBytes, has: isFile, list: listFolder },
-    deflate: (bytes) => deflateAsync(bytes, { level: DEFLATE_LEVEL }),
+    deflate,
     sha256: (bytes) => createHash('sha256').update(bytes).digest('hex'),
     resolve: (path, folder) => (isAbsolute(path) ? path : resolve(folder, path)),
     sqlite: async () => (await import('@sqlite.org/sqlite-wasm')).default(),

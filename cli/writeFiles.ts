@@ -2,7 +2,7 @@ import { mkdir, rename, rm, writeFile } from 'node:fs/promises';
 import { dirname, join } from 'node:path';
 
 /** A file that is being written carries this ending until all of them are whole. */
-const UNFINISHED = '.unfinished';
+export const UNFINISHED = '.unfinished';
 
 /**
  * Writes files into a folder so that none is ever half there under its final name: all are written under another name
