@@ -9,7 +9,7 @@ export function liesInRing(ring: readonly PlanePoint[], [x, y]: PlanePoint, slac
     if (ay > y !== by > y && x < ax + ((bx - ax) * (y - ay)) / (by - ay)) inside = !inside;
     const length2 = (bx - ax) ** 2 + (by - ay) ** 2;
     const t = Math.min(1, Math.max(0, ((x - ax) * (bx - ax) + (y - ay) * (by - ay)) / length2));
-    if (Math.hypot(x - ax - t * (bx - ax), y - ay - t * (by - ay)) <= slackM) return true;
+    if ((x - ax - t * (bx - ax)) ** 2 + (y - ay - t * (by - ay)) ** 2 <= slackM * slackM) return true;
   }
   return inside;
 }

@@ -26,14 +26,14 @@ export function lineDistance(line: readonly TracedPoint[], side: Side, [east, no
   for (let i = 0; i < line.length - 1; i++) {
     const a = line[i]!;
     const b = line[i + 1]!;
-    const length = Math.hypot(b.east - a.east, b.north - a.north);
+    const length = Math.sqrt((b.east - a.east) ** 2 + (b.north - a.north) ** 2);
     const [ux, uy] = [(b.east - a.east) / length, (b.north - a.north) / length];
     const [dx, dy] = [east - a.east, north - a.north];
     const across = ux * dy - uy * dx;
     const station = ux * dx + uy * dy;
     const at = Math.min(i === line.length - 2 ? Infinity : length, Math.max(i === 0 ? -Infinity : 0, station));
     const beyond = station - at;
-    const reach = Math.hypot(across, beyond);
+    const reach = beyond === 0 ? Math.abs(across) : Math.hypot(across, beyond);
     if (best && reach >= Math.abs(best.distanceM)) continue;
     const inside = across >= 0 === sign > 0 ? 1 : -1;
     const normal: PlanePoint = beyond === 0 || reach < AT_BEND_M

@@ -2,7 +2,8 @@ import { UserError } from '../../errors.js';
 import { US_SURVEY_FOOT_M } from '../../units.js';
 import { planeRing } from './aliquotPolygon.js';
 import { callCovariance, toFrameMatrix } from './callCovariance.js';
-import { lineDistance, type LineDistance } from './lineDistance.js';
+import { lineDistance } from './lineDistance.js';
+import { meetOffsets } from './meetOffsets.js';
 import { partLines, WHOLE } from './partLines.js';
 import { liesInRing } from './liesInRing.js';
 import type { TracedPoint } from './tracedPoint.js';
@@ -27,12 +28,6 @@ export const CALL_DEFAULTS: CallOptions = Object.freeze({ where: '', measureSdM:
 
 /** How far a place may lie outside its part by rounding: a call of 0 ft lies on the line. */
 const ON_LINE_M = 1e-4;
-/** Each step shrinks the error by about the bend of the lines in radians, so that some five steps reach rounding. */
-const MAX_STEPS = 60;
-const SOLVED_M = 1e-7;
-/** Lines that meet at a flatter angle than this (sine) fix no place. */
-const MIN_SINE = 0.3;
-
 const WORDS: Readonly<Record<Side, string>> = { N: 'north', S: 'south', E: 'east', W: 'west' };
 
 /**
@@ -54,10 +49,17 @@ export function placeFromCalls(section: Section, calls: FootageCalls, part: Aliq
   checkCalls(section, calls, where);
   const lines = partLines(section, part);
   const ring = planeRing(lines);
-  for (const call of calls) checkReach(call, { lines, ring, part, section, where });
   const middle: PlanePoint = [mean(ring, 0), mean(ring, 1)];
-  const { place, feet } = solve(lines, calls, middle);
+  const solved = meetOffsets(lines, calls, middle);
+  if (!solved) {
+    throw new UserError({
+      code: 'polygon_invalid', where, found: `${wording(calls[0])} and ${wording(calls[1])} of ${nameOf(section, part)}, whose lines bend so that no one place fits`,
+      wanted: 'lines that are nearly straight', advice: 'place this record otherwise',
+    });
+  }
+  const { place, feet } = solved;
   if (!liesInRing(ring, place, ON_LINE_M)) {
+    for (const call of calls) checkReach(call, { lines, ring, part, section, where });
     throw invalid(where, `${wording(calls[0])} and ${wording(calls[1])}, which lead out of ${nameOf(section, part)}`, 'calls that meet inside it');
   }
   const [x, y] = section.plane.toFrame(...place);
@@ -66,7 +68,7 @@ export function placeFromCalls(section: Section, calls: FootageCalls, part: Aliq
   return {
     x, y, ...cov,
     byVertex: cov.byVertex.map(({ index, jacobian }) => {
-      const [vx, vy] = section.plane.toFrame(...section.vertices[index]!);
+      const [vx, vy] = section.frameVertices[index]!;
       return { x: vx, y: vy, jacobian: frame.turned(jacobian) };
     }),
   };
@@ -102,21 +104,6 @@ function checkReach(call: FootageCall, { lines, ring, part, section, where }: Gr
   const reach = Math.max(...ring.map((p) => lineDistance(lines[call.from], call.from, p).distanceM));
   if (call.distanceM <= reach + ON_LINE_M) return;
   throw invalid(where, `${wording(call)} of ${nameOf(section, part)}`, `at most ${feetOf(reach)}, as far as it reaches from there`);
-}
-
-/** Newton's method on the two distances; their gradients are unit normals that change only from piece to piece. */
-function solve(lines: Ground['lines'], calls: FootageCalls, start: PlanePoint): { place: PlanePoint; feet: [LineDistance, LineDistance] } {
-  let place = start;
-  for (let step = 0; step < MAX_STEPS; step++) {
-    const a = lineDistance(lines[calls[0].from], calls[0].from, place);
-    const b = lineDistance(lines[calls[1].from], calls[1].from, place);
-    const sine = a.normal[0] * b.normal[1] - a.normal[1] * b.normal[0];
-    if (Math.abs(sine) < MIN_SINE) throw new Error('placeFromCalls: lines nearly parallel in a section whose corners were found');
-    const [da, db] = [calls[0].distanceM - a.distanceM, calls[1].distanceM - b.distanceM];
-    if (Math.hypot(da, db) < SOLVED_M) return { place, feet: [a, b] };
-    place = [place[0] + (da * b.normal[1] - db * a.normal[1]) / sine, place[1] + (db * a.normal[0] - da * b.normal[0]) / sine];
-  }
-  throw new Error('placeFromCalls: the offset lines were not brought to meet');
 }
 
 function mean(ring: readonly PlanePoint[], axis: 0 | 1): number {

@@ -21,6 +21,8 @@ export const SECTION_DEFAULTS: SectionOptions = Object.freeze({ where: 'section 
 
 /** A line bent further off its chord than this share of its length is meandered or broken: 158 ft in a mile, where real lines bend by some tens of feet. */
 const MAX_BEND_SHARE = 0.03;
+/** A line longer than its chord by this share winds: one that bends by all of the former is longer by 0.002, one with an offset of a chain by 0.013. */
+const MAX_DETOUR_SHARE = 0.02;
 const SIDES: readonly Side[] = ['N', 'S', 'E', 'W'];
 
 /**
@@ -61,7 +63,7 @@ export function sectionGeometry(geometry: Geometry | null, crs: Crs, options: Pa
   }
   const irregular = SIDES.filter((side) => isIrregular(vertices, lines[side]));
   for (const side of irregular) notes.push(`${name}: its ${side} line is too crooked to measure from`);
-  return { where, name, plane, vertices, lines, quarters, sixteenths, irregular, notes };
+  return { where, name, plane, vertices, frameVertices: frame, lines, quarters, sixteenths, irregular, notes };
 }
 
 /** The vertex between the ends of a line that lies nearest its middle by length, within the tolerance. */
@@ -85,12 +87,17 @@ function isIrregular(vertices: readonly PlanePoint[], line: readonly number[]): 
   const [bx, by] = vertices[line.at(-1)!]!;
   const length = Math.hypot(bx - ax, by - ay);
   let last = -Infinity;
+  let path = 0;
+  let [px, py] = [ax, ay];
   for (const index of line) {
-    const [dx, dy] = [vertices[index]![0] - ax, vertices[index]![1] - ay];
+    const [x, y] = vertices[index]!;
+    path += Math.hypot(x - px, y - py);
+    [px, py] = [x, y];
+    const [dx, dy] = [x - ax, y - ay];
     const along = (dx * (bx - ax) + dy * (by - ay)) / length;
     const off = Math.abs(dx * (by - ay) - dy * (bx - ax)) / length;
     if (off > MAX_BEND_SHARE * length || along <= last) return true;
     last = along;
   }
-  return false;
+  return path > (1 + MAX_DETOUR_SHARE) * length;
 }

@@ -110,6 +110,8 @@ export interface Section {
   readonly name: string;
   readonly plane: GroundPlane;
   readonly vertices: readonly PlanePoint[];
+  /** The same vertices in frame metres, as they stand in the layer. */
+  readonly frameVertices: ReadonlyArray<readonly [x: number, y: number]>;
   /** Indices of the vertices of each line, both corners included: west to east for N and S, south to north for E and W. */
   readonly lines: Readonly<Record<Side, readonly number[]>>;
   /** Index of the quarter corner of each line where the layer has a vertex for it, else null: then its midpoint serves. */
