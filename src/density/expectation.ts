@@ -1,10 +1,12 @@
 import type { Grid } from '../raster/types.js';
 import { normalCdf } from '../numerics/special.js';
 import { areaBounds, areaM2 } from './area.js';
+import { blurShifts, shiftedArea } from './blurShifts.js';
 import { coverage, type Lattice } from './coverage.js';
 import { discArea } from './discArea.js';
+import { coreCovariance, localFrame } from './localFrame.js';
 import { steadyCovariance } from './parts.js';
-import type { Area, Covariance, Density } from './types.js';
+import type { Area, Covariance, Density, GaussianPart } from './types.js';
 
 /** A Gaussian is followed this many σ out; what lies beyond weighs less than 1e−9. */
 const REACH_SIGMAS = 6.5;
@@ -19,16 +21,31 @@ const WEIGHTS = [5 / 18, 8 / 18, 5 / 18];
 /**
  * ∫ density × grid over the plane, blunders included. A cell's value holds all over the cell; a cell with NaN and all
  * ground outside the grid count 0. Discs and areas are cut exactly at the cells' edges; a Gaussian is integrated over
- * each cell, so one that is smaller than a cell comes out right.
+ * each cell, so one that is smaller than a cell comes out right. A rounded Gaussian is a rectangle with blurred edges;
+ * blur is a sum over shifts, within about 1e−3 where the grid does not change from cell to cell.
  */
 export function expectation(density: Density, grid: Grid): number {
   let sum = 0;
   for (const part of density.parts) {
     if (part.weight === 0) continue;
-    if (part.kind === 'gaussian') sum += part.weight * overGaussian(grid, part);
-    else sum += part.weight * (part.kind === 'disc' ? overDisc(grid, part) : overArea(grid, part.area));
+    if (part.kind === 'disc') sum += part.weight * overDisc(grid, part);
+    else if (part.kind === 'area') sum += part.weight * overBlurredArea(grid, part.area, part.cov);
+    else if (part.rounding) sum += part.weight * overBlurredArea(grid, roundingArea(part), coreCovariance(part.cov, part.rounding));
+    else sum += part.weight * overGaussian(grid, part);
   }
   return sum;
+}
+
+/** The rectangle that a part's digits leave open. */
+function roundingArea(part: GaussianPart): Area {
+  const { x, y, matrix: [a, b, c, d], halfWidths: [first, second] } = localFrame(part);
+  const corners = [[-1, -1], [1, -1], [1, 1], [-1, 1], [-1, -1]] as const;
+  return [[corners.map(([u, v]) => [x + a * first * u + b * second * v, y + c * first * u + d * second * v] as const)]];
+}
+
+function overBlurredArea(grid: Grid, area: Area, cov: Covariance | undefined): number {
+  if (!cov) return overArea(grid, area);
+  return blurShifts(cov).reduce((sum, { weight, dx, dy }) => sum + weight * overArea(grid, shiftedArea(area, dx, dy)), 0);
 }
 
 function overArea(grid: Grid, area: Area): number {

@@ -14,7 +14,7 @@ export function partMoments(part: DensityPart): { x: number; y: number; cov: Cov
       return { x: part.x, y: part.y, cov: [part.radiusM ** 2 / 4, 0, part.radiusM ** 2 / 4] };
     case 'area': {
       const { x, y, cov } = areaMoments(part.area);
-      return { x, y, cov };
+      return { x, y, cov: part.cov ? [cov[0] + part.cov[0], cov[1] + part.cov[1], cov[2] + part.cov[2]] : cov };
     }
   }
 }
