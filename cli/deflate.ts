@@ -8,7 +8,7 @@ const LEVEL = 6;
 /** Shorter bytes are compressed as they are: a trial would cost more than it could save. */
 const TRIAL_FROM_BYTES = 1 << 18;
 /** The trial looks at pieces of this size, spread evenly: one may lie in a gap of the data. */
-const TRIAL_PIECE_BYTES = 1 << 15;
+const TRIAL_PIECE_BYTES = 1 << 14;
 const TRIAL_PIECES = 2;
 /** What the fast way may cost in size. Noise in floats costs 1 to 2.5 %, anything with patterns more than 6. */
 const TRIAL_SHARE = 1.03;
