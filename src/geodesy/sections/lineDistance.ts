@@ -15,13 +15,18 @@ export interface LineDistance {
 const INWARDS: Readonly<Record<Side, 1 | -1>> = { S: 1, W: -1, N: -1, E: 1 };
 /** Nearer than this to a bend the perpendicular of the piece stands for the direction to the bend. */
 const AT_BEND_M = 1e-6;
+/** A piece at the end of a line is produced beyond the corner only if it runs along the line (cosine): where a corner is drawn as two vertices, the piece between them does not. */
+const ALONG = 0.98;
 
 /**
  * Perpendicular distance of a place from a bent line: from the piece that lies nearest, the first and the last produced
- * beyond their corners; where a bend points inwards and no perpendicular meets the line, from the bend.
+ * beyond their corners if they run along the line; where a bend points inwards and no perpendicular meets the line, from the bend.
  */
 export function lineDistance(line: readonly TracedPoint[], side: Side, [east, north]: PlanePoint): LineDistance {
   const sign = INWARDS[side];
+  const [first, last] = [line[0]!, line.at(-1)!];
+  const [ce, cn] = [last.east - first.east, last.north - first.north];
+  const chord = Math.sqrt(ce * ce + cn * cn);
   let best: LineDistance | null = null;
   for (let i = 0; i < line.length - 1; i++) {
     const a = line[i]!;
@@ -31,7 +36,8 @@ export function lineDistance(line: readonly TracedPoint[], side: Side, [east, no
     const [dx, dy] = [east - a.east, north - a.north];
     const across = ux * dy - uy * dx;
     const station = ux * dx + uy * dy;
-    const at = Math.min(i === line.length - 2 ? Infinity : length, Math.max(i === 0 ? -Infinity : 0, station));
+    const straight = ux * ce + uy * cn >= ALONG * chord;
+    const at = Math.min(straight && i === line.length - 2 ? Infinity : length, Math.max(straight && i === 0 ? -Infinity : 0, station));
     const beyond = station - at;
     const reach = beyond === 0 ? Math.abs(across) : Math.hypot(across, beyond);
     if (best && reach >= Math.abs(best.distanceM)) continue;

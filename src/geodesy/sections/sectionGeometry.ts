@@ -86,18 +86,13 @@ function isIrregular(vertices: readonly PlanePoint[], line: readonly number[]): 
   const [ax, ay] = vertices[line[0]!]!;
   const [bx, by] = vertices[line.at(-1)!]!;
   const length = Math.hypot(bx - ax, by - ay);
-  let last = -Infinity;
   let path = 0;
   let [px, py] = [ax, ay];
   for (const index of line) {
     const [x, y] = vertices[index]!;
     path += Math.hypot(x - px, y - py);
     [px, py] = [x, y];
-    const [dx, dy] = [x - ax, y - ay];
-    const along = (dx * (bx - ax) + dy * (by - ay)) / length;
-    const off = Math.abs(dx * (by - ay) - dy * (bx - ax)) / length;
-    if (off > MAX_BEND_SHARE * length || along <= last) return true;
-    last = along;
+    if (Math.abs((x - ax) * (by - ay) - (y - ay) * (bx - ax)) > MAX_BEND_SHARE * length * length) return true;
   }
   return path > (1 + MAX_DETOUR_SHARE) * length;
 }

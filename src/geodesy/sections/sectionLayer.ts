@@ -2,6 +2,7 @@ import { UserError } from '../../errors.js';
 import { outerRing } from './outerRing.js';
 import { meridianCode, meridianName } from './principalMeridians.js';
 import { SECTION_DEFAULTS, sectionGeometry } from './sectionGeometry.js';
+import { sectionFinder } from './sectionFinder.js';
 import { SECTION_ATTRIBUTES, sectionRows, type SectionAttributes, type SectionRow } from './sectionRows.js';
 import type { Ring, Section, SectionFeatures, SectionReference } from './types.js';
 
@@ -31,6 +32,8 @@ export interface SectionLayer {
   section(reference: SectionReference, where: string): Section;
   /** The polygon of the lot that a reference names. Throws likewise, and where the layer has no such lot. */
   lotPolygon(reference: SectionReference, where: string): Ring;
+  /** The sections whose polygons hold a place of the frame: none, one, or both neighbours on their common line. */
+  sectionsAt(x: number, y: number): readonly SectionReference[];
 }
 
 /**
@@ -46,6 +49,7 @@ export function sectionLayer(features: SectionFeatures, options: Partial<Section
     if (list) list.push(row);
     else byName.set(keyOf(row), [row]);
   }
+  let finder: ((x: number, y: number) => SectionRow[]) | null = null;
   const built = new Map<number, Section>();
   const lots = rows.filter((row) => row.lot !== null).length;
 
@@ -73,7 +77,7 @@ export function sectionLayer(features: SectionFeatures, options: Partial<Section
     sections: rows.length - lots,
     lots,
     notes,
-    count: (reference) => matches(reference, features.source, null).length,
+    count: (reference) => (reference.meridian !== undefined && meridianCode(reference.meridian) === null ? 0 : matches(reference, features.source, null).length),
     section(reference, where) {
       const row = only(reference, where, null);
       let section = built.get(row.feature);
@@ -90,6 +94,12 @@ export function sectionLayer(features: SectionFeatures, options: Partial<Section
       const row = only(reference, where, lotName(reference.lot));
       const ring = outerRing(features.features[row.feature - 1]!.geometry, `${features.source}, feature ${row.feature}`);
       return [...ring, ring[0]!];
+    },
+    sectionsAt(x, y) {
+      finder ??= sectionFinder(features, rows.filter((row) => row.lot === null));
+      return finder(x, y).map(({ township, townshipHalf, townshipDir, range, rangeHalf, rangeDir, section, meridian }) => ({
+        township, townshipHalf, townshipDir, range, rangeHalf, rangeDir, section, ...(meridian === null ? {} : { meridian }),
+      }));
     },
   };
 }

@@ -137,6 +137,8 @@ describe('placeFromCalls never leads out of the section', () => {
       for (const [i, corner] of SQUARE.entries()) {
         const next = SQUARE[(i + 1) % 4]!;
         shape.push([corner[0] + jitter(), corner[1] + jitter()]);
+        // Now and then a corner drawn twice.
+        if (random.integer(6) === 0) shape.push([shape.at(-1)![0] + random.normal() * 4, shape.at(-1)![1] + random.normal() * 4]);
         for (let k = random.integer(4), n = 0; n < k; n++) {
           const t = (n + 1) / (k + 1);
           shape.push([corner[0] + t * (next[0] - corner[0]) + jitter() / 10, corner[1] + t * (next[1] - corner[1]) + jitter() / 10]);

@@ -86,7 +86,7 @@ describe.skipIf(!haveRealSections)('real sections', () => {
     }
   });
 
-  it('share lines: the west line of section 3 is the east line of section 4, its south line the north line of none here', () => {
+  it('share lines with their neighbours, west and south', () => {
     const layer = realLayer(2270);
     const at = (number: number, side: Side): string[] => realSection(layer, number).lines[side].map((i) => realSection(layer, number).frameVertices[i]!.map((v) => v.toFixed(2)).join(' '));
     expect(at(3, 'W')).toEqual(at(4, 'E'));
@@ -186,6 +186,22 @@ describe.skipIf(!haveRealSections)('real sections', () => {
         expect(Math.hypot(again.x - first.x, again.y - first.y) / FT).toBeLessThan(1e-3);
       }
     }
+  });
+
+  it('are found by a place in them', () => {
+    const layer = realLayer(2270);
+    for (const number of NUMBERS) {
+      const section = realSection(layer, number);
+      const { x, y } = placeFromCalls(section, calls([20, 900], ['N', 'W']));
+      expect(layer.sectionsAt(x, y)).toEqual([
+        { township: 35, townshipHalf: false, townshipDir: 'S', range: 29, rangeHalf: false, rangeDir: 'E', section: number, meridian: '33' },
+      ]);
+    }
+    const shared = realSection(layer, 4);
+    const corner = shared.frameVertices[shared.lines.S.at(-1)!]!;
+    expect(layer.sectionsAt(...corner).map(({ section }) => section)).toEqual([3, 4, 9]);
+    expect(layer.sectionsAt(corner[0] + 5000, corner[1])).toEqual([]);
+    expect(layer.sectionsAt(NaN, NaN)).toEqual([]);
   });
 
   it('are the sum of their parts', () => {

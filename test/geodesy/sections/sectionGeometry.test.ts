@@ -32,9 +32,12 @@ describe('sectionGeometry', () => {
   it('takes a corner that is drawn as two vertices a yard apart for one', () => {
     const section = madeSection([[-2640, -2640], [2640, -2640], [2640, 2637], [2637, 2640], [-2640, 2640]]);
     expect(section.irregular).toEqual([]);
-    const { x, y } = placeFromCalls(section, calls([660, 'N'], [660, 'E']));
-    const { x: x0, y: y0 } = placeFromCalls(madeSection(SQUARE), calls([660, 'N'], [660, 'E']));
-    expect(Math.hypot(x - x0, y - y0) / FT).toBeLessThan(3);
+    // Near one line and far from the other too, where the piece between the two vertices, produced, would be nearest.
+    for (const feet of [[660, 660], [4000, 30], [30, 4000]] as const) {
+      const { x, y } = placeFromCalls(section, calls([feet[0], 'N'], [feet[1], 'E']));
+      const { x: x0, y: y0 } = placeFromCalls(madeSection(SQUARE), calls([feet[0], 'N'], [feet[1], 'E']));
+      expect(Math.hypot(x - x0, y - y0) / FT).toBeLessThan(3.1);
+    }
   });
 
   it('drops vertices that repeat', () => {
