@@ -58,7 +58,7 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const search = { detectSnr: settings.detectSnr, localRadiusM, maxSources: settings.maxSources, maxRounds: MAX_ROUNDS };
   const rough = noiseModel(survey, survey.blocks.value, { whiteSdNT, skip: new Uint8Array(survey.blocks.count) });
   const map = new SourceMap(survey);
-  const full = searchSources(map, rough, search);
+  const full = searchSources(map, { noise: rough, target: site.target }, search);
   const pipes = findPipes(map, site.target);
   const held = new Set(pipes.flatMap((pipe) => pipe.pieces));
   const left = survey.blocks.value.map((value, i) => value - map.made[i]!);

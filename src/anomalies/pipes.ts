@@ -1,7 +1,7 @@
 import type { Target } from '../detection/types.js';
 import { median } from '../numerics/robust.js';
 import { alignments, type Alignment } from './alignment.js';
-import { anomalyAt } from './sourceField.js';
+import { peakOf } from './peakOf.js';
 import type { Entry, SourceMap } from './sourceMap.js';
 import { placeOf, type Source } from './sources.js';
 
@@ -60,11 +60,6 @@ function isCasingLike(source: Source, target: Target): boolean {
   return source.kind === 'pole' && Math.abs(source.values[3]!) > target.poleAM[0] * LEAST_SHARE;
 }
 const LEAST_SHARE = 0.8;
-
-/** What the source makes right above itself at the usual height, nT. */
-function peakOf({ survey }: SourceMap, { source }: Entry): number {
-  return Math.abs(anomalyAt([source], survey.field, [...placeOf(source), survey.reachM + survey.expectedZM]));
-}
 
 /** From a place to the run between its ends, metres. */
 export function distanceTo(run: Alignment, [x, y]: readonly [number, number]): number {

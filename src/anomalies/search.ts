@@ -1,10 +1,13 @@
-import type { NoiseModel } from '../detection/types.js';
+import type { NoiseModel, Target } from '../detection/types.js';
+import { NT_PER_POLE } from '../field/pole.js';
 import { bestFit } from './bestFit.js';
 import { fitSources, type Fit, type Window } from './fitSources.js';
 import { aboveMedian, findPeaks, localNoise, thinPeaks, type Peak } from './peaks.js';
 import { GAIN, misfitOf, refine } from './refine.js';
 import type { Entry, SourceMap } from './sourceMap.js';
 import { placeOf } from './sources.js';
+import { peakOf } from './peakOf.js';
+import { untangle } from './untangle.js';
 import { startingPoints, type Kind } from './startingPoints.js';
 
 export interface SearchOptions {
@@ -24,6 +27,9 @@ const LEFT_OF_SHIFT = 0.35;
 const APART_REACHES = 0.8;
 /** Neighbours that are fitted anew when a source is added beside them. */
 const SETTLE = 2;
+/** Two sources nearer than this many reaches are fitted anew as a pair, where one of them is as strong as half the weakest casing. */
+const PAIR_REACHES = 3;
+const STRONG_SHARE = 0.5;
 /** Peaks of one round lie this far apart, in reaches and in spacings: the weaker ones wait for the next round. */
 const ROUND_REACHES = 2;
 const ROUND_SPACINGS = 1.2;
@@ -37,7 +43,7 @@ const KINDS: readonly Kind[] = ['pole', 'dipole'];
  *
  * Source: matching pursuit, Mallat & Zhang (1993); the same idea as CLEAN, Högbom (1974).
  */
-export function searchSources(map: SourceMap, noise: NoiseModel, options: SearchOptions): boolean {
+export function searchSources(map: SourceMap, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }, options: SearchOptions): boolean {
   const { survey } = map;
   const tried = new Set<number>();
   for (let round = 0; round < options.maxRounds; round++) {
@@ -45,7 +51,7 @@ export function searchSources(map: SourceMap, noise: NoiseModel, options: Search
     let accepted = 0;
     for (const peak of thinPeaks(peaks, Math.max(ROUND_REACHES * survey.reachM, ROUND_SPACINGS * survey.spacingM))) {
       if (map.entries.length >= options.maxSources) return true;
-      if (tryPeak(map, peak, noise)) accepted++;
+      if (tryPeak(map, peak, { noise, target })) accepted++;
       else tried.add(peak.block);
     }
     if (accepted === 0) break;
@@ -63,7 +69,7 @@ export function peaksLeft(map: SourceMap, { detectSnr, localRadiusM }: SearchOpt
   return findPeaks(survey, high, { noise, threshold: detectSnr });
 }
 
-function tryPeak(map: SourceMap, peak: Peak, noise: NoiseModel): Entry | null {
+function tryPeak(map: SourceMap, peak: Peak, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }): Entry | null {
   const { survey } = map;
   const window = map.window([[peak.x, peak.y]], { noise, free: [], radiusM: survey.windowM });
   const without = fitSources(window, []);
@@ -82,10 +88,17 @@ function tryPeak(map: SourceMap, peak: Peak, noise: NoiseModel): Entry | null {
   for (const other of map.near(x, y, APART_REACHES * survey.reachM)) if (other.source.kind !== 'line') return null;
   map.learn(window, best);
   const entry = map.add(source);
+  const beside = map.near(x, y, PAIR_REACHES * survey.reachM).find((other) => other !== entry && other.source.kind !== 'line');
+  if (beside && Math.max(peakOf(map, entry), peakOf(map, beside)) > leastPeak(map, target)) untangle(map, [entry, beside], noise);
   const neighbours = map.near(x, y, survey.windowM).filter((other) => other !== entry && other.source.kind !== 'line');
   if (neighbours.length > 0) {
     refine(map, entry, { noise, kinds: KINDS });
     for (const other of neighbours.slice(0, SETTLE)) refine(map, other, { noise, kinds: KINDS });
   }
   return entry;
+}
+
+/** What makes an anomaly worth the pains: a share of the weakest casing's, heard from the usual distance, nT. */
+function leastPeak({ survey }: SourceMap, target: Target): number {
+  return (STRONG_SHARE * NT_PER_POLE * target.poleAM[0]) / survey.reachM ** 2;
 }

@@ -152,7 +152,7 @@ function leastSquares(window: Window, rows: readonly number[]): (fill: Fill, cou
 }
 
 /** Constant and slopes at the rows, made orthonormal; 3 values a row. One that the others hold already is zero. */
-function orthonormalPlane(window: Window, rows: readonly number[]): Float64Array {
+export function orthonormalPlane(window: Window, rows: readonly number[]): Float64Array {
   const m = rows.length;
   const plane = new Float64Array(PLANE * m);
   rows.forEach((i, j) => {
@@ -177,12 +177,14 @@ function orthonormalPlane(window: Window, rows: readonly number[]): Float64Array
   return plane;
 }
 
-function poleRow(row: Float64Array, r: Float64Array, u: Unit): void {
+/** Total field of a unit pole (attracting) by its projection; `r` from the source to the sensor, metres. */
+export function poleRow(row: Float64Array, r: Float64Array, u: Unit): void {
   const r2 = r[0]! * r[0]! + r[1]! * r[1]! + r[2]! * r[2]!;
   row[0] = (-NT_PER_POLE * (u[0] * r[0]! + u[1] * r[1]! + u[2] * r[2]!)) / (r2 * Math.sqrt(r2));
 }
 
-function dipoleRow(row: Float64Array, r: Float64Array, u: Unit): void {
+/** The same of unit moments east, north and up. */
+export function dipoleRow(row: Float64Array, r: Float64Array, u: Unit): void {
   const r2 = r[0]! * r[0]! + r[1]! * r[1]! + r[2]! * r[2]!;
   const k = NT_PER_POLE / (r2 * Math.sqrt(r2));
   const along = (3 * (u[0] * r[0]! + u[1] * r[1]! + u[2] * r[2]!)) / r2;
