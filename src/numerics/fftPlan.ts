@@ -53,10 +53,12 @@ function setRoot(table: Float64Array, at: number, turn: number): void {
 function factors(n: number): number[] {
   const found: number[] = [];
   let left = n;
-  const takeOut = (radix: number): void => {
+  for (const radix of RADICES) {
     for (; left % radix === 0; left /= radix) found.push(radix);
-  };
-  RADICES.forEach(takeOut);
-  for (let odd = 7; left > 1; odd += 2) takeOut(odd * odd > left ? left : odd);
+  }
+  for (let odd = 7; left > 1; odd += 2) {
+    const prime = odd * odd > left ? left : odd;
+    for (; left % prime === 0; left /= prime) found.push(prime);
+  }
   return found;
 }
