@@ -1,4 +1,5 @@
 import { UserError } from '../errors.js';
+import { angleFromParts, packedParts } from './angleParts.js';
 
 export type Axis = 'longitude' | 'latitude';
 
@@ -8,10 +9,17 @@ export interface ParsedAngle {
   readonly resolutionDeg: number;
 }
 
-const LIMIT_DEG: Readonly<Record<Axis, number>> = { longitude: 180, latitude: 90 };
+/** Spellings that a column has to be known for, since elsewhere they mean something else. */
+export interface AngleSpelling {
+  /** Digits that run together are degrees, minutes and seconds: `392230.5`, `0801500`. */
+  readonly packed: boolean;
+  /** A comma is the decimal point: `39,3750`. */
+  readonly decimalComma: boolean;
+}
+
+export const ANGLE_SPELLING_DEFAULTS: AngleSpelling = Object.freeze({ packed: false, decimalComma: false });
+
 const LETTERS: Readonly<Record<Axis, string>> = { longitude: 'EW', latitude: 'NS' };
-const PART_DEG = [1, 1 / 60, 1 / 3600] as const;
-const PART_NAMES = ['degrees', 'minutes', 'seconds'] as const;
 
 const HEMISPHERE = '(?:n(?:orth)?|s(?:outh)?|e(?:ast)?|w(?:est)?)\\.?';
 const WHOLE = new RegExp(`^(?<before>${HEMISPHERE})?\\s*(?<sign>[-+])?\\s*(?<body>[\\d.].*?)\\s*(?<after>${HEMISPHERE})?$`, 'i');
@@ -25,13 +33,14 @@ const BODY = /^(?<d>\d*\.?\d+|\d+\.)\s*(?:(?:°|d(?:eg)?\.?|[:\s-])\s*(?:(?<m>\d
  * Reads one angle as people write it: decimal degrees, degrees and minutes, or degrees, minutes and seconds; with a sign
  * or a hemisphere letter (before or after), with °, ′, ″ and their look-alikes, d m s, colons, hyphens or spaces between.
  * `40°26'46"` has a resolution of 1/3600, `39.3000` of 0.0001. A longitude without sign or letter counts as east: nothing
- * is repaired here. Throws UserError `position_invalid` where the text is ambiguous, unreadable or out of range.
+ * is repaired here. Packed digits and decimal commas are read only where `spelling` says so. Throws UserError `position_invalid` where the text is ambiguous, unreadable or out of range.
  */
-export function parseAngle(text: string, axis: Axis, where: string): ParsedAngle {
+export function parseAngle(text: string, axis: Axis, where: string, spelling: Partial<AngleSpelling> = {}): ParsedAngle {
+  const { packed, decimalComma } = { ...ANGLE_SPELLING_DEFAULTS, ...spelling };
   const refuse = (wanted: string, advice?: string): UserError =>
     new UserError({ code: 'position_invalid', where, found: JSON.stringify(text), wanted, ...(advice ? { advice } : {}) });
 
-  const plain = plainMarks(text);
+  const plain = decimalComma ? plainMarks(text).replace(/(\d),(\d)/g, '$1.$2') : plainMarks(text);
   if (AMBIGUOUS_S.test(plain)) throw refuse('S for south or s for seconds, not one that can be read as either', `write it as in ${EXAMPLES[axis]}`);
   // A closing s after "m" is the mark of the seconds, so the text is tried without a hemisphere letter behind it first.
   const whole = (MARKED_PARTS.exec(plain) ?? WHOLE.exec(plain))?.groups;
@@ -47,16 +56,14 @@ export function parseAngle(text: string, axis: Axis, where: string): ParsedAngle
   if (letter !== undefined && whole['sign'] === '-') throw refuse('a sign or a hemisphere letter', `a minus sign and ${letter} together can be read two ways`);
 
   const parts = [body['d'], body['m'], body['s']].filter((part) => part !== undefined);
-  parts.forEach((part, index) => {
-    if (index < parts.length - 1 && part.includes('.')) throw refuse('a decimal point in the last part only', `${PART_NAMES[index]!} are ${part}`);
-    if (index > 0 && !(Number(part) < 60)) throw refuse(`${PART_NAMES[index]!} below 60`);
-  });
-  const last = parts.length - 1;
-  const size = parts.reduce((sum, part, index) => sum + Number(part) * PART_DEG[index]!, 0);
-  if (!(size <= LIMIT_DEG[axis])) throw refuse(`a ${axis} of at most ${LIMIT_DEG[axis]} degrees`, 'digits run together, as in 401530, are not taken for degrees, minutes and seconds');
-  const decimals = parts[last]!.split('.')[1]?.length ?? 0;
+  const runTogether = packed && parts.length === 1 ? packedParts(parts[0]!, axis) : null;
+  const angle = angleFromParts(runTogether ?? parts, axis);
+  if ('wanted' in angle) {
+    const tooLarge = angle.part === 0 && parts.length === 1 && !packed;
+    throw refuse(angle.wanted, tooLarge ? 'digits run together, as in 401530, are not taken for degrees, minutes and seconds' : undefined);
+  }
   const negative = whole['sign'] === '-' || letter === 'S' || letter === 'W';
-  return { deg: negative && size !== 0 ? -size : size, resolutionDeg: PART_DEG[last]! * 10 ** -decimals };
+  return { deg: negative && angle.deg !== 0 ? -angle.deg : angle.deg, resolutionDeg: angle.resolutionDeg };
 }
 
 const EXAMPLES: Readonly<Record<Axis, string>> = {
