@@ -46,7 +46,8 @@ export function pairDensity(record: WellRecord, anomaly: Anomaly, sharedSdM: num
     } else if (part.kind === 'disc') {
       spread += (part.weight * inDisc(Math.hypot(anomaly.x - part.x, anomaly.y - part.y), part.radiusM, anomaly.posSdM)) / (Math.PI * part.radiusM ** 2);
     } else {
-      const blurred = { parts: [{ kind: 'gaussian', weight: 1, x: anomaly.x, y: anomaly.y, cov: anomaly.cov, role: 'place' }] } as const;
+      const blur: Covariance = part.cov ? [anomaly.cov[0] + part.cov[0], anomaly.cov[1] + part.cov[1], anomaly.cov[2] + part.cov[2]] : anomaly.cov;
+      const blurred = { parts: [{ kind: 'gaussian', weight: 1, x: anomaly.x, y: anomaly.y, cov: blur, role: 'place' }] } as const;
       spread += (part.weight * massIn(blurred, part.area)) / areaM2(part.area);
     }
   }

@@ -42,7 +42,7 @@ export interface GroupShift {
 
 /** A pair whose place parts weigh less than this against staying apart is counted on its own, not in a cluster. */
 const WEAK = 1e-4;
-/** A record cannot be so sure of having been detected that staying apart is impossible. */
+/** Nobody is so sure of a casing, or of having detected it, that the other case is impossible. */
 const LEAST_APART = 1e-6;
 /** Groups that meet in a cluster are followed one after the other, this often. */
 const ROUNDS = 3;
@@ -65,7 +65,10 @@ const ROUNDS = 3;
  * (1988), Tracking and Data Association.
  */
 export function matchPosterior({ records, detect, anomalies, prior }: PosteriorInput): Posterior {
-  const evidence = anomalies.map(({ pCasing }) => pCasing / (1 - pCasing) / prior.casingOdds);
+  const evidence = anomalies.map(({ pCasing }) => {
+    const p = Math.min(1 - LEAST_APART, Math.max(LEAST_APART, pCasing));
+    return p / (1 - p) / prior.casingOdds;
+  });
   const apart = evidence.map((L) => prior.unrecordedPerM2 * L + prior.othersPerM2);
   const scale = (i: number, j: number): number => (records[i]!.pCasing * evidence[j]!) / (Math.max(LEAST_APART, 1 - records[i]!.pCasing * detect[i]!) * apart[j]!);
 

@@ -219,6 +219,14 @@ describe('what must hold', () => {
     expect(p({ blunder: 0.2 }, { pCasing: 0.3 })).toBeLessThan(base);
   });
 
+  it('stands certainties at either end', () => {
+    const findings = reconcile(records(record('R1', 0, 0, { sdM: 0, pCasing: 1 }), record('R2', 50, 0, { pCasing: 0 })), anomalies(anomaly('A1', 0.2, 0, { pCasing: 1 }), anomaly('A2', 50, 1, { pCasing: 0 })), { detection: ground(1), covered: ground(1) });
+    expect(row(findings, 'R1').finding).toBe('located');
+    expect(row(findings, 'R2').finding).toBe('not_found');
+    expect(row(findings, 'R2').pRemains).toBe(0);
+    for (const { pRemains, pDetect } of findings.list) for (const p of [pRemains, pDetect]) expect(p >= 0 && p <= 1).toBe(true);
+  });
+
   it('a blunder may reach a casing far away, with a small chance', () => {
     const p = pair(reconcile(records(record('R1', 0, 0, { blunder: 0.3 })), anomalies(anomaly('A1', 150, 0)), everywhere), 'R1', 'A1');
     expect(p).toBeGreaterThan(0.001);
