@@ -24,6 +24,8 @@ export interface AlignmentOptions {
   readonly gapM: number;
   readonly leastMembers: number;
   readonly leastLengthM: number;
+  /** … and on the average no further apart than this. */
+  readonly meanGapM: number;
 }
 
 /**
@@ -74,7 +76,7 @@ function runOn(pins: readonly Pin[], order: readonly number[], options: Alignmen
   if (best.length < options.leastMembers) return null;
   const first = best[0]!.along;
   const last = best[best.length - 1]!.along;
-  if (last - first < options.leastLengthM) return null;
+  if (last - first < options.leastLengthM || last - first > options.meanGapM * (best.length - 1)) return null;
   return { members: best.map(({ k }) => k), azimuth: ((azimuth % Math.PI) + Math.PI) % Math.PI, x, y, ...ends(azimuth, first, last) };
 }
 

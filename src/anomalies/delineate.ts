@@ -7,7 +7,7 @@ import { noiseModel, whiteNoise } from './noise.js';
 import { findPipes } from './pipes.js';
 import { isNeeded, refine, type Refined } from './refine.js';
 import { SourceMap, type Entry } from './sourceMap.js';
-import { searchSources } from './search.js';
+import { searchSources, splitStrained } from './search.js';
 import { surveyOf, type SurveyOptions } from './survey.js';
 import type { Anomalies, Anomaly } from './types.js';
 
@@ -59,6 +59,7 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const rough = noiseModel(survey, survey.blocks.value, { whiteSdNT, skip: new Uint8Array(survey.blocks.count) });
   const map = new SourceMap(survey);
   const full = searchSources(map, { noise: rough, target: site.target }, search);
+  if (splitStrained(map, { noise: rough, target: site.target }) > 0) searchSources(map, { noise: rough, target: site.target }, search);
   const pipes = findPipes(map, site.target);
   const held = new Set(pipes.flatMap((pipe) => pipe.pieces));
   const left = survey.blocks.value.map((value, i) => value - map.made[i]!);

@@ -31,7 +31,7 @@ interface Possible {
  * dipole, dipole and dipole, strengths by plain least squares; the pairs that leave least. One source at a time would
  * begin between the two and stay there.
  */
-export function pairStarts(window: Window, pair: readonly [Source, Source], places: ReadonlyArray<readonly [number, number]>): Array<[Source, Source]> {
+export function pairStarts(window: Window, strengthSd: number, places: ReadonlyArray<readonly [number, number]>): Array<[Source, Source]> {
   const { reachM, unit } = window;
   const stride = Math.max(1, Math.ceil(window.count / PAIR_BLOCKS));
   const rows: number[] = [];
@@ -89,7 +89,6 @@ export function pairStarts(window: Window, pair: readonly [Source, Source], plac
     chosen.push(trial);
     if (chosen.length >= 3 * STARTS) break;
   }
-  const strengthSd = Math.max(pair[0].strengthSd, pair[1].strengthSd);
   return chosen.map(({ a, b }) => {
     const { strengths } = solve(gram, right, { n, a, b })!;
     return [sourceOf(a, strengths.subarray(0, a.count), strengthSd), sourceOf(b, strengths.subarray(a.count), strengthSd)];

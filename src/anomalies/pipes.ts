@@ -32,8 +32,8 @@ export function findPipes(map: SourceMap, target: Target): Pipe[] {
   const step = Math.max(survey.spacingM, 2 * survey.reachM);
   const entries = map.entries.filter((entry) => !isCasingLike(entry.source, target));
   const runs = alignments(entries.map((entry) => ({ x: placeOf(entry.source)[0], y: placeOf(entry.source)[1], sdM: 0 })), {
-    toleranceM: ALIGN_REACHES * survey.reachM, gapM: ALIGN_GAP * step, leastMembers: ALIGN_MEMBERS, leastLengthM: ALIGN_LENGTH * step,
-  }).filter((run) => (run.members.length - 1) * ALIGN_DENSITY * step >= run.to - run.from);
+    toleranceM: ALIGN_REACHES * survey.reachM, gapM: ALIGN_GAP * step, leastMembers: ALIGN_MEMBERS, leastLengthM: ALIGN_LENGTH * step, meanGapM: ALIGN_DENSITY * step,
+  });
   const taken = new Set<Entry>();
   return runs.map((run) => {
     const members = run.members.map((k) => entries[k]!);
@@ -41,7 +41,7 @@ export function findPipes(map: SourceMap, target: Target): Pipe[] {
     const along = ([x, y]: readonly [number, number]) => x * Math.sin(run.azimuth) + y * Math.cos(run.azimuth);
     const pieces = map.entries
       .filter((entry) => !taken.has(entry) && !isApart(map, entry, { middle, target }))
-      .filter((entry) => members.includes(entry) || distanceTo(run, placeOf(entry.source)) < STRAY_REACHES * survey.reachM)
+      .filter((entry) => members.includes(entry) || belongs(run, placeOf(entry.source), { acrossM: STRAY_REACHES * survey.reachM, beyondM: ALIGN_GAP * step }))
       .toSorted((a, b) => along(placeOf(a.source)) - along(placeOf(b.source)));
     for (const entry of pieces) taken.add(entry);
     return { run, pieces };
@@ -61,11 +61,11 @@ function isCasingLike(source: Source, target: Target): boolean {
 }
 const LEAST_SHARE = 0.8;
 
-/** From a place to the run between its ends, metres. */
-export function distanceTo(run: Alignment, [x, y]: readonly [number, number]): number {
+/** Whether a place lies on the run, or on its course a little beyond its ends. */
+function belongs(run: Alignment, [x, y]: readonly [number, number], { acrossM, beyondM }: { readonly acrossM: number; readonly beyondM: number }): boolean {
   const s = Math.sin(run.azimuth);
   const c = Math.cos(run.azimuth);
   const along = (x - run.x) * s + (y - run.y) * c;
   const across = (x - run.x) * c - (y - run.y) * s;
-  return Math.hypot(across, Math.max(0, run.from - along, along - run.to));
+  return Math.abs(across) <= acrossM && along >= run.from - beyondM && along <= run.to + beyondM;
 }

@@ -98,6 +98,20 @@ function tryPeak(map: SourceMap, peak: Peak, { noise, target }: { readonly noise
   return entry;
 }
 
+/** A single source that leaves this much more than its like (or than the noise) may be two. */
+const STRAINED = 1;
+
+/** Looks beside every strong source whose fit leaves too much for a second one that it has swallowed. */
+export function splitStrained(map: SourceMap, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }): number {
+  let split = 0;
+  for (const entry of [...map.entries]) {
+    if (entry.source.kind === 'line' || peakOf(map, entry) < leastPeak(map, target)) continue;
+    const { fit } = refine(map, entry, { noise, kinds: [] });
+    if (fit.chi2 > STRAINED * (fit.count - fit.parameters) && untangle(map, [entry], noise)) split++;
+  }
+  return split;
+}
+
 /** What makes an anomaly worth the pains: a share of the weakest casing's, heard from the usual distance, nT. */
 function leastPeak({ survey }: SourceMap, target: Target): number {
   return (STRONG_SHARE * NT_PER_POLE * target.poleAM[0]) / survey.reachM ** 2;

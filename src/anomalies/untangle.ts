@@ -1,6 +1,7 @@
 import type { NoiseModel } from '../detection/types.js';
-import { fitSources, type Window } from './fitSources.js';
+import { fitSources, type Fit, type Window } from './fitSources.js';
 import { pairStarts } from './pairStarts.js';
+import { GAIN, misfitOf } from './refine.js';
 import type { Entry, SourceMap } from './sourceMap.js';
 import { placeOf } from './sources.js';
 
@@ -10,24 +11,27 @@ const FOLLOWED = 2;
 
 /**
  * Fits two overlapping sources anew from many starts and keeps the outcome where the information criterion is better than
- * that of the pair as it stands.
+ * that of the pair as it stands. Given one source, looks for a second beside it that it may have swallowed.
  */
-export function untangle(map: SourceMap, pair: readonly [Entry, Entry], noise: NoiseModel): boolean {
+export function untangle(map: SourceMap, tangle: readonly [Entry] | readonly [Entry, Entry], noise: NoiseModel): boolean {
   const { survey } = map;
-  const places = pair.map((entry) => placeOf(entry.source));
-  const window = map.window(places, { noise, free: pair, radiusM: survey.windowM });
+  const places = tangle.map((entry) => placeOf(entry.source));
+  const window = map.window(places, { noise, free: tangle, radiusM: survey.windowM });
   const own = new Map<number, number>();
-  for (const { index, made } of pair) index.forEach((i, k) => own.set(i, (own.get(i) ?? 0) + made[k]!));
+  for (const { index, made } of tangle) index.forEach((i, k) => own.set(i, (own.get(i) ?? 0) + made[k]!));
   const left: Window = { ...window, fixed: [], value: Float64Array.from(window.index, (i) => survey.blocks.value[i]! - map.made[i]! + (own.get(i) ?? 0)) };
-  const now = fitSources(window, [pair[0].source, pair[1].source]);
-  const best = pairStarts(left, [pair[0].source, pair[1].source], places)
+  const now = fitSources(window, tangle.map((entry) => entry.source));
+  const best = pairStarts(left, Math.max(...tangle.map((entry) => entry.source.strengthSd)), places)
     .map((start) => fitSources(window, start, { maxIterations: FIRST_STEPS }))
     .toSorted((a, b) => a.bic - b.bic)
     .slice(0, FOLLOWED)
     .map((fit) => fitSources(window, fit.sources))
     .toSorted((a, b) => a.bic - b.bic)[0];
-  const fit = best && best.bic < now.bic ? best : now;
+  const wanted = tangle.length === 1 ? GAIN * misfitOf(best ?? now) : 0;
+  const better = best !== undefined && best.bic < now.bic - wanted;
+  const fit: Fit = better ? best : now;
   map.learn(window, fit);
-  pair.forEach((entry, k) => map.move(entry, fit.sources[k]!));
-  return fit === best;
+  tangle.forEach((entry, k) => map.move(entry, fit.sources[k]!));
+  if (better && tangle.length === 1) map.add(fit.sources[1]!);
+  return better;
 }
