@@ -9,10 +9,13 @@ export interface GhostImage {
 const FIRST_LINE = /^GDAL_STRUCTURAL_METADATA_SIZE=(\d{6}) bytes\n/;
 /** Length of the first line. */
 const FIRST_LINE_BYTES = 43;
+/** Bytes of the leader, of the trailer, and of what the trailer repeats. */
+const MARK_BYTES = 4;
 
 /**
  * Whether a file keeps what its ghost area promises: the first directory right after it, tiles row by row, each tile's
- * size before it and its last four bytes again after it. A file without a ghost area promises nothing.
+ * size before it and its last four bytes again after it. A file without a ghost area promises nothing. Of each kind of
+ * fault the first in each image is told.
  * Source: GDAL documentation, COG driver, header ghost area.
  */
 export function checkGhostArea(bytes: Uint8Array, big: boolean, images: readonly GhostImage[]): string[] {
@@ -30,16 +33,23 @@ export function checkGhostArea(bytes: Uint8Array, big: boolean, images: readonly
   const leader = promises.includes('BLOCK_LEADER=SIZE_AS_UINT4');
   const trailer = promises.includes('BLOCK_TRAILER=LAST_4_BYTES_REPEATED');
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
-  for (const image of images) {
-    for (const [tile, at] of image.offsets.entries()) {
-      const size = image.byteCounts[tile] ?? 0;
-      if (at === 0 || at + size > bytes.length) continue;
-      if (rowMajor && tile > 0 && at < image.offsets[tile - 1]!) say(`tile ${tile} of ${image.name} lies before the tile before it`);
-      if (leader && view.getUint32(at - 4, true) !== size) say(`the size before tile ${tile} of ${image.name} is not its size`);
-      if (!trailer || size < 4) continue;
-      const after = at + size;
-      if (after + 4 > bytes.length || view.getUint32(after - 4) !== view.getUint32(after)) say(`the bytes after tile ${tile} of ${image.name} do not repeat its last four`);
-    }
+  for (const { name, offsets, byteCounts } of images) {
+    const first = (wrong: (at: number, size: number, tile: number) => boolean): number => offsets.findIndex((at, tile) => {
+      const size = byteCounts[tile] ?? 0;
+      return at > 0 && at + size <= bytes.length && wrong(at, size, tile);
+    });
+    let before = 0;
+    const disordered = first((at) => {
+      const back = at < before;
+      before = at;
+      return back;
+    });
+    if (rowMajor && disordered >= 0) say(`tile ${disordered} of ${name} lies before the tile before it`);
+    const unled = first((at, size) => at < MARK_BYTES || view.getUint32(at - MARK_BYTES, true) !== size);
+    if (leader && unled >= 0) say(`the size before tile ${unled} of ${name} is not its size`);
+    const untrailed = first((at, size) => size >= MARK_BYTES
+      && (at + size + MARK_BYTES > bytes.length || view.getUint32(at + size - MARK_BYTES) !== view.getUint32(at + size)));
+    if (trailer && untrailed >= 0) say(`the bytes after tile ${untrailed} of ${name} do not repeat its last four`);
   }
   return found;
 }
