@@ -55,34 +55,58 @@ export function coarsenPins(pins: Pins, [width, coarseWidth, coarseHeight]: read
   return coarse;
 }
 
-/**
- * Moves each pinned node by what the surface misses at the pin's own place, and returns the largest move. The surface
- * between nodes is the quadratic through the nine nodes around (Taylor to second order); on the rim it is constant across.
- * `moves` is work space of the pins' length.
- */
-export function movePins(z: Float64Array, pins: Pins, { width, height, moves }: { width: number; height: number; moves: Float64Array }): number {
-  const { node, value, dx, dy } = pins;
-  let largest = 0;
-  for (let n = 0; n < node.length; n++) {
-    const k = node[n]!;
-    const j = (k / width) | 0;
-    const i = k - j * width;
-    const x = i > 0 && i < width - 1 ? dx[n]! : 0;
-    const y = j > 0 && j < height - 1 ? dy[n]! : 0;
-    const west = (x * (x - 1)) / 2;
-    const east = (x * (x + 1)) / 2;
-    const middle = 1 - x * x;
-    let at = alongRow(z, k, [west, middle, east]);
-    if (y !== 0) at = ((y * (y - 1)) / 2) * alongRow(z, k - width, [west, middle, east]) + (1 - y * y) * at + ((y * (y + 1)) / 2) * alongRow(z, k + width, [west, middle, east]);
-    const move = value[n]! - at;
-    moves[n] = move;
-    if (Math.abs(move) > largest) largest = Math.abs(move);
-  }
-  for (let n = 0; n < node.length; n++) z[node[n]!]! += moves[n]!;
-  return largest;
+/** Pins with the place where each row of nodes starts among them. */
+export interface PinRows {
+  readonly pins: Pins;
+  readonly start: Int32Array;
 }
 
-function alongRow(z: Float64Array, k: number, [west, middle, east]: readonly [number, number, number]): number {
-  // On the rim the outer weights are zero and the neighbour may not exist.
-  return middle * z[k]! + (west === 0 ? 0 : west * z[k - 1]!) + (east === 0 ? 0 : east * z[k + 1]!);
+export function pinRows(pins: Pins, width: number, height: number): PinRows {
+  const start = new Int32Array(height + 1);
+  for (let n = 0; n < pins.node.length; n++) start[Math.floor(pins.node[n]! / width) + 1]!++;
+  for (let j = 0; j < height; j++) start[j + 1]! += start[j]!;
+  return { pins, start };
+}
+
+export interface PinRow {
+  readonly width: number;
+  readonly height: number;
+  readonly j: number;
+  readonly largest: number;
+}
+
+/**
+ * Moves each pinned node of row `j` by what the surface misses at the pin's own place. The surface between nodes is the
+ * quadratic through the nine nodes around (Taylor to second order); on the rim it is constant across. Returns the
+ * largest move, or `largest` where that is more.
+ */
+export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, row: PinRow): number {
+  const { node, value, dx, dy } = pins;
+  const { width, height, j } = row;
+  let largest = row.largest;
+  const inner = j > 0 && j < height - 1;
+  for (let n = start[j]!; n < start[j + 1]!; n++) {
+    const k = node[n]!;
+    const i = k - j * width;
+    const x = i > 0 && i < width - 1 ? dx[n]! : 0;
+    const y = inner ? dy[n]! : 0;
+    const west = (x * (x - 1)) / 2;
+    const middle = 1 - x * x;
+    const east = (x * (x + 1)) / 2;
+    // Where an offset is zero the neighbour counts nothing, and on the rim it does not exist.
+    const a = x === 0 ? 0 : 1;
+    let at = middle * z[k]! + west * z[k - a]! + east * z[k + a]!;
+    if (y !== 0) {
+      const north = k - width;
+      const south = k + width;
+      at = (1 - y * y) * at
+        + ((y * (y - 1)) / 2) * (middle * z[north]! + west * z[north - a]! + east * z[north + a]!)
+        + ((y * (y + 1)) / 2) * (middle * z[south]! + west * z[south - a]! + east * z[south + a]!);
+    }
+    const move = value[n]! - at;
+    z[k]! += move;
+    if (move > largest) largest = move;
+    else if (-move > largest) largest = -move;
+  }
+  return largest;
 }

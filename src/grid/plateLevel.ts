@@ -1,3 +1,5 @@
+import { emptyHold, type Hold } from './hold.js';
+
 /**
  * One level of the multigrid solver: an elastic plate under tension on a rectangle of nodes with free edges.
  *
@@ -15,14 +17,14 @@ export interface PlateLevel {
   readonly tau: number;
   readonly xAxis: AxisTables;
   readonly yAxis: AxisTables;
-  /** One over the diagonal (penalty included); 0 where the node is held. Row-major like all that follows. */
-  readonly inverseDiagonal: Float64Array;
-  /** Added to the diagonal: how strongly data on a finer level hold the node. */
-  readonly penalty: Float64Array;
-  /** Correction that is sought, right side, residual. */
+  /** One over the diagonal; 0 where a pin holds the node. Row-major like all that follows. */
+  readonly inverseDiagonal: Float32Array;
+  /** What the pins of a finer grid add to the operator when a correction is sought here. */
+  readonly hold: Hold;
+  /** Correction that is sought, its right side, work space. 32 bits do for what is added to a solution in 64. */
   readonly correction: Float64Array;
-  readonly right: Float64Array;
-  readonly scratch: Float64Array;
+  readonly right: Float32Array;
+  readonly scratch: Float32Array;
 }
 
 /** Rows of the one-dimensional matrices δᵀδ (first differences) and δ²ᵀδ² (second differences), five entries a node. */
@@ -89,26 +91,26 @@ export function plateLevel(size: { width: number; height: number; alpha: number;
     ...size,
     xAxis: axisTables(size.width),
     yAxis: axisTables(size.height),
-    inverseDiagonal: new Float64Array(count),
-    penalty: new Float64Array(count),
+    inverseDiagonal: new Float32Array(count),
+    hold: emptyHold(count),
     correction: new Float64Array(count),
-    right: new Float64Array(count),
-    scratch: new Float64Array(count),
+    right: new Float32Array(count),
+    scratch: new Float32Array(count),
   };
 }
 
-/** Fills the inverse diagonal from the penalties; nodes in `held` get 0. */
-export function fillDiagonal(level: PlateLevel, held: Int32Array): void {
-  const { width, height, alpha, tau, inverseDiagonal, penalty } = level;
+/** Fills the inverse diagonal: with the level's hold in it, or, for the surface itself, with 0 at the pinned nodes. */
+export function fillDiagonal(level: PlateLevel, pinned: Int32Array | null): void {
+  const { width, height, alpha, tau, inverseDiagonal, hold } = level;
   const inner = 20 * alpha + 4 * tau;
   for (let j = 0, k = 0; j < height; j++) {
     const rimRow = j < 2 || j >= height - 2;
     for (let i = 0; i < width; i++, k++) {
       const rim = rimRow || i < 2 || i >= width - 2;
-      const diagonal = (rim ? plateWeight(level, [i, j], [0, 0]) : inner) + penalty[k]!;
+      const diagonal = (rim ? plateWeight(level, [i, j], [0, 0]) : inner) + (pinned ? 0 : hold.self[k]!);
       // A lone node has no energy at all; any number will do, since its right side is zero.
       inverseDiagonal[k] = diagonal > 0 ? 1 / diagonal : 1;
     }
   }
-  for (let n = 0; n < held.length; n++) inverseDiagonal[held[n]!] = 0;
+  for (const node of pinned ?? []) inverseDiagonal[node] = 0;
 }

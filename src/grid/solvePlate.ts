@@ -1,16 +1,17 @@
-import { cholesky, choleskySolve } from '../numerics/cholesky.js';
-import { applyPlate, smoothBackward, smoothForward } from './plateKernels.js';
+import { clearHold, coarsenHold, holdNode } from './hold.js';
+import { heldResidual, heldSmooth } from './heldKernels.js';
+import { coarsenPins, movePinsOfRow, pinRows, type PinRows, type Pins } from './pins.js';
+import { plateResidual, smoothRow } from './plateKernels.js';
 import { fillDiagonal, plateLevel, plateWeight, type PlateLevel } from './plateLevel.js';
-import { coarsenPins, movePins, type Pins } from './pins.js';
 import { prolong, restrict, transfer, type Transfer } from './transfer.js';
 
 /**
- * The surface of least energy through the pins: full multigrid (each grid starts from the solution on the next coarser
- * one), on every grid conjugate gradients with a V-cycle as preconditioner, the pinned nodes moved between the rounds
- * until the surface meets the data where they were measured.
+ * The surface of least energy through the pins, by full multigrid: each grid starts from the solution on the next coarser
+ * one, and V-cycles bring it to the tolerance. Every grid has pins of its own (those of the finer grid, merged); a pin's
+ * node is moved within the sweeps until the surface meets the data where they were measured.
  *
  * Source: Briggs (1974), Geophysics 39 (minimum curvature); Smith & Wessel (1990), Geophysics 55 (tension, data off the
- * nodes); Trottenberg, Oosterlee & Schüller (2001), Multigrid (cycle, cubic transfer for fourth order, CG acceleration).
+ * nodes); Trottenberg, Oosterlee & Schüller (2001), Multigrid (full multigrid, cubic transfer for fourth order).
  */
 export interface PlateProblem {
   readonly width: number;
@@ -23,55 +24,51 @@ export interface PlateProblem {
 
 export interface PlateSolution {
   readonly z: Float64Array;
-  /** Conjugate-gradient steps on the finest grid. */
+  /** Cycles on the finest grid. */
   readonly iterations: number;
-  /** Estimate of the largest error that is left, in the data's unit (see `errorEstimate`). */
+  /** Estimate of the largest error that is left, in the data's unit. */
   readonly remaining: number;
   readonly converged: boolean;
 }
 
-/** Where both sides are this short or shorter, the equations are solved directly. */
-const DIRECT_SIDE = 5;
-/** Steps between two moves of the pins: enough to carry a move to the neighbours. */
-const STEPS_PER_ROUND = 2;
+/** Where both sides are this short or shorter, sweeps alone solve the equations. */
+const LAST_SIDE = 5;
+const LAST_SWEEPS = 20;
 /** Coarser grids only supply a start: an error below the next grid's own discretisation is enough. */
 const COARSE_TOLERANCE = 1e-3;
-const COARSE_STEPS = 12;
+const COARSE_CYCLES = 5;
 /**
- * A node that data hold on a finer grid is held on a coarser one by a penalty: the energy of the spike that a correction
- * would leave there, as a share of a lone spike's (neighbouring spikes share theirs). Affects speed only (measured).
+ * Weight of a pin's hold on corrections: half the energy of the spike that it leaves, as far as neighbouring pins do not
+ * share it, and no less than of a pin in a field of pins. Affects speed only (measured).
  */
-const SPIKE_SHARE = 0.4;
+const SPIKE_SHARE = 0.5;
+const LEAST_SPIKE = 4;
+/** Bounds within which the rate of convergence is believed. */
+const BEST_RATE = 0.3;
+const WORST_RATE = 0.95;
 
-interface Hierarchy {
+interface Grids {
   readonly levels: readonly PlateLevel[];
+  readonly pins: readonly PinRows[];
   /** Between level l and l + 1. */
   readonly transfers: readonly Transfer[];
-  /** Factor of the coarsest level's matrix. */
-  readonly direct: Float64Array;
 }
 
 /** `tolerance` in the data's unit. */
 export function solvePlate(problem: PlateProblem, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): PlateSolution {
-  const hierarchy = buildHierarchy(problem);
-  const { levels, transfers } = hierarchy;
-  const pinsOf = [problem.pins];
-  for (let l = 1; l < levels.length; l++) {
-    pinsOf.push(coarsenPins(pinsOf[l - 1]!, [levels[l - 1]!.width, levels[l]!.width, levels[l]!.height]));
-  }
+  const grids = buildGrids(problem);
+  const { levels, transfers } = grids;
   const range = spread(problem.pins.value);
   let z = new Float64Array(levels.at(-1)!.width * levels.at(-1)!.height);
   let solution: Omit<PlateSolution, 'z'> = { iterations: 0, remaining: 0, converged: true };
-  for (let start = levels.length - 1; start >= 0; start--) {
-    const level = levels[start]!;
-    if (start < levels.length - 1) {
-      const finer = new Float64Array(level.width * level.height);
-      prolong(transfers[start]!, [z, finer], { add: false, mask: null });
+  for (let l = levels.length - 1; l >= 0; l--) {
+    if (l < levels.length - 1) {
+      const finer = new Float64Array(levels[l]!.width * levels[l]!.height);
+      prolong(transfers[l]!, [z, finer], { add: false, mask: null });
       z = finer;
     }
-    holdPins(hierarchy, start, pinsOf);
-    const goal = start === 0 ? { tolerance, maxSteps } : { tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_STEPS };
-    solution = solveOnGrid(hierarchy, { start, pins: pinsOf[start]!, z }, goal);
+    const goal = l === 0 ? { tolerance, maxSteps } : { tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_CYCLES };
+    solution = solveOnGrid(grids, { l, z }, goal);
   }
   return { z, ...solution };
 }
@@ -86,166 +83,132 @@ function spread(values: Float64Array): number {
   return values.length === 0 ? 0 : high - low;
 }
 
-function buildHierarchy({ width, height, alpha, tau }: PlateProblem): Hierarchy {
+function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
   const levels = [plateLevel({ width, height, alpha, tau })];
+  const pinsOf = [pins];
   const transfers: Transfer[] = [];
   for (;;) {
     const fine = levels.at(-1)!;
-    if (fine.width <= DIRECT_SIDE && fine.height <= DIRECT_SIDE) break;
+    if (fine.width <= LAST_SIDE && fine.height <= LAST_SIDE) break;
     const down = transfer(fine.width, fine.height);
     transfers.push(down);
     // Twice the cell: curvature counts a quarter, slope the same, in the units of the finer grid.
     levels.push(plateLevel({ width: down.x.coarse, height: down.y.coarse, alpha: fine.alpha / 4, tau: fine.tau }));
+    pinsOf.push(coarsenPins(pinsOf.at(-1)!, [fine.width, down.x.coarse, down.y.coarse]));
   }
-  const coarsest = levels.at(-1)!;
-  return { levels, transfers, direct: new Float64Array((coarsest.width * coarsest.height) ** 2) };
+  return { levels, transfers, pins: pinsOf.map((each, l) => pinRows(each, levels[l]!.width, levels[l]!.height)) };
 }
 
-/** Holds the pinned nodes of grid `start` and lays their penalties on all coarser ones. */
-function holdPins({ levels, transfers, direct }: Hierarchy, start: number, pinsOf: readonly Pins[]): void {
+function solveOnGrid(grids: Grids, { l, z }: { l: number; z: Float64Array }, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
+  layHolds(grids, l);
+  grids.levels[l]!.right.fill(0);
+  let before = NaN;
+  let remaining = Infinity;
+  for (let step = 1; step <= maxSteps; step++) {
+    const size = cycle(grids, l, z);
+    const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, size / before || 0));
+    // The changes fall about geometrically: what is still to come is their sum.
+    remaining = (size * rate) / (1 - rate);
+    if (remaining <= tolerance) return { iterations: step, remaining, converged: true };
+    before = size;
+  }
+  return { iterations: maxSteps, remaining, converged: false };
+}
+
+/** Pins the nodes of grid `start`, whose surface is sought, and lays their hold on all coarser grids. */
+function layHolds({ levels, pins }: Grids, start: number): void {
   const top = levels[start]!;
-  top.penalty.fill(0);
-  fillDiagonal(top, pinsOf[start]!.node);
-  const spike = SPIKE_SHARE * (20 * top.alpha + 4 * top.tau);
-  for (let l = start; l < transfers.length; l++) {
+  const { node } = pins[start]!.pins;
+  fillDiagonal(top, node);
+  for (let l = start; l + 1 < levels.length; l++) {
     const fine = levels[l]!;
     const coarse = levels[l + 1]!;
-    coarse.penalty.fill(0);
-    for (let j = 0, k = 0; j < fine.height; j++) {
-      for (let i = 0; i < fine.width; i++, k++) {
-        const weight = l > start ? fine.penalty[k]! : fine.inverseDiagonal[k] === 0 ? spike : 0;
-        if (weight === 0) continue;
-        // To the one, two or four coarse nodes around, by halves.
-        const at = (j >> 1) * coarse.width + (i >> 1);
-        const share = weight / ((1 + (i & 1)) * (1 + (j & 1)));
-        coarse.penalty[at]! += share;
-        if (i & 1) coarse.penalty[at + 1]! += share;
-        if (j & 1) coarse.penalty[at + coarse.width]! += share;
-        if (i & j & 1) coarse.penalty[at + coarse.width + 1]! += share;
+    clearHold(coarse.hold);
+    if (l > start) {
+      coarsenHold(fine, coarse);
+    } else {
+      for (let n = 0; n < node.length; n++) {
+        const j = Math.floor(node[n]! / fine.width);
+        holdNode(coarse.hold, { i: node[n]! - j * fine.width, j, weight: spikeWeight(top, node[n]!), coarseWidth: coarse.width });
       }
     }
-    fillDiagonal(coarse, new Int32Array(0));
+    fillDiagonal(coarse, null);
   }
-  factorDirect(levels.at(-1)!, direct);
 }
 
-/** Keeps the direct solution finite where few pins leave a tilt free; far below any weight that matters. */
-const RIDGE = 1e-9;
-
-function factorDirect(level: PlateLevel, matrix: Float64Array): void {
-  const { width, height, penalty, inverseDiagonal } = level;
-  const n = width * height;
-  matrix.fill(0);
-  for (let k = 0; k < n; k++) {
-    if (inverseDiagonal[k] === 0) {
-      matrix[k * n + k] = 1;
-      continue;
+/** Energy of a spike of height 1 on a pinned node and on all pinned nodes around it, as far as this node's row shows it. */
+function spikeWeight(level: PlateLevel, k: number): number {
+  const { width, height, inverseDiagonal, alpha, tau } = level;
+  const j = Math.floor(k / width);
+  const i = k - j * width;
+  let sum = 0;
+  for (let dy = Math.max(-2, -j); dy <= Math.min(2, height - 1 - j); dy++) {
+    const reach = 2 - Math.abs(dy);
+    for (let dx = Math.max(-reach, -i); dx <= Math.min(reach, width - 1 - i); dx++) {
+      if (inverseDiagonal[k + dy * width + dx] === 0) sum += plateWeight(level, [i, j], [dx, dy]);
     }
-    const j = Math.floor(k / width);
-    const i = k - j * width;
-    for (let dy = Math.max(-2, -j); dy <= Math.min(2, height - 1 - j); dy++) {
-      for (let dx = Math.max(-2, -i); dx <= Math.min(2, width - 1 - i); dx++) {
-        const other = k + dy * width + dx;
-        if (inverseDiagonal[other] !== 0) matrix[k * n + other] = plateWeight(level, [i, j], [dx, dy]);
-      }
-    }
-    matrix[k * n + k]! += penalty[k]! + RIDGE * (level.alpha + level.tau);
   }
-  cholesky(matrix, n);
+  return SPIKE_SHARE * Math.max(sum, LEAST_SPIKE * (alpha + tau));
 }
 
-interface GridTask {
-  readonly start: number;
-  readonly pins: Pins;
-  readonly z: Float64Array;
+/** One V-cycle on the surface itself; returns the size of the largest change. */
+function cycle({ levels, transfers, pins }: Grids, l: number, z: Float64Array): number {
+  const level = levels[l]!;
+  const last = l === levels.length - 1;
+  let size = sweep(level, pins[l]!, z);
+  if (last) {
+    for (let n = 1; n < LAST_SWEEPS; n++) sweep(level, pins[l]!, z);
+    return size;
+  }
+  const coarse = levels[l + 1]!;
+  const { correction, scratch } = level;
+  plateResidual(level, z, scratch);
+  restrict(transfers[l]!, [scratch, coarse.right]);
+  correct({ levels, transfers }, l + 1);
+  correction.fill(0);
+  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: level.inverseDiagonal });
+  // The correction goes as far as lowers the energy most: the hold only estimates what it costs.
+  const gain = dot(correction, scratch);
+  plateResidual(level, correction, scratch);
+  const cost = -dot(correction, scratch);
+  if (cost > 0) {
+    const length = gain / cost;
+    for (let k = 0; k < z.length; k++) z[k]! += length * correction[k]!;
+    size = Math.max(size, length * most);
+  }
+  sweep(level, pins[l]!, z);
+  return size;
 }
 
-function solveOnGrid(hierarchy: Hierarchy, { start, pins, z }: GridTask, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
-  const level = hierarchy.levels[start]!;
+function sweep(level: PlateLevel, pins: PinRows, z: Float64Array): number {
   const { width, height } = level;
-  const moves = new Float64Array(pins.node.length);
-  // The right side of the top level is the residual that the cycle works on.
-  const residual = level.right;
-  const direction = new Float64Array(z.length);
-  const sizes: number[] = [];
-  let steps = 0;
-  let remaining = Infinity;
-  while (steps < maxSteps) {
-    const moved = movePins(z, pins, { width, height, moves });
-    applyPlate(level, z, { out: residual, from: null });
-    for (let k = 0; k < residual.length; k++) residual[k] = -residual[k]!;
-    let product = 0;
-    for (let step = 0; step < STEPS_PER_ROUND && steps < maxSteps; step++, steps++) {
-      cycle(hierarchy, start);
-      const { correction } = level;
-      const { dot, size } = dotAndSize(residual, correction);
-      sizes.push(Math.max(moved, size));
-      remaining = errorEstimate(sizes);
-      // Rounding alone makes the product vanish or turn negative.
-      if (remaining <= tolerance || !(dot > 0)) return { iterations: steps, remaining, converged: remaining <= tolerance };
-      const beta = step === 0 ? 0 : dot / product;
-      product = dot;
-      for (let k = 0; k < direction.length; k++) direction[k] = correction[k]! + beta * direction[k]!;
-      applyPlate(level, direction, { out: level.scratch, from: null });
-      advance({ z, residual, direction, image: level.scratch }, dot);
-    }
+  let largest = 0;
+  for (let j = 0; j < height; j++) {
+    largest = movePinsOfRow(z, pins, { width, height, j, largest });
+    largest = smoothRow(level, z, { j, largest });
   }
-  return { iterations: steps, remaining, converged: false };
+  return largest;
 }
 
-/** Steps over which the rate of convergence is taken, and the bounds that it is believed within. */
-const RATE_STEPS = 4;
-const BEST_RATE = 0.3;
-const WORST_RATE = 0.98;
-
-/**
- * The corrections fall about geometrically, so what is still to come is the last one's size over 1 − rate. Size: the
- * largest correction of a node or move of a pin.
- */
-function errorEstimate(sizes: readonly number[]): number {
-  const last = sizes.at(-1)!;
-  const back = Math.min(RATE_STEPS, sizes.length - 1);
-  const rate = back > 0 ? (last / sizes[sizes.length - 1 - back]!) ** (1 / back) : 1 / 2;
-  return last / (1 - Math.min(WORST_RATE, Math.max(BEST_RATE, rate || 0)));
+/** One V-cycle from zero on a correction: level.correction ≈ (A + H)⁻¹ level.right. */
+function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: number): void {
+  const level = levels[l]!;
+  const { correction, scratch } = level;
+  correction.fill(0);
+  heldSmooth(level, correction);
+  if (l === levels.length - 1) {
+    for (let n = 1; n < LAST_SWEEPS; n++) heldSmooth(level, correction);
+    return;
+  }
+  heldResidual(level, correction, scratch);
+  restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
+  correct({ levels, transfers }, l + 1);
+  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null });
+  heldSmooth(level, correction);
 }
 
-function dotAndSize(a: Float64Array, b: Float64Array): { dot: number; size: number } {
-  let dot = 0;
-  let size = 0;
-  for (let k = 0; k < a.length; k++) {
-    const value = b[k]!;
-    dot += a[k]! * value;
-    const magnitude = Math.abs(value);
-    if (magnitude > size) size = magnitude;
-  }
-  return { dot, size };
-}
-
-function advance({ z, residual, direction, image }: Record<'z' | 'residual' | 'direction' | 'image', Float64Array>, dot: number): void {
-  let curvature = 0;
-  for (let k = 0; k < z.length; k++) curvature += direction[k]! * image[k]!;
-  const length = dot / curvature;
-  for (let k = 0; k < z.length; k++) {
-    z[k]! += length * direction[k]!;
-    residual[k]! -= length * image[k]!;
-  }
-}
-
-/** One symmetric V-cycle: level.correction ≈ A⁻¹ level.right, zero at held nodes. */
-function cycle({ levels, transfers, direct }: Hierarchy, start: number): void {
-  const last = levels.length - 1;
-  for (let l = start; l < last; l++) {
-    const level = levels[l]!;
-    level.correction.fill(0);
-    smoothForward(level, level.correction, level.right);
-    applyPlate(level, level.correction, { out: level.scratch, from: level.right });
-    restrict(transfers[l]!, [level.scratch, levels[l + 1]!.right]);
-  }
-  const coarsest = levels[last]!;
-  coarsest.correction.set(choleskySolve(direct, coarsest.correction.length, coarsest.right));
-  for (let l = last - 1; l >= start; l--) {
-    const level = levels[l]!;
-    prolong(transfers[l]!, [levels[l + 1]!.correction, level.correction], { add: true, mask: level.inverseDiagonal });
-    smoothBackward(level, level.correction, level.right);
-  }
+function dot(a: Float64Array, b: Float32Array): number {
+  let sum = 0;
+  for (let k = 0; k < a.length; k++) sum += a[k]! * b[k]!;
+  return sum;
 }

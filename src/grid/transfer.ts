@@ -51,8 +51,9 @@ export function transfer(width: number, height: number): Transfer {
 
 /**
  * fine += P coarse, or fine = P coarse where `add` is false. Where `mask` is given, fine nodes with mask 0 are left alone.
+ * Returns the largest value of P coarse that was used.
  */
-export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, mask }: { add: boolean; mask: Float64Array | null }): void {
+export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, mask }: { add: boolean; mask: Float32Array | null }): number {
   const width = x.fine;
   const reads = Math.min(4, x.coarse);
   for (let row = 0; row < y.coarse; row++) {
@@ -71,6 +72,7 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
       }
     }
   }
+  let largest = 0;
   for (let row = 0; row < y.fine; row++) {
     const f = row * width;
     const rows = Math.min(4, y.coarse - y.from[row]!);
@@ -87,12 +89,15 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
       if (mask && mask[f + i] === 0) continue;
       const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
       fine[f + i] = add ? fine[f + i]! + value : value;
+      if (value > largest) largest = value;
+      else if (-value > largest) largest = -value;
     }
   }
+  return largest;
 }
 
 /** coarse = Pᵀ fine. */
-export function restrict({ x, y, half }: Transfer, [fine, coarse]: readonly [Float64Array, Float64Array]): void {
+export function restrict({ x, y, half }: Transfer, [fine, coarse]: readonly [Float32Array, Float32Array]): void {
   const width = x.fine;
   half.fill(0);
   for (let row = 0; row < y.fine; row++) {

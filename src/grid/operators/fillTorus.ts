@@ -9,25 +9,41 @@ export interface Torus {
 }
 
 /** Sweeps on each level: the coarser level has settled all longer waves already, these settle what it cannot carry. */
-const SWEEPS = 12;
+const SWEEPS = 4;
+/**
+ * Sweeps of a plate at the end, over the cells next to given ones: they lead the slope at the rim on over a few cells. A
+ * kink there would ring through a derivative (a source on the edge: 38 % of the peak at the edge without them, 7 % with).
+ */
+const PLATE_SWEEPS = 12;
+/** As far, in cells along rows and columns, as so many sweeps change anything that matters. */
+const PLATE_REACH = 8;
 
 /**
  * Fills the cells that are not known with a membrane that is held by the known ones and drawn to zero over `decayCells`:
- * between nearby values it is harmonic, far from any it vanishes. Coarse to fine, each level starting from the coarser
- * one (Bornemann & Deuflhard 1996, The cascadic multigrid method, Numerische Mathematik 75, 135-152). A few sweeps a
- * level do not solve it to the last digit; smooth is all that is wanted here.
+ * between nearby values it is harmonic, far from any it vanishes; at the rim it leaves without a kink.
  */
 export function fillTorus(torus: Torus, decayCells: number): void {
   if (!torus.known.includes(0)) return;
-  if (torus.width > 2 && torus.height > 2) {
+  membrane(torus, decayCells);
+  const rim = cellsNearKnown(torus);
+  for (let sweep = 0; sweep < PLATE_SWEEPS; sweep++) bend(torus, rim);
+}
+
+/**
+ * Coarse to fine, each level starting from the coarser one. A few sweeps a level do not solve it to the last digit;
+ * smooth is all that is wanted. Source: Bornemann & Deuflhard (1996), The cascadic multigrid method, Numer. Math. 75, 135-152.
+ */
+function membrane(torus: Torus, decayCells: number): void {
+  const { width, height, stride, values, known } = torus;
+  if (width > 2 && height > 2) {
     const coarse = coarser(torus);
-    fillTorus(coarse, decayCells / 2);
+    membrane(coarse, decayCells / 2);
     interpolate(coarse, torus);
   } else {
-    const { width, height, stride, values, known } = torus;
     for (let j = 0; j < height; j++) for (let i = 0; i < width; i++) if (!known[j * width + i]) values[j * stride + i] = 0;
   }
-  for (let sweep = 0; sweep < SWEEPS; sweep++) relax(torus, 1 / (4 + 1 / (decayCells * decayCells)));
+  const share = 1 / (4 + 1 / (decayCells * decayCells));
+  for (let sweep = 0; sweep < SWEEPS; sweep++) relax(torus, share);
 }
 
 function coarser({ width, height, stride, values, known }: Torus): Torus {
@@ -67,6 +83,7 @@ function interpolate(coarse: Torus, { width, height, stride, values, known }: To
   }
 }
 
+/** One sweep of ∇²z = z/decay², cell after cell. */
 function relax({ width, height, stride, values, known }: Torus, share: number): void {
   for (let j = 0; j < height; j++) {
     const up = ((j + height - 1) % height) * stride;
@@ -78,5 +95,67 @@ function relax({ width, height, stride, values, known }: Torus, share: number): 
       const right = i === width - 1 ? 0 : i + 1;
       values[here + i] = share * (values[up + i]! + values[down + i]! + values[here + left]! + values[here + right]!);
     }
+  }
+}
+
+/** Cells without a value at most `PLATE_REACH` columns and rows from one with, row after row. */
+function cellsNearKnown({ width, height, known }: Torus): Int32Array {
+  const sideways = new Uint8Array(known.length);
+  for (let j = 0; j < height; j++) {
+    const row = j * width;
+    // A run-up of the reach before each end takes in what lies round the torus.
+    for (let i = -PLATE_REACH, last = -Infinity; i < width; i++) {
+      if (known[row + wrap(i, width)]) last = i;
+      if (i >= 0 && i - last <= PLATE_REACH) sideways[row + i] = 1;
+    }
+    for (let i = width - 1 + PLATE_REACH, last = Infinity; i >= 0; i--) {
+      if (known[row + wrap(i, width)]) last = i;
+      if (i < width && last - i <= PLATE_REACH) sideways[row + i] = 1;
+    }
+  }
+  const near = new Uint8Array(known.length);
+  const last = new Int32Array(width);
+  const look = (j: number): void => {
+    const row = wrap(j, height) * width;
+    const inside = j >= 0 && j < height;
+    for (let i = 0; i < width; i++) {
+      if (sideways[row + i]) last[i] = j;
+      if (inside && Math.abs(j - last[i]!) <= PLATE_REACH) near[row + i] = 1;
+    }
+  };
+  const FAR = 2 * PLATE_REACH + 1;
+  last.fill(-FAR);
+  for (let j = -PLATE_REACH; j < height; j++) look(j);
+  last.fill(height + FAR);
+  for (let j = height - 1 + PLATE_REACH; j >= 0; j--) look(j);
+  let count = 0;
+  for (let n = 0; n < near.length; n++) if (near[n] && !known[n]) count++;
+  const cells = new Int32Array(count);
+  for (let n = 0, at = 0; n < near.length; n++) if (near[n] && !known[n]) cells[at++] = n;
+  return cells;
+}
+
+function wrap(n: number, size: number): number {
+  return n >= 0 && n < size ? n : ((n % size) + size) % size;
+}
+
+/** One sweep of ∇⁴z = 0 over the cells listed. */
+function bend({ width, height, stride, values }: Torus, cells: Int32Array): void {
+  for (const n of cells) {
+    const j = Math.floor(n / width);
+    const i = n - j * width;
+    const here = j * stride;
+    const up = ((j + height - 1) % height) * stride;
+    const down = ((j + 1) % height) * stride;
+    const above = ((j + 2 * height - 2) % height) * stride;
+    const below = ((j + 2) % height) * stride;
+    const west = i === 0 ? width - 1 : i - 1;
+    const east = i === width - 1 ? 0 : i + 1;
+    const farWest = west === 0 ? width - 1 : west - 1;
+    const farEast = east === width - 1 ? 0 : east + 1;
+    const near = values[up + i]! + values[down + i]! + values[here + west]! + values[here + east]!;
+    const diagonal = values[up + west]! + values[up + east]! + values[down + west]! + values[down + east]!;
+    const far = values[above + i]! + values[below + i]! + values[here + farWest]! + values[here + farEast]!;
+    values[here + i] = (8 * near - 2 * diagonal - far) / 20;
   }
 }
