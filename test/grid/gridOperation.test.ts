@@ -1,0 +1,54 @@
+import { describe, expect, it } from 'vitest';
+import { grid } from '../../src/operations/grid.js';
+import type { GridResult } from '../../src/grid/types.js';
+import type { Task } from '../../src/operations/types.js';
+import type { Readings } from '../../src/readings/types.js';
+
+/** Ten lines 6 m apart, a reading a metre; every tenth reading flagged and wild. */
+function readings(): Readings {
+  const x: number[] = [], y: number[] = [], line: number[] = [], flag: number[] = [], residual: number[] = [];
+  for (let l = 0; l < 10; l++) {
+    for (let k = 0; k < 60; k++) {
+      x.push(l * 6);
+      y.push(l % 2 ? 60 - k : k);
+      line.push(l);
+      flag.push(k % 10 === 5 ? 2 : 0);
+      residual.push(k % 10 === 5 ? 1e6 : 10 + x.at(-1)!);
+    }
+  }
+  return { count: x.length, x: Float64Array.from(x), y: Float64Array.from(y), line: Int32Array.from(line), flag: Uint8Array.from(flag), residual: Float64Array.from(residual) } as unknown as Readings;
+}
+
+async function run(parameters: Record<string, unknown>): Promise<{ residual: GridResult; warnings: string[]; notes: string[] }> {
+  const warnings: string[] = [], notes: string[] = [];
+  const task = { parameters, inputs: { readings: readings() }, warn: (m: string) => warnings.push(m), progress: (m: string) => notes.push(m) } as unknown as Task;
+  const { residual } = await grid.run(task);
+  return { residual: residual as GridResult, warnings, notes };
+}
+
+describe('the grid operation', () => {
+  const defaults = Object.fromEntries(Object.entries(grid.parameters.properties).filter(([, s]) => s.default !== undefined).map(([key, s]) => [key, s.default]));
+
+  it('judges cell and reach by the lines and leaves flagged readings out', async () => {
+    const { residual, warnings, notes } = await run(defaults);
+    expect(residual.spacingM).toBeCloseTo(6, 6);
+    expect(residual.cellM).toBe(1);
+    expect(residual.reachM).toBeCloseTo(4.5, 6);
+    expect(warnings).toEqual([]);
+    expect(notes.length).toBeGreaterThan(0);
+    expect(residual.filled).toBeGreaterThan(55 * 60);
+    for (let k = 0; k < residual.values.length; k++) {
+      const value = residual.values[k]!;
+      if (Number.isNaN(value)) continue;
+      expect(value).toBeCloseTo(10 + residual.west + (k % residual.width) + 0.5, 3);
+    }
+  });
+
+  it('takes what it is told', async () => {
+    const { residual, warnings } = await run({ ...defaults, cell_m: 0.5, reach_m: 2, tension: 0, spacing_m: 6 });
+    expect(residual.cellM).toBe(0.5);
+    expect(residual.reachM).toBe(2);
+    expect(residual.tension).toBe(0);
+    expect(warnings.join()).toMatch(/finer/);
+  });
+});
