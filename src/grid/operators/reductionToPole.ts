@@ -38,7 +38,7 @@ const rad = (deg: number): number => (deg * Math.PI) / 180;
  * any inclination; below `steadyBelowDeg` the amplitude is that of the steeper field. A plane stays as it is; the mean
  * has the factor of a vertical wave, 1/sin I.
  *
- * Source: Blakely (1995), ch. 12.3; MacLeod, Jones & Dai (1993), Exploration Geophysics 24, 679-686 (pseudo-inclination).
+ * Source: Blakely (1995), ch. 12.3; MacLeod, Jones & Dai (1993), Exploration Geophysics 24, 679-688 (pseudo-inclination).
  */
 export function poleOperator({ inclinationDeg, declinationDeg }: FieldDirection, options: PoleOptions = {}): SpectralOperator {
   const { magnetisation, steadyBelowDeg } = { ...POLE_DEFAULTS, ...options };
