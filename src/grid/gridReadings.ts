@@ -78,14 +78,14 @@ export function gridReadings(samples: Samples, options: GridOptions = {}): GridR
   }
   const plane = fitPlane(pins, solved.width);
   const range = takePlane(pins, plane, solved.width);
+  const mask = reachMask(index, solved, reachM);
   const used = plane.onLine ? Math.max(tension, TENSION_ON_LINE) : tension;
   const { z, iterations, remaining, converged } = solvePlate(
-    { width: solved.width, height: solved.height, alpha: 1 - used, tau: used * (cellM / spacingM) ** 2, pins },
+    { width: solved.width, height: solved.height, alpha: 1 - used, tau: used * (cellM / spacingM) ** 2, pins, watch: mask },
     // Readings that lie in a plane have no range; any tolerance is met at once.
     { tolerance: tolerance * Math.max(range, plane.rounding), maxSteps },
   );
 
-  const mask = reachMask(index, solved, reachM);
   const values = new Float32Array(frame.width * frame.height).fill(NaN);
   const shift = Math.round((frame.west - solved.west) / cellM);
   const down = Math.round((solved.north - frame.north) / cellM);

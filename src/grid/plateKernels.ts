@@ -52,21 +52,30 @@ function residualAtRim(level: PlateLevel, z: Float64Array, out: Float32Array, k:
   out[k] = level.inverseDiagonal[k] === 0 ? 0 : level.right[k]! - plateAtRim(level, z, k);
 }
 
+export interface RowSweep {
+  readonly j: number;
+  /** Largest change so far. */
+  readonly largest: number;
+  /** 1 at nodes whose change counts; null where all do. */
+  readonly watch: Uint8Array | null;
+}
+
 /**
  * One Gauss–Seidel sweep of row `j` from west to east on A z = right; pinned nodes stay. Returns the largest
  * change of a node, or `largest` where that is more.
  */
-export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest }: { j: number; largest: number }): number {
+export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest: before, watch }: RowSweep): number {
+  let largest = before;
   const { width, height, alpha, tau, inverseDiagonal, right: b } = level;
   const start = j * width;
   if (j < 2 || j >= height - 2 || width < 5) {
-    for (let k = start; k < start + width; k++) largest = smoothAtRim(level, z, { k, largest });
+    for (let k = start; k < start + width; k++) largest = smoothAtRim(level, z, { k, largest, watch });
     return largest;
   }
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  for (let k = start; k < start + 2; k++) largest = smoothAtRim(level, z, { k, largest });
+  for (let k = start; k < start + 2; k++) largest = smoothAtRim(level, z, { k, largest, watch });
   const end = start + width - 2;
   let k = start + 2;
   const up = -width;
@@ -88,8 +97,7 @@ export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest }: { 
     const change = step * known - step * a1 * left;
     const value = centre + change;
     z[k] = value;
-    if (change > largest) largest = change;
-    else if (-change > largest) largest = -change;
+    if ((change > largest || -change > largest) && (watch === null || watch[k] !== 0)) largest = Math.abs(change);
     nearLeft = near;
     near = nearRight;
     left2 = left;
@@ -97,14 +105,14 @@ export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest }: { 
     centre = right;
     right = right2;
   }
-  for (k = end; k < end + 2; k++) largest = smoothAtRim(level, z, { k, largest });
+  for (k = end; k < end + 2; k++) largest = smoothAtRim(level, z, { k, largest, watch });
   return largest;
 }
 
-function smoothAtRim(level: PlateLevel, z: Float64Array, { k, largest }: { k: number; largest: number }): number {
+function smoothAtRim(level: PlateLevel, z: Float64Array, { k, largest, watch }: { k: number; largest: number; watch: Uint8Array | null }): number {
   const inverse = level.inverseDiagonal[k]!;
   if (inverse === 0) return largest;
   const change = OMEGA * inverse * (level.right[k]! - plateAtRim(level, z, k));
   z[k]! += change;
-  return Math.max(largest, Math.abs(change));
+  return watch === null || watch[k] !== 0 ? Math.max(largest, Math.abs(change)) : largest;
 }

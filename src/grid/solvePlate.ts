@@ -20,6 +20,8 @@ export interface PlateProblem {
   readonly alpha: number;
   readonly tau: number;
   readonly pins: Pins;
+  /** 1 at nodes whose value is wanted; only their error counts. Null where all are wanted. */
+  readonly watch: Uint8Array | null;
 }
 
 export interface PlateSolution {
@@ -64,11 +66,11 @@ export function solvePlate(problem: PlateProblem, { tolerance, maxSteps }: { tol
   for (let l = levels.length - 1; l >= 0; l--) {
     if (l < levels.length - 1) {
       const finer = new Float64Array(levels[l]!.width * levels[l]!.height);
-      prolong(transfers[l]!, [z, finer], { add: false, mask: null });
+      prolong(transfers[l]!, [z, finer], { add: false, mask: null, watch: null });
       z = finer;
     }
     const goal = l === 0 ? { tolerance, maxSteps } : { tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_CYCLES };
-    solution = solveOnGrid(grids, { l, z }, goal);
+    solution = solveOnGrid(grids, { l, z, watch: l === 0 ? problem.watch : null }, goal);
   }
   return { z, ...solution };
 }
@@ -99,13 +101,20 @@ function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
   return { levels, transfers, pins: pinsOf.map((each, l) => pinRows(each, levels[l]!.width, levels[l]!.height)) };
 }
 
-function solveOnGrid(grids: Grids, { l, z }: { l: number; z: Float64Array }, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
+interface Work {
+  /** Level. */
+  readonly l: number;
+  readonly z: Float64Array;
+  readonly watch: Uint8Array | null;
+}
+
+function solveOnGrid(grids: Grids, { l, z, watch }: Work, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
   layHolds(grids, l);
   grids.levels[l]!.right.fill(0);
   let before = NaN;
   let remaining = Infinity;
   for (let step = 1; step <= maxSteps; step++) {
-    const size = cycle(grids, l, z);
+    const size = cycle(grids, { l, z, watch });
     const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, size / before || 0));
     // The changes fall about geometrically: what is still to come is their sum.
     remaining = (size * rate) / (1 - rate);
@@ -152,12 +161,12 @@ function spikeWeight(level: PlateLevel, k: number): number {
 }
 
 /** One V-cycle on the surface itself; returns the size of the largest change. */
-function cycle({ levels, transfers, pins }: Grids, l: number, z: Float64Array): number {
+function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work): number {
   const level = levels[l]!;
   const last = l === levels.length - 1;
-  let size = sweep(level, pins[l]!, z);
+  let size = sweep(level, pins[l]!, { z, watch });
   if (last) {
-    for (let n = 1; n < LAST_SWEEPS; n++) sweep(level, pins[l]!, z);
+    for (let n = 1; n < LAST_SWEEPS; n++) sweep(level, pins[l]!, { z, watch });
     return size;
   }
   const coarse = levels[l + 1]!;
@@ -166,7 +175,7 @@ function cycle({ levels, transfers, pins }: Grids, l: number, z: Float64Array): 
   restrict(transfers[l]!, [scratch, coarse.right]);
   correct({ levels, transfers }, l + 1);
   correction.fill(0);
-  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: level.inverseDiagonal });
+  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: level.inverseDiagonal, watch });
   // The correction goes as far as lowers the energy most: the hold only estimates what it costs.
   const gain = dot(correction, scratch);
   plateResidual(level, correction, scratch);
@@ -176,16 +185,16 @@ function cycle({ levels, transfers, pins }: Grids, l: number, z: Float64Array): 
     for (let k = 0; k < z.length; k++) z[k]! += length * correction[k]!;
     size = Math.max(size, length * most);
   }
-  sweep(level, pins[l]!, z);
+  sweep(level, pins[l]!, { z, watch });
   return size;
 }
 
-function sweep(level: PlateLevel, pins: PinRows, z: Float64Array): number {
+function sweep(level: PlateLevel, pins: PinRows, { z, watch }: Pick<Work, 'z' | 'watch'>): number {
   const { width, height } = level;
   let largest = 0;
   for (let j = 0; j < height; j++) {
     largest = movePinsOfRow(z, pins, { width, height, j, largest });
-    largest = smoothRow(level, z, { j, largest });
+    largest = smoothRow(level, z, { j, largest, watch });
   }
   return largest;
 }
@@ -203,7 +212,7 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   heldResidual(level, correction, scratch);
   restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
   correct({ levels, transfers }, l + 1);
-  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null });
+  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null, watch: null });
   heldSmooth(level, correction);
 }
 

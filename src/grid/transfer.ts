@@ -49,11 +49,17 @@ export function transfer(width: number, height: number): Transfer {
   return { x, y, half: new Float64Array(width * y.coarse) };
 }
 
+export interface Prolongation {
+  readonly add: boolean;
+  readonly mask: Float32Array | null;
+  readonly watch: Uint8Array | null;
+}
+
 /**
  * fine += P coarse, or fine = P coarse where `add` is false. Where `mask` is given, fine nodes with mask 0 are left alone.
- * Returns the largest value of P coarse that was used.
+ * Returns the largest value of P coarse that was used, of nodes with `watch` 1 where that is given.
  */
-export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, mask }: { add: boolean; mask: Float32Array | null }): number {
+export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, mask, watch }: Prolongation): number {
   const width = x.fine;
   const reads = Math.min(4, x.coarse);
   for (let row = 0; row < y.coarse; row++) {
@@ -89,8 +95,7 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
       if (mask && mask[f + i] === 0) continue;
       const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
       fine[f + i] = add ? fine[f + i]! + value : value;
-      if (value > largest) largest = value;
-      else if (-value > largest) largest = -value;
+      if ((value > largest || -value > largest) && (watch === null || watch[f + i] !== 0)) largest = Math.abs(value);
     }
   }
   return largest;

@@ -75,7 +75,7 @@ describe('solvePlate against a direct solution of the same equations', () => {
     { width: 5, height: 6, pins: 4, tension: 0, offset: 0 },
   ])('$width × $height nodes, $pins pins off by up to $offset/2, tension $tension', ({ width, height, pins: count, tension, offset }) => {
     const pins = randomPins([width, height, count], { seed: width * height, offset });
-    const problem = { width, height, alpha: 1 - tension, tau: tension / 9, pins };
+    const problem = { width, height, alpha: 1 - tension, tau: tension / 9, pins, watch: null };
     const range = Math.max(...pins.value) - Math.min(...pins.value);
     const solved = solvePlate(problem, { tolerance: 2e-5 * range, maxSteps: 200 });
     const direct = denseSolution(problem);
@@ -87,7 +87,7 @@ describe('solvePlate against a direct solution of the same equations', () => {
 
   it('goes on to any tolerance, and says so where it may not', () => {
     const pins = randomPins([60, 60, 200], { seed: 5, offset: 1 });
-    const problem = { width: 60, height: 60, alpha: 0.75, tau: 0.01, pins };
+    const problem = { width: 60, height: 60, alpha: 0.75, tau: 0.01, pins, watch: null };
     const fine = solvePlate(problem, { tolerance: 1e-11, maxSteps: 500 });
     expect(fine.converged).toBe(true);
     const coarse = solvePlate(problem, { tolerance: 1e-4, maxSteps: 500 });
