@@ -1,6 +1,6 @@
-import { normalCdf } from '../numerics/special.js';
+import { normalCdf, normalPdf } from '../numerics/special.js';
 import type { Target } from '../detection/types.js';
-import type { Refined } from './refine.js';
+import { misfitOf, type Refined } from './refine.js';
 
 /** How likely each nature of a source is; sums to 1. */
 export interface Nature {
@@ -9,8 +9,6 @@ export interface Nature {
   readonly otherPole: number;
   readonly compact: number;
   readonly linear: number;
-  /** Misfit of the best model in units of the noise, at least 1: evidence and covariance are weakened by it. */
-  readonly misfit: number;
 }
 
 /**
@@ -19,11 +17,18 @@ export interface Nature {
  */
 export const PRIOR = Object.freeze({ casing: 0.35, otherPole: 0.1, compact: 0.35, linear: 0.2 });
 
-/** Strengths of poles that are no casings, A·m, and moments of compact iron, A·m²: log-uniform (from memory: rods to heavy pipe; a ton of steel 100 to 1,000 A·m²). */
-const OTHER_POLE_AM: readonly [number, number] = [1, 2000];
-const COMPACT_AM2: readonly [number, number] = [0.3, 3000];
-/** Scrap and pipe ends lie shallow: depths fall off exponentially over this length, metres (common practice: ploughed in, backfilled). */
+/**
+ * Strengths of poles that are no casings, and moments of compact iron, as log-normals (a working assumption: joints and
+ * rods some tens of A·m; scrap from a horseshoe to a ton of steel, 100 to 1,000 A·m², from memory). A share of both is
+ * anything at all, up to rock of any size.
+ */
+const OTHER_POLE = { middle: 15, logSd: 1.3 } as const;
+const COMPACT = { middle: 10, logSd: 1.7 } as const;
+const ANYTHING_SHARE = 0.05;
+const ANYTHING_LOG_RANGE = Math.log(1e10);
+/** Scrap and pipe ends lie shallow: most depths fall off exponentially over this length, metres (common practice: ploughed in, backfilled); the rest lie anywhere down to two reaches. */
 const SHALLOW_M = 1;
+const DEEP_SHARE = 0.2;
 /** Density of ln strength and depth for a line, which has neither stated: that of the middle of the others. */
 const LINE_DENSITY = 0.05;
 /** The stated range of strengths is softened by this share at either end (one standard deviation of ln). */
@@ -39,13 +44,13 @@ export const LEAST_CHANCE = 0.01;
  */
 export function natureOf(refined: Refined, { pole, compact }: Candidates, { target, reachM }: { readonly target: Target; readonly reachM: number }): Nature {
   const { fit, bic } = refined;
-  const misfit = Math.max(1, fit.chi2 / Math.max(1, fit.count - fit.parameters));
+  const misfit = misfitOf(fit);
   const least = Math.min(bic.pole, bic.dipole, bic.line);
   const weight = (value: number) => Math.exp(-0.5 * (value - least) / misfit);
   // Where a kind is not the best fit its strength and depth come from its own, worse fit: still what it would have to be.
   const asCasing = PRIOR.casing * (pole ? casingDensity(pole, target, reachM) : 0);
-  const asOther = PRIOR.otherPole * (pole ? logUniform(Math.abs(pole.poleAM), OTHER_POLE_AM) * shallow(pole.depthM, pole.depthSdM) : 0);
-  const asCompact = PRIOR.compact * (compact ? logUniform(compact.momentAM2, COMPACT_AM2) * shallow(compact.depthM, compact.depthSdM) : 0);
+  const asOther = PRIOR.otherPole * (pole ? sizeDensity(Math.abs(pole.poleAM), OTHER_POLE) * shallow(pole.depthM, pole.depthSdM, reachM) : 0);
+  const asCompact = PRIOR.compact * (compact ? sizeDensity(compact.momentAM2, COMPACT) * shallow(compact.depthM, compact.depthSdM, reachM) : 0);
   const parts = {
     casing: weight(bic.pole) * asCasing,
     otherPole: weight(bic.pole) * asOther,
@@ -53,7 +58,7 @@ export function natureOf(refined: Refined, { pole, compact }: Candidates, { targ
     linear: weight(bic.line) * PRIOR.linear * LINE_DENSITY,
   };
   const sum = parts.casing + parts.otherPole + parts.compact + parts.linear;
-  return { casing: parts.casing / sum, otherPole: parts.otherPole / sum, compact: parts.compact / sum, linear: parts.linear / sum, misfit };
+  return { casing: parts.casing / sum, otherPole: parts.otherPole / sum, compact: parts.compact / sum, linear: parts.linear / sum };
 }
 
 export interface PoleValues {
@@ -69,15 +74,15 @@ export interface Candidates {
   readonly compact: { readonly momentAM2: number; readonly depthM: number; readonly depthSdM: number } | null;
 }
 
-/** Density of ln value. A value outside the range counts a hundredth: nothing is impossible. */
-function logUniform(value: number, [low, high]: readonly [number, number]): number {
-  return (value >= low && value <= high ? 1 : 0.01) / Math.log(high / low);
+/** Density of ln value: mostly log-normal, else anything. */
+function sizeDensity(value: number, { middle, logSd }: { readonly middle: number; readonly logSd: number }): number {
+  return (1 - ANYTHING_SHARE) * (normalPdf(Math.log(Math.max(1e-9, value) / middle) / logSd) / logSd) + ANYTHING_SHARE / ANYTHING_LOG_RANGE;
 }
 
-/** Density of an exponential depth, one above ground counting by how far its error lets it reach below. */
-function shallow(depthM: number, depthSdM: number): number {
+/** Density of a depth that is most likely shallow; one above ground counts by how far its error lets it reach below. */
+function shallow(depthM: number, depthSdM: number, reachM: number): number {
   const sd = Math.hypot(depthSdM, DEPTH_SOFT_M);
-  return (normalCdf(depthM / sd) * Math.exp(-Math.max(0, depthM) / SHALLOW_M)) / SHALLOW_M;
+  return normalCdf(depthM / sd) * (((1 - DEEP_SHARE) * Math.exp(-Math.max(0, depthM) / SHALLOW_M)) / SHALLOW_M + DEEP_SHARE / (2 * reachM));
 }
 const DEPTH_SOFT_M = 0.3;
 

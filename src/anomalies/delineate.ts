@@ -59,7 +59,7 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const rough = noiseModel(survey, survey.blocks.value, { whiteSdNT, skip: new Uint8Array(survey.blocks.count) });
   const map = new SourceMap(survey);
   const full = searchSources(map, { noise: rough, target: site.target }, search);
-  if (splitStrained(map, { noise: rough, target: site.target }) > 0) searchSources(map, { noise: rough, target: site.target }, search);
+  if (splitStrained(map, { noise: rough, target: site.target }, search) > 0) searchSources(map, { noise: rough, target: site.target }, search);
   const pipes = findPipes(map, site.target);
   const held = new Set(pipes.flatMap((pipe) => pipe.pieces));
   const left = survey.blocks.value.map((value, i) => value - map.made[i]!);

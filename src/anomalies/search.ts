@@ -102,9 +102,10 @@ function tryPeak(map: SourceMap, peak: Peak, { noise, target }: { readonly noise
 const STRAINED = 1;
 
 /** Looks beside every strong source whose fit leaves too much for a second one that it has swallowed. */
-export function splitStrained(map: SourceMap, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }): number {
+export function splitStrained(map: SourceMap, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }, { maxSources }: SearchOptions): number {
   let split = 0;
   for (const entry of [...map.entries]) {
+    if (map.entries.length >= maxSources) break;
     if (entry.source.kind === 'line' || peakOf(map, entry) < leastPeak(map, target)) continue;
     const { fit } = refine(map, entry, { noise, kinds: [] });
     if (fit.chi2 > STRAINED * (fit.count - fit.parameters) && untangle(map, [entry], noise)) split++;
