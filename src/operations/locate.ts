@@ -1,5 +1,6 @@
 import { baseName, extension, type FileSource } from '../files.js';
 import { crs } from '../geodesy/crs.js';
+import { DIGIT_KINDS } from '../records/digits.js';
 import { LOCATE_DEFAULTS, locateRecords, type LocateOptions } from '../records/locateRecords.js';
 import { RECORD_FILE_DEFAULTS, type RecordFileSettings, type RecordSource } from '../records/recordSource.js';
 import { SOURCE_CLASSES } from '../records/sourceError.js';
@@ -34,6 +35,7 @@ const FILE_SCHEMA = objectSchema({
   crs: { type: 'string', description: 'CRS of easting and northing, or of latitude and longitude; for a vector file that names none.', examples: ['EPSG:32017'] },
   datum: { type: 'string', description: 'Datum of all rows that do not state their own.', examples: ['NAD27'] },
   west_positive: { type: 'boolean', default: RECORD_FILE_DEFAULTS.westPositive, description: 'Longitudes without sign or letter count west.' },
+  digits: { type: 'string', enum: DIGIT_KINDS, default: RECORD_FILE_DEFAULTS.digits, description: 'Whether the last digit of a coordinate was rounded, or what followed it cut off.' },
   source: { type: 'string', enum: SOURCE_CLASSES, default: RECORD_FILE_DEFAULTS.source, description: 'What the positions rest on; sets their error where none is stated.' },
   map_scale: { type: 'number', exclusiveMinimum: 0, description: 'For "map": 24000 stands for 1:24,000.', examples: [24000] },
   error_m: length('One standard deviation per axis of every position; in place of what "source" implies.'),

@@ -1,3 +1,5 @@
+import type { RawPlace } from './rawRecord.js';
+
 /** A plain decimal number, as coordinates are written. */
 export const numberText = /^[-+]?(?:\d+\.?\d*|\.\d+)(?:[eE][-+]?\d+)?$/;
 
@@ -18,4 +20,21 @@ export function decimalsOf(text: string): number {
   const point = mantissa.indexOf('.');
   const decimals = point < 0 ? 0 : mantissa.length - point - 1;
   return Math.max(0, decimals - Number(exponent ?? 0));
+}
+
+/** How the last digit of a file's coordinates came about. */
+export const DIGIT_KINDS = ['rounded', 'truncated'] as const;
+export type DigitKind = (typeof DIGIT_KINDS)[number];
+
+/** The middle of the places that digits which were cut off, not rounded, may stand for: half a digit farther from zero. */
+export function middleOfTruncated(place: RawPlace): RawPlace {
+  if (place.kind === 'angles') {
+    return { ...place, lonDeg: farther(place.lonDeg, place.lonResolutionDeg), latDeg: farther(place.latDeg, place.latResolutionDeg) };
+  }
+  return { ...place, eastM: farther(place.eastM, place.eastResolutionM), northM: farther(place.northM, place.northResolutionM) };
+}
+
+/** A number without its sign is truncated towards zero; the negative zero of `-0.4` cut to whole degrees keeps its side. */
+function farther(value: number, resolution: number): number {
+  return value + (value < 0 || Object.is(value, -0) ? -resolution : resolution) / 2;
 }

@@ -1,4 +1,4 @@
-import type { Covariance } from '../density/types.js';
+import type { Covariance, HalfAxes } from '../density/types.js';
 import type { Crs, DatumShift } from '../geodesy/types.js';
 import type { RawPlace } from './rawRecord.js';
 
@@ -8,6 +8,8 @@ export interface FramePlace {
   readonly y: number;
   /** Covariance of the rounding of the digits given, m². */
   readonly rounding: Covariance;
+  /** Half a digit along each of the coordinates' own axes, frame metres. */
+  readonly halfDigits: HalfAxes;
   /** Rounding along the axes of the coordinates as given, metres, one σ. */
   readonly roundingEastM: number;
   readonly roundingNorthM: number;
@@ -50,9 +52,14 @@ export function framePlace(place: RawPlace, ways: { readonly crs: Crs | null; re
       alongEast[0] * alongEast[1] + alongNorth[0] * alongNorth[1],
       alongEast[1] ** 2 + alongNorth[1] ** 2,
     ],
+    halfDigits: [scaled(alongEast, Math.sqrt(3)), scaled(alongNorth, Math.sqrt(3))],
     roundingEastM: Math.hypot(...alongEast), roundingNorthM: Math.hypot(...alongNorth),
     shift: moved.shift, sdM: moved.sdM, sharedSdM: moved.sharedSdM,
   };
+}
+
+function scaled([east, north]: readonly [number, number], factor: number): [number, number] {
+  return [east * factor, north * factor];
 }
 
 /** One σ of a uniform digit as a vector in the frame: the difference of two places, scaled to one digit, over √12. */

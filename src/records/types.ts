@@ -1,4 +1,5 @@
 import type { Datum } from '../geodesy/types.js';
+import type { EllipseExcess } from '../density/region95.js';
 import type { Density } from '../density/types.js';
 
 /** A historic record (permit, map point) that has become a place with an error. Metres in the survey's frame. */
@@ -11,10 +12,15 @@ export interface WellRecord {
   readonly x: number;
   readonly y: number;
   readonly density: Density;
-  /** Half-axes of the 95 % ellipse (2.4477 σ for a Gaussian) of the density without its blunder share. */
+  /**
+   * Half-axes of an ellipse round the smallest region that holds 95 % of the density without its blunder share: 2.4477 σ
+   * for a Gaussian, where it is that region.
+   */
   readonly semiMajM: number;
   readonly semiMinM: number;
   readonly azimDeg: number;
+  /** By how much that ellipse is more than the region; absent where nobody has worked it out. */
+  readonly excess?: EllipseExcess;
   /** Per axis, root mean square of both. */
   readonly posSdM: number;
   /** `unknown` where the density is a mixture over datums. */
