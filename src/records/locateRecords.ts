@@ -1,3 +1,4 @@
+import { noShapes, type KnownShapes } from '../density/drawnEllipse.js';
 import { UserError, type ComplaintCode } from '../errors.js';
 import type { Site } from '../site/types.js';
 import { US_SURVEY_FOOT_M } from '../units.js';
@@ -15,6 +16,8 @@ export const LOCATE_DEFAULTS = Object.freeze({
   maxDistanceM: 10_000,
   /** Blunders are spread over a disc of a mile: a section off, a wrong quarter. */
   blunderRadiusM: 5280 * US_SURVEY_FOOT_M,
+  /** Rows that are held at a time while records are located; it changes no result. */
+  batchRows: 10_000,
 });
 export type LocateOptions = { readonly [K in keyof typeof LOCATE_DEFAULTS]?: number };
 
@@ -25,6 +28,9 @@ const SHARED_SLIP_FROM = 2;
 
 type Outcome = { readonly record: WellRecord } | { readonly fault: Fault; readonly slip: Slip | null };
 
+/** What is remembered of a record that was placed: enough to tell its like again. */
+type Remembered = Pick<WellRecord, 'source' | 'row' | 'x' | 'y'>;
+
 /**
  * Historic records as places with error in the survey's frame (metres).
  *
@@ -32,32 +38,57 @@ type Outcome = { readonly record: WellRecord } | { readonly fault: Fault; readon
  * value and what to do; a mistake in a file as a whole is a UserError. Records of all files together have distinct ids: a
  * repeated id becomes `…#2`, `…#3` with a note; a row that repeats both id and place of an earlier one is unplaced.
  */
-export function locateRecords(sources: readonly RecordSource[], site: Site, options: LocateOptions = {}): Records {
-  const settings = { ...LOCATE_DEFAULTS, ...options };
+export function locateRecords(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Records {
   const placed: WellRecord[] = [];
   const unplaced: UnplacedRecord[] = [];
-  const byId = new Map<string, WellRecord[]>();
-  for (const source of sources) {
-    const raws = readRawRecords(source);
-    const outcomes = raws.map((raw) => outcomeOf(raw, { source, site, ...settings }));
-    refuseSharedSlip(outcomes, source);
-    outcomes.forEach((outcome, i) => {
-      const raw = raws[i]!;
-      const same = byId.get(raw.recordId) ?? [];
-      const fault = 'fault' in outcome ? outcome.fault : repeatFault(outcome.record, same, raw);
-      if (fault) {
-        const { column, value, problem, advice } = fault;
-        unplaced.push({ recordId: raw.recordId, source: source.name, row: raw.row, column, value, problem, advice });
-      } else if ('record' in outcome) {
-        placed.push(numbered(outcome.record, same));
-        byId.set(raw.recordId, [...same, outcome.record]);
-      }
-    });
+  for (const batch of locateInBatches(sources, site, options)) {
+    for (const record of batch.placed) placed.push(record);
+    for (const record of batch.unplaced) unplaced.push(record);
   }
   return { placed, unplaced };
 }
 
-function outcomeOf(raw: RawRecord, options: { source: RecordSource; site: Site } & Required<LocateOptions>): Outcome {
+/**
+ * The same in batches of `batchRows` rows, in their order: what is held at a time grows with the batch. Of earlier rows only
+ * id and place are remembered. A slip that a whole file shares is known, and thrown, at the file's end.
+ */
+export function* locateInBatches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Generator<Records> {
+  const settings = { ...LOCATE_DEFAULTS, ...options };
+  const byId = new Map<string, Remembered[]>();
+  for (const source of sources) {
+    const slips = new SharedSlip();
+    const shapes = noShapes();
+    let batch = emptyBatch();
+    let rows = 0;
+    for (const raw of readRawRecords(source)) {
+      const outcome = outcomeOf(raw, { source, site, shapes, ...settings });
+      slips.count(outcome);
+      const same = byId.get(raw.recordId);
+      const fault = 'fault' in outcome ? outcome.fault : repeatFault(outcome.record, same, raw);
+      if (fault) {
+        const { column, value, problem, advice } = fault;
+        batch.unplaced.push({ recordId: raw.recordId, source: source.name, row: raw.row, column, value, problem, advice });
+      } else if ('record' in outcome) {
+        const { x, y, row } = outcome.record;
+        batch.placed.push(numbered(outcome.record, same));
+        const remembered = { source: source.name, row, x, y };
+        if (same) same.push(remembered); else byId.set(raw.recordId, [remembered]);
+      }
+      if (++rows % settings.batchRows === 0) {
+        yield batch;
+        batch = emptyBatch();
+      }
+    }
+    slips.refuse(source);
+    if (batch.placed.length + batch.unplaced.length > 0) yield batch;
+  }
+}
+
+function emptyBatch(): { placed: WellRecord[]; unplaced: UnplacedRecord[] } {
+  return { placed: [], unplaced: [] };
+}
+
+function outcomeOf(raw: RawRecord, options: { source: RecordSource; site: Site; shapes: KnownShapes } & Required<LocateOptions>): Outcome {
   const { place } = raw;
   if (isFault(place)) return { fault: place, slip: null };
   if (raw.fault) return { fault: raw.fault, slip: null };
@@ -68,11 +99,27 @@ function outcomeOf(raw: RawRecord, options: { source: RecordSource; site: Site }
 }
 
 /** A file in which every row with coordinates has the same slip is described wrongly as a whole. */
-function refuseSharedSlip(outcomes: readonly Outcome[], source: RecordSource): void {
-  const far = outcomes.filter((outcome) => 'fault' in outcome && outcome.slip !== null) as Array<{ slip: Slip }>;
-  const kinds = new Set(far.map(({ slip }) => slip.kind));
-  if (outcomes.some((outcome) => 'record' in outcome) || far.length < SHARED_SLIP_FROM || kinds.size !== 1) return;
-  const { kind, words } = far[0]!.slip;
+class SharedSlip {
+  #placed = false;
+  #far = 0;
+  readonly #kinds = new Map<Slip['kind'], Slip>();
+
+  count(outcome: Outcome): void {
+    if ('record' in outcome) this.#placed = true;
+    else if (outcome.slip !== null) {
+      this.#far++;
+      this.#kinds.set(outcome.slip.kind, outcome.slip);
+    }
+  }
+
+  refuse(source: RecordSource): void {
+    if (this.#placed || this.#far < SHARED_SLIP_FROM || this.#kinds.size !== 1) return;
+    const [{ kind, words }] = [...this.#kinds.values()] as [Slip];
+    throw sharedSlip(source, { kind, words, rows: this.#far });
+  }
+}
+
+function sharedSlip(source: RecordSource, { kind, words, rows }: Pick<Slip, 'kind' | 'words'> & { rows: number }): UserError {
   const swapped = kind === 'swapped' || kind === 'swapped_sign';
   const code: ComplaintCode = swapped ? 'coordinates_swapped' : 'position_invalid';
   const advice = {
@@ -83,14 +130,14 @@ function refuseSharedSlip(outcomes: readonly Outcome[], source: RecordSource): v
     metres: 'state a CRS whose unit is the metre',
     feet: 'state a CRS whose unit is the foot',
   }[kind];
-  throw new UserError({
-    code, where: source.name, found: `no row within reach of the parcel, though ${far.length} would be with ${words}`,
+  return new UserError({
+    code, where: source.name, found: `no row within reach of the parcel, though ${rows} would be with ${words}`,
     wanted: 'positions near the parcel', advice,
   });
 }
 
-function repeatFault(record: WellRecord, same: readonly WellRecord[], raw: RawRecord): Fault | null {
-  const twin = same.find((other) => Math.hypot(other.x - record.x, other.y - record.y) < SAME_PLACE_M);
+function repeatFault(record: WellRecord, same: readonly Remembered[] | undefined, raw: RawRecord): Fault | null {
+  const twin = same?.find((other) => Math.hypot(other.x - record.x, other.y - record.y) < SAME_PLACE_M);
   if (!twin) return null;
   return {
     column: raw.coordinates.columns, value: raw.coordinates.value,
@@ -98,8 +145,8 @@ function repeatFault(record: WellRecord, same: readonly WellRecord[], raw: RawRe
   };
 }
 
-function numbered(record: WellRecord, same: readonly WellRecord[]): WellRecord {
-  if (same.length === 0) return record;
+function numbered(record: WellRecord, same: readonly Remembered[] | undefined): WellRecord {
+  if (!same) return record;
   const others = same.map(({ source, row }) => `${source}, row ${row}`).join('; ');
   const note = `id also in ${others}, elsewhere: taken as a well of its own; if it is the same well, keep the better row`;
   return { ...record, recordId: `${record.recordId}#${same.length + 1}`, note: [record.note, note].filter((text) => text !== '').join('; ') };
