@@ -5,6 +5,10 @@ import { readTiffDirectories, type ReadDirectory, type ReadTiff } from './tiffDi
 const NEW_SUBFILE_TYPE = 254;
 const IMAGE_WIDTH = 256;
 const IMAGE_LENGTH = 257;
+const BITS_PER_SAMPLE = 258;
+const COMPRESSION = 259;
+const NOT_COMPRESSED = 1;
+const PHOTOMETRIC = 262;
 const STRIP_OFFSETS = 273;
 const SAMPLES_PER_PIXEL = 277;
 const PLANAR_CONFIGURATION = 284;
@@ -12,6 +16,7 @@ const TILE_WIDTH = 322;
 const TILE_LENGTH = 323;
 const TILE_OFFSETS = 324;
 const TILE_BYTE_COUNTS = 325;
+const SAMPLE_FORMAT = 339;
 const MODEL_PIXEL_SCALE = 33550;
 const MODEL_TIEPOINT = 33922;
 const GEO_KEY_DIRECTORY = 34735;
@@ -41,8 +46,8 @@ interface Image {
 
 /**
  * Violations of the Cloud-Optimised GeoTIFF standard in a file, as sentences that begin with the requirement's name;
- * empty where it passes. Also checked: the two recommendations that make the file fast to read (order of directories
- * and data; tile sides a power of two), and what the file's ghost area promises. A grid that fits one tile, or that is
+ * empty where it passes. Also checked: the recommendations that make the file fast to read (order of directories and data;
+ * tile sides equal and a power of two; compression), and what the file's ghost area promises. A grid that fits one tile, or that is
  * one cell thin, needs no overview: it cannot be made smaller in any useful way. HTTP range requests are the server's.
  * Source: OGC 21-026, version 1.0, clauses 7 and 8.
  */
@@ -55,10 +60,13 @@ export function checkCog(bytes: Uint8Array): string[] {
   violations.push(
     ...images.flatMap((image) => checkTiling(image, bytes.length)),
     ...checkOverviews(images),
+    ...checkSameness(images),
     ...checkGeoreference(images),
     ...checkSteps(images),
-    ...images.flatMap(checkTileSides),
+    ...images.flatMap((image) => checkTileSides(image, images[0]!)),
+    ...images.filter((image) => one(image.directory, COMPRESSION, NOT_COMPRESSED) === NOT_COMPRESSED).map((image) => `recommendation rec-compression: ${image.name} is not compressed`),
     ...checkOrder(tiff, images),
+    ...checkOverlap(images),
     ...checkGhostArea(bytes, tiff.big, images.map((image) => ({ ...image, directoryAt: image.directory.offset }))),
   );
   return violations;
@@ -99,9 +107,35 @@ function checkTiling(image: Image, fileBytes: number): string[] {
   if (image.offsets.length !== wanted || image.byteCounts.length !== wanted) {
     found.push(say(`has ${image.offsets.length} tile offsets and ${image.byteCounts.length} tile sizes for ${wanted} tiles`));
   }
-  const outside = image.offsets.findIndex((offset, i) => offset + (image.byteCounts[i] ?? 0) > fileBytes);
+  const outside = image.offsets.findIndex((offset, i) => !(offset >= 0 && offset + (image.byteCounts[i] ?? 0) <= fileBytes));
   if (outside >= 0) found.push(say(`has tile ${outside} outside the file`));
+  const half = image.offsets.findIndex((offset, i) => (offset > 0) !== ((image.byteCounts[i] ?? 0) > 0));
+  if (half >= 0) found.push(say(`has tile ${half} with a place and no size, or a size and no place`));
   return found;
+}
+
+/** Tiles that lie over each other were never written so: one of them has been overwritten. The same tile twice is a saving that some writers make. */
+function checkOverlap(images: readonly Image[]): string[] {
+  const tiles = images.flatMap(({ name, offsets, byteCounts }) => offsets.map((at, tile) => ({ name, tile, at, end: at + (byteCounts[tile] ?? 0) })))
+    .filter(({ at }) => at > 0).toSorted((a, b) => a.at - b.at);
+  const over = tiles.findIndex(({ at, end }, i) => i > 0 && at < tiles[i - 1]!.end && (at !== tiles[i - 1]!.at || end !== tiles[i - 1]!.end));
+  if (over < 0) return [];
+  const [before, after] = [tiles[over - 1]!, tiles[over]!];
+  return [`requirement use-geotiff: tile ${after.tile} of ${after.name} lies over tile ${before.tile} of ${before.name}`];
+}
+
+/** What has to be the same in a pyramid: an overview shows the same values, only fewer of them. */
+const SAME_IN_OVERVIEWS: ReadonlyArray<readonly [id: number, what: string]> = [
+  [BITS_PER_SAMPLE, 'bits a sample'], [SAMPLES_PER_PIXEL, 'samples a cell'], [SAMPLE_FORMAT, 'sample format'], [PHOTOMETRIC, 'photometric interpretation'],
+];
+
+function checkSameness(images: readonly Image[]): string[] {
+  let full: Image | undefined;
+  return images.flatMap((image) => {
+    if (!image.reduced) full = image;
+    const text = (of: Image, id: number): string => (of.directory.tags.get(id)?.values ?? []).join();
+    return SAME_IN_OVERVIEWS.filter(([id]) => full && text(full, id) !== text(image, id)).map(([, what]) => `requirement overviews: ${image.name} has another ${what} than its full image`);
+  });
 }
 
 function checkOverviews(images: readonly Image[]): string[] {
@@ -127,7 +161,7 @@ function checkGeoreference(images: readonly Image[]): string[] {
     const scale = tags.get(MODEL_PIXEL_SCALE)?.values;
     const keys = tags.get(GEO_KEY_DIRECTORY)?.values;
     if (image.reduced) {
-      const moved = tie && origin && Math.max(Math.abs(tie[3]! - origin[0]!), Math.abs(tie[4]! - origin[1]!));
+      const moved = tie && origin && Math.max(Math.abs((tie[3] ?? NaN) - origin[0]!), Math.abs((tie[4] ?? NaN) - origin[1]!));
       if (moved !== undefined && !(moved <= SAME_ORIGIN_CELLS * (origin?.[2] ?? 0))) {
         found.push(`requirement point-of-origin: ${image.name} does not begin where the full image does`);
       }
@@ -176,11 +210,12 @@ function checkSteps(images: readonly Image[]): string[] {
   return found;
 }
 
-function checkTileSides(image: Image): string[] {
+function checkTileSides(image: Image, first: Image): string[] {
   const found: string[] = [];
   if (image.tileWidth !== image.tileHeight) found.push(`requirement small-sizes: ${image.name} has tiles that are not square`);
   if (Math.max(image.tileWidth, image.tileHeight) > LARGEST_TILE) found.push(`requirement small-sizes: ${image.name} has tiles wider than ${LARGEST_TILE}`);
   if (Math.log2(image.tileWidth) % 1 !== 0) found.push(`recommendation size-and-numbers: ${image.name} has tiles whose side is no power of two`);
+  if (image.tileWidth !== first.tileWidth || image.tileHeight !== first.tileHeight) found.push(`recommendation size-and-numbers: ${image.name} has tiles of another size than ${first.name}`);
   return found;
 }
 
@@ -188,14 +223,14 @@ function checkOrder({ directories }: ReadTiff, images: readonly Image[]): string
   const found: string[] = [];
   const say = (what: string): void => void found.push(`recommendation ifd-order: ${what}`);
   if (directories.some((directory, i) => i > 0 && directory.offset < directories[i - 1]!.offset)) say('the directories do not lie in the order of their chain');
-  const start = (image: Image): number => Math.min(...image.offsets.filter((offset) => offset > 0), Infinity);
-  const firstTile = Math.min(...images.map(start));
+  const start = (image: Image): number => image.offsets.reduce((first, offset) => (offset > 0 ? Math.min(first, offset) : first), Infinity);
+  const firstTile = images.reduce((first, image) => Math.min(first, start(image)), Infinity);
   const ends = directories.flatMap((directory) => [directory.offset, ...[...directory.tags.values()].map((tag) => tag.end)]);
-  if (Math.max(...ends) > firstTile) say('a directory or its values lie behind tile data');
+  if (ends.reduce((last, end) => Math.max(last, end), 0) > firstTile) say('a directory or its values lie behind tile data');
   for (const [index, image] of images.entries()) {
     const before = images[index - 1];
     if (image.reduced && before && start(image) > start(before)) say(`the tiles of ${image.name} lie behind those of the larger image before it`);
-    const last = Math.max(...image.offsets, 0);
+    const last = image.offsets.reduce((most, offset) => Math.max(most, offset), 0);
     if (image.reduced && before && last > start(before)) say(`tiles of ${image.name} lie among those of the image before it`);
   }
   return [...new Set(found)];

@@ -55,7 +55,7 @@ function addUp(bytes: Uint8Array, { rowSamples, width, interleaved }: Row): void
     return;
   }
   const View = width === 4 ? Uint32Array : width === 2 ? Uint16Array : Uint8Array;
-  const words = new View(bytes.buffer, bytes.byteOffset, count);
+  const words = new View(bytes.buffer as ArrayBuffer, bytes.byteOffset, count);
   for (let row = 0; row < count; row += rowSamples) {
     for (let i = row + interleaved; i < row + rowSamples; i += 1) words[i]! += words[i - interleaved]!;
   }

@@ -31,7 +31,7 @@ interface TilePlace {
 export async function readTiles(
   image: TiffImage, window: CellWindow, how: { source: ByteSource; inflate: Inflate; where: string; take(value: number, to: number): void },
 ): Promise<void> {
-  for (const group of joined(touched(image, window))) {
+  for (const group of joined(touched(image, window, how.where))) {
     const start = group[0]!.offset;
     const last = group.at(-1)!;
     const length = last.offset + last.bytes - start;
@@ -49,13 +49,15 @@ function broken(where: string, found: string): UserError {
   return new UserError({ code: 'grid_file_invalid', where, found, wanted: 'a GeoTIFF that is whole', advice: 'fetch or export the file again' });
 }
 
-function touched(image: TiffImage, { column, row, width, height }: CellWindow): TilePlace[] {
+function touched(image: TiffImage, { column, row, width, height }: CellWindow, where: string): TilePlace[] {
   const places: TilePlace[] = [];
   for (let down = Math.floor(row / image.tileHeight); down * image.tileHeight < row + height; down += 1) {
     for (let across = Math.floor(column / image.tileWidth); across * image.tileWidth < column + width; across += 1) {
       const index = down * image.across + across;
-      const bytes = image.byteCounts[index]!;
-      if (bytes > 0 && image.offsets[index]! > 0) places.push({ index, offset: image.offsets[index]!, bytes });
+      const [offset, bytes] = [image.offsets[index]!, image.byteCounts[index]!];
+      if (offset === 0 && bytes === 0) continue;
+      if (!(Number.isSafeInteger(offset) && Number.isSafeInteger(bytes) && offset > 0 && bytes > 0)) throw broken(where, `tile ${index} of ${bytes} bytes at byte ${offset}`);
+      places.push({ index, offset, bytes });
     }
   }
   return places.toSorted((a, b) => a.offset - b.offset);

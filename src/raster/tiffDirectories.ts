@@ -52,6 +52,8 @@ const FETCH_BYTES = 1 << 15;
 /** A header of this size indexes ten million tiles; a file that asks for more is broken. */
 const MOST_HEADER_BYTES = 1 << 28;
 
+const LARGER_THAN_FILE = 'its directories and their values together are larger than the file';
+
 /** Bytes of a file, of which some may not be here yet: `at` throws MissingBytes then. */
 interface Held {
   readonly size: number;
@@ -132,7 +134,7 @@ function parse(held: Held): ReadTiff {
     const next = offset + form.count + entries * form.entry;
     room -= entries * form.entry;
     if (next + form.word > held.size || room < 0) {
-      faults.push(`the directory at byte ${offset} reaches outside the file`);
+      faults.push(room < 0 ? LARGER_THAN_FILE : `the directory at byte ${offset} reaches outside the file`);
       break;
     }
     const view = held.at(offset + form.count, entries * form.entry + form.word);
@@ -152,7 +154,12 @@ function parse(held: Held): ReadTiff {
       const inside = length <= form.word;
       const valuesAt = inside ? at + 4 + form.word : word(view, at + 4 + form.word);
       room -= inside ? 0 : length;
-      if (!inside && (valuesAt + length > held.size || room < 0)) {
+      if (room < 0) {
+        faults.push(LARGER_THAN_FILE);
+        break;
+      }
+      if (!inside && valuesAt + length > held.size) {
+        room += length;
         faults.push(`the values of tag ${id} of the directory at byte ${offset} lie outside the file`);
         continue;
       }

@@ -16,9 +16,9 @@ export interface CogOptions {
   /** The grid's CRS; the file is in the CRS's own unit. */
   readonly crs: Crs;
   /** Bytes to a zlib stream (RFC 1950). This or `zstd`. */
-  readonly deflate?: Compress;
+  readonly deflate?: Compress | undefined;
   /** Bytes to a Zstandard frame (RFC 8878). GDAL since 2.3 reads it; many other readers do not. */
-  readonly zstd?: Compress;
+  readonly zstd?: Compress | undefined;
   /** What the values are, in a few words. */
   readonly description?: string;
   /** Unit of the values, such as `nT`. */

@@ -40,3 +40,24 @@ export function firstDifference(a: ArrayLike<number>, b: ArrayLike<number>): num
   for (let i = 0; i < a.length; i += 1) if (a[i] !== b[i] && !(Number.isNaN(a[i]) && Number.isNaN(b[i]))) return i;
   return -1;
 }
+
+/** A Zstandard frame whose blocks are kept as they are. Source: RFC 8878, 3.1.1. */
+export function zstdFrame(bytes: Uint8Array): Uint8Array {
+  const MOST = 1 << 17;
+  const blocks = Math.max(1, Math.ceil(bytes.length / MOST));
+  const frame = new Uint8Array(4 + 1 + 4 + blocks * 3 + bytes.length);
+  const view = new DataView(frame.buffer);
+  view.setUint32(0, 0xfd2fb528, true);
+  // Single segment, content size in four bytes, no checksum.
+  view.setUint8(4, 0b1010_0000);
+  view.setUint32(5, bytes.length, true);
+  let at = 9;
+  for (let block = 0; block < blocks; block += 1) {
+    const part = bytes.subarray(block * MOST, (block + 1) * MOST);
+    const head = (part.length << 3) | (block === blocks - 1 ? 1 : 0);
+    frame.set([head & 255, (head >> 8) & 255, head >> 16], at);
+    frame.set(part, at + 3);
+    at += 3 + part.length;
+  }
+  return frame;
+}
