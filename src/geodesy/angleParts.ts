@@ -4,6 +4,8 @@ export const LIMIT_DEG: Readonly<Record<Axis, number>> = { longitude: 180, latit
 const PART_DEG = [1, 1 / 60, 1 / 3600] as const;
 const PART_NAMES = ['degrees', 'minutes', 'seconds'] as const;
 
+const POWERS = Array.from({ length: 20 }, (_, decimals) => Number(`1e-${decimals}`));
+
 /** What is wrong with the parts of an angle, and which of them; null where nothing is. */
 export interface PartFault {
   readonly part: number;
@@ -26,7 +28,7 @@ export function angleFromParts(parts: readonly string[], axis: Axis | null): Par
   if (!(deg <= limit)) return { part: 0, wanted: `${axis === null ? 'an angle' : `a ${axis}`} of at most ${limit} degrees` };
   const point = parts[last]!.indexOf('.');
   const decimals = point < 0 ? 0 : parts[last]!.length - point - 1;
-  return { deg, resolutionDeg: PART_DEG[last]! * Number(`1e-${decimals}`) };
+  return { deg, resolutionDeg: PART_DEG[last]! * (POWERS[decimals] ?? Number(`1e-${decimals}`)) };
 }
 
 /**

@@ -1,5 +1,6 @@
 import type { AliquotStep, Side } from '../../geodesy/sections/types.js';
 import type { Cursor } from './cursor.js';
+import { isSectionTwo } from './sectionTwo.js';
 import { AND, HALF, isNorthSouth, OF, QUARTER, quarterOf, sideOf, THE } from './words.js';
 
 interface Unit {
@@ -31,7 +32,7 @@ export function readAliquot(cursor: Cursor): AliquotStep[] {
     if (written.length > MOST_STEPS) throw cursor.refuse(`a part of at most ${MOST_STEPS} steps`, { at: first });
     cursor.at += unit.count;
     const gap = connector(cursor);
-    if (gap === null) return written.reverse();
+    if (gap === null) return written.toReversed();
     cursor.at += gap;
   }
 }
@@ -90,7 +91,14 @@ export function isQuarterRun(word: string): boolean {
 
 function halfAt(cursor: Cursor, ahead: number, side: Side): Unit | null {
   const count = markerLength(cursor, ahead + 1, 2);
-  return count === 0 ? null : { steps: [`${side}2`], count: 1 + count };
+  return count === 0 || isTwoOfTownship(cursor, ahead) ? null : { steps: [`${side}2`], count: 1 + count };
+}
+
+/** `S2` before another part is a half whatever else the text says. */
+function isTwoOfTownship(cursor: Cursor, ahead: number): boolean {
+  if (cursor.peek(ahead).text !== 'S' || cursor.peek(ahead + 1).text !== '2') return false;
+  const gap = cursor.isWord(OF, ahead + 2) ? (cursor.isWord(THE, ahead + 3) ? 4 : 3) : cursor.isMark('-', ahead + 2) ? 3 : 2;
+  return !startsAliquot(cursor, ahead + gap) && isSectionTwo(cursor, ahead);
 }
 
 /** `north east quarter`, where only "quarter" makes it one part and not two sides. */

@@ -24,6 +24,8 @@ const MARKS = ['°', "'", '"'];
 const PART_NAMES = ['degrees', 'minutes', 'seconds'] as const;
 /** An angle has at most three parts, so two of them in a row have six. */
 const MOST_NUMBERS = 6;
+/** A double shows 17 digits at most; what is longer is no reading. */
+const LONGEST_NUMBER = 20;
 /** No angle is larger; a bare number that is has its digits run together. */
 const LARGEST_DEG = 180;
 
@@ -77,7 +79,7 @@ export function readAngle(cursor: Cursor, expected: Axis | null): AngleText {
   }
   const angle = angleFromParts(packed ?? parts, axis);
   if ('wanted' in angle) throw cursor.refuse(angle.wanted, { at: at[packed ? 0 : angle.part]! });
-  return { ...angle, axis, letter, sign, first };
+  return { deg: angle.deg, resolutionDeg: angle.resolutionDeg, axis, letter, sign, first };
 }
 
 /** A letter before a number. */
@@ -135,11 +137,13 @@ function readParts(cursor: Cursor): Parts {
 function partText(cursor: Cursor, token: NumberToken): string {
   const number = decimalNumber(token);
   if (number === null) throw cursor.refuse('a number with at most one comma or point for its decimals');
+  if (number.text.length > LONGEST_NUMBER) throw cursor.refuse(`a number of at most ${LONGEST_NUMBER} characters`);
   return number.text;
 }
 
 /** Of numbers that only spaces keep apart, how many belong to the angle that begins here: all, or half of four or six. */
 function spacedShare(cursor: Cursor): number {
+  if (Number(cursor.peek().text) > LARGEST_DEG) return 1;
   let count = 1;
   while (cursor.isNumber(count) && cursor.peek(count).spaced && !decimals(cursor.peek(count - 1))) count++;
   if (count === 1) return 1;

@@ -22,6 +22,11 @@ export class Cursor {
     return token;
   }
 
+  /** Whether the token before the cursor is one of these kinds. */
+  follows(...kinds: ReadonlyArray<Token['kind']>): boolean {
+    return this.at > 0 && kinds.includes(this.tokens[this.at - 1]!.kind);
+  }
+
   get atEnd(): boolean {
     return this.peek().kind === 'end';
   }
@@ -90,7 +95,8 @@ export function groupedNumber(token: NumberToken): { value: number; resolution: 
 export function decimalNumber(token: NumberToken): { value: number; resolution: number; text: string } | null {
   if (token.form === 'thousands') return null;
   const text = token.text.replace(',', '.');
-  return { ...decimal(text), text };
+  const { value, resolution } = decimal(text);
+  return { value, resolution, text };
 }
 
 function decimal(text: string): { value: number; resolution: number } {
@@ -98,6 +104,8 @@ function decimal(text: string): { value: number; resolution: number } {
   return { value: Number(text), resolution: point < 0 ? 1 : powerOfTen(text.length - point - 1) };
 }
 
+const POWERS = Array.from({ length: 20 }, (_, decimals) => Number(`1e-${decimals}`));
+
 function powerOfTen(decimals: number): number {
-  return decimals === 0 ? 1 : Number(`1e-${decimals}`);
+  return POWERS[decimals] ?? Number(`1e-${decimals}`);
 }

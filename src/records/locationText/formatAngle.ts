@@ -1,5 +1,5 @@
-/** Decimals that an angle is written with at most; more digits than a double holds say nothing. */
-const MOST_DECIMALS = 12;
+/** Decimals that an angle is written with at most, as many as are read. */
+const MOST_DECIMALS = 20;
 const AGREE = 1e-6;
 
 /** Degrees, without sign, as their last digit has them: to 1/3600 `39°22'30"`, to 1/600 `39°22.5'`, to 0.0001 `39.3750`. */

@@ -3,6 +3,8 @@ import { LENGTH_UNIT_M, type Length } from './lengths.js';
 type UnitName = keyof typeof LENGTH_UNIT_M;
 const UNITS: readonly UnitName[] = ['ft', 'rod', 'chain', 'link', 'm', 'mi', 'yd', 'in'];
 const WORDS: Readonly<Record<UnitName, string>> = { ft: 'ft', rod: 'rods', chain: 'chains', link: 'links', m: 'm', mi: 'miles', yd: 'yards', in: 'inches' };
+/** Units that a smaller one may stand behind: 19 rods 5 ft is no whole number of feet. */
+const LARGER: readonly UnitName[] = ['rod', 'chain', 'mi', 'yd', 'ft', 'link'];
 const BOTTOMS = [2, 3, 4, 8, 16];
 /** Decimals that a length is written with at most; a micrometre. */
 const MOST_DECIMALS = 6;
@@ -14,6 +16,15 @@ export function formatLength({ m, resolutionM }: Length): string {
   for (const unit of UNITS) {
     const number = numberIn(m / LENGTH_UNIT_M[unit], resolutionM / LENGTH_UNIT_M[unit]);
     if (number !== null) return `${number} ${WORDS[unit]}`;
+  }
+  for (const unit of UNITS) {
+    for (const larger of LARGER) {
+      const whole = Math.floor(m / LENGTH_UNIT_M[larger] + AGREE);
+      if (whole === 0 || LENGTH_UNIT_M[larger] <= LENGTH_UNIT_M[unit] || unit === 'm') continue;
+      const rest = Math.max(0, m - whole * LENGTH_UNIT_M[larger]);
+      const number = numberIn(rest / LENGTH_UNIT_M[unit], resolutionM / LENGTH_UNIT_M[unit]);
+      if (number !== null) return `${whole} ${WORDS[larger]} ${number} ${WORDS[unit]}`;
+    }
   }
   throw new RangeError(`a length of ${m} m to ${resolutionM} m is in no unit of land records`);
 }

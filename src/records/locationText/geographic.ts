@@ -13,7 +13,9 @@ export function readPair(cursor: Cursor): Pair {
   if (!startsAngle(cursor)) throw cursor.refuse(first.axis === null ? 'a latitude and a longitude' : `a ${other(first.axis)} beside the ${first.axis}`);
   const second = readAngle(cursor, null);
   const [lat, lon] = inOrder(cursor, first, second);
-  return { ...latitude(cursor, lat), ...longitude(cursor, lon) };
+  const { latDeg, latResolutionDeg } = latitude(cursor, lat);
+  const { lonDeg, lonResolutionDeg, lonSide } = longitude(cursor, lon);
+  return { lonDeg, latDeg, lonResolutionDeg, latResolutionDeg, lonSide };
 }
 
 const other = (axis: Axis): Axis => (axis === 'latitude' ? 'longitude' : 'latitude');

@@ -1,4 +1,4 @@
-import { FOOT_M, US_SURVEY_FOOT_M } from '../../units.js';
+import { US_SURVEY_FOOT_M } from '../../units.js';
 import { groupedNumber, type Cursor } from './cursor.js';
 import { isNumberWord, spelledNumber } from './spelledNumber.js';
 import type { LengthUnitName } from './types.js';
@@ -24,8 +24,6 @@ const UNIT_WORDS: ReadonlyMap<string, number> = new Map([
   ...['YD', 'YDS', 'YARD', 'YARDS'].map((word) => [word, LENGTH_UNIT_M.yd] as const),
   ...['MI', 'MILE', 'MILES'].map((word) => [word, LENGTH_UNIT_M.mi] as const),
   ...['M', 'METER', 'METERS', 'METRE', 'METRES'].map((word) => [word, 1] as const),
-  // The international foot is read where the text names it; nobody measured an old call in it.
-  ...['IFT'].map((word) => [word, FOOT_M] as const),
 ]);
 
 interface Unit {
@@ -60,9 +58,14 @@ export function lengthAhead(cursor: Cursor, ahead = 0): { readonly end: number; 
     at += found.count;
     const more: number | null = cursor.isNumber(at) ? numberAhead(cursor, at) : null;
     const smaller = more === null ? null : unitAt(cursor, more);
-    if (smaller === null || smaller.m >= found.m) return { end: at, unit };
+    if (smaller === null || !isSmaller(smaller, found)) return { end: at, unit };
     at = more!;
   }
+}
+
+/** Chains and links, rods and feet, feet and inches make one length; metres and survey units do not. */
+function isSmaller(unit: Unit, than: Unit): boolean {
+  return unit.m < than.m && unit.m !== LENGTH_UNIT_M.m && than.m !== LENGTH_UNIT_M.m;
 }
 
 function numberAhead(cursor: Cursor, ahead: number): number | null {
@@ -90,23 +93,27 @@ function numberAhead(cursor: Cursor, ahead: number): number | null {
 export function readLength(cursor: Cursor, bareUnitM: number | null): Length {
   const first = cursor.peek();
   let total: Length = { m: 0, resolutionM: 0 };
+  let larger: Unit | null = null;
   for (;;) {
+    const at = cursor.peek();
     const { value, resolution } = readNumber(cursor);
     const unit = unitAt(cursor, 0);
     const m = unit?.m ?? bareUnitM;
     if (m === null) throw cursor.refuse('a unit of length: feet, rods, chains, links, miles or metres', { advice: 'write it behind the number, or state the unit of the column' });
+    if (larger !== null && value * m >= larger.m) throw cursor.refuse('a smaller part that does not fill one of the larger unit', { at });
     for (let i = 0; i < (unit?.count ?? 0); i++) cursor.next();
     total = { m: total.m + value * m, resolutionM: resolution * m };
     const more = unit !== null && cursor.isNumber() ? numberAhead(cursor, 0) : null;
     const smaller = more === null ? null : unitAt(cursor, more);
-    if (smaller === null || smaller.m >= m) break;
+    if (unit === null || smaller === null || !isSmaller(smaller, unit)) break;
+    larger = unit;
   }
   if (!(total.m <= LONGEST_M)) throw cursor.refuse('a length that a land record can mean', { at: first });
   return total;
 }
 
-/** Distances in location texts reach across a map at most; anything longer is no distance at all. */
-const LONGEST_M = 200_000;
+/** Distances reach across a map at most, and the sides of a 15-minute map are up to 28 km long. */
+const LONGEST_M = 30_000;
 
 function readNumber(cursor: Cursor): { value: number; resolution: number } {
   const token = cursor.peek();

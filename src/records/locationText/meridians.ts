@@ -8,6 +8,11 @@ const ABBREVIATIONS: Readonly<Record<string, string>> = {
 };
 const ORDINALS: ReadonlySet<string> = new Set(['FIRST', 'SECOND', 'THIRD', 'FOURTH', 'FIFTH', 'SIXTH']);
 const ENDINGS: ReadonlySet<string> = new Set(['PM', 'PMER', 'MERIDIAN', 'MER', 'PRINCIPAL', 'PRIN', 'BM']);
+/** Words that a meridian's name begins with: most words of a location are none, and need not be looked up. */
+const FIRST_WORDS: ReadonlySet<string> = new Set((
+  'FIRST SECOND THIRD FOURTH FIFTH SIXTH BLACK BOISE CHICKASAW CHOCTAW CIMARRON COPPER FAIRBANKS GILA HUMBOLDT HUNTSVILLE INDIAN LOUISIANA MICHIGAN '
+  + 'MONTANA PRINCIPAL MOUNT MT NAVAJO NEW ST SAINT SALT SAN SEWARD TALLAHASSEE UINTAH UINTA UTE WASHINGTON WILLAMETTE WIND KATEEL UMIAT'
+).split(' '));
 /** The longest name has four words: "gila and salt river". */
 const MOST_WORDS = 4;
 
@@ -36,6 +41,7 @@ function codeHere(cursor: Cursor): string | null {
   }
   if (token.text === 'MDB' && cursor.isMark('&', 1)) return joined(cursor, 'M', '21');
   if (token.text === 'SB' && cursor.isMark('&', 1)) return joined(cursor, 'M', '27');
+  if (!FIRST_WORDS.has(token.text)) return null;
   for (let count = MOST_WORDS; count >= 1; count--) {
     const words = wordsAhead(cursor, count);
     if (words === null || ENDINGS.has(words.at(-1)!)) continue;

@@ -69,6 +69,11 @@ function readNext(cursor: Cursor, reading: Reading): void {
     if (token.text.length > 2 && token.text[0] === 'C' && isQuarterRun(token.text.slice(1))) cursor.splitWord(1);
     if (CENTRE.has(cursor.peek().text) && centreAhead(cursor)) return readCentre(cursor, sectionOf(reading, token));
   }
+  // A hyphen glued to a word or number joins it to the next; it is no sign.
+  if (token.kind === 'mark' && token.text === '-' && !token.spaced && cursor.follows('word', 'number', 'fraction')) {
+    cursor.next();
+    return;
+  }
   if (startsCall(cursor)) return readFootage(cursor, sectionOf(reading, token));
   if (startsOffset(cursor)) return readTie(cursor, reading);
   if (startsReference(cursor, draft?.reference ?? {})) return readReference(cursor, sectionOf(reading, token).reference);

@@ -194,7 +194,7 @@ function readBarePair(cursor: Cursor, draft: ProjectedDraft): void {
   const [a, b] = [isLarge(first, UTM_EASTING_M[1]), isLarge(cursor.peek(behind), UTM_EASTING_M[1])];
   if (!isLarge(cursor.peek(behind), PLAINLY_PROJECTED) || a === b) throw cursor.refuse('an easting and a northing that can be told apart', { at: first, advice: 'write E and N beside them' });
   setCoordinate(cursor, draft, a ? 'northing' : 'easting', true);
-  if (behind === 2) cursor.next();
+  cursor.takeMark('/');
   setCoordinate(cursor, draft, a ? 'easting' : 'northing', true);
 }
 

@@ -1,3 +1,4 @@
+import type { UserError } from '../../errors.js';
 import type { Cursor } from './cursor.js';
 
 const UNITS = ['ZERO', 'ONE', 'TWO', 'THREE', 'FOUR', 'FIVE', 'SIX', 'SEVEN', 'EIGHT', 'NINE', 'TEN', 'ELEVEN', 'TWELVE', 'THIRTEEN', 'FOURTEEN', 'FIFTEEN', 'SIXTEEN', 'SEVENTEEN', 'EIGHTEEN', 'NINETEEN'];
@@ -33,15 +34,15 @@ export function spelledNumber(cursor: Cursor): number {
       }
       return thousands + value;
     }
-    const wrong = cursor.refuse('words that make one number, as in six hundred sixty', { at: token, advice: 'write it in digits' });
+    const wrong = (): UserError => cursor.refuse('words that make one number, as in six hundred sixty', { at: token, advice: 'write it in digits' });
     if (word === 1000) {
-      if (thousands > 0 || value === 0) throw wrong;
+      if (thousands > 0 || value === 0) throw wrong();
       [thousands, value, room, scaled] = [value * 1000, 0, 1000, false];
     } else if (word === 100) {
-      if (scaled || value === 0 || value > 99) throw wrong;
+      if (scaled || value === 0 || value > 99) throw wrong();
       [value, room, scaled] = [value * 100, 100, true];
     } else {
-      if (word >= room || (word === 0 && !first)) throw wrong;
+      if (word >= room || (word === 0 && !first)) throw wrong();
       value += word;
       room = word >= 20 ? 10 : 1;
     }

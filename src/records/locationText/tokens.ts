@@ -50,6 +50,10 @@ const SIGNS: Readonly<Record<string, string>> = {
   '\u2044': '/', '\u2215': '/',
 };
 
+/** A comma groups three digits, behind at most three. */
+const GROUP = 3;
+const MOST_LEADING = 3;
+
 const isDigit = (code: number): boolean => code >= 48 && code <= 57;
 const isLetter = (code: number): boolean => (code >= 65 && code <= 90) || (code >= 97 && code <= 122);
 const isSpace = (code: number): boolean =>
@@ -97,11 +101,12 @@ function numeral(text: string, start: number, spaced: boolean): Token {
   let groups = 0;
   // A comma with a digit on both sides belongs to the number; the groups of three tell what it is for.
   if (end > start && text.charCodeAt(end) === 44 && isDigit(text.charCodeAt(end + 1))) {
-    const whole = end - start;
     let at = end;
-    while (text.charCodeAt(at) === 44 && whole <= 3 && digitsEnd(text, at + 1) - at === 4) {
-      at += 4;
-      groups++;
+    if (end - start <= MOST_LEADING) {
+      while (text.charCodeAt(at) === 44 && digitsEnd(text, at + 1) - at === GROUP + 1) {
+        at += GROUP + 1;
+        groups++;
+      }
     }
     if (groups > 0) {
       form = groups === 1 ? 'either' : 'thousands';

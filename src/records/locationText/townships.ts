@@ -1,7 +1,10 @@
 import type { SectionReference } from '../../geodesy/sections/types.js';
+import { startsCall } from './calls.js';
+import { startsOffset } from './corners.js';
 import { wholeNumber, type Cursor } from './cursor.js';
+import { isSectionTwo } from './sectionTwo.js';
 import type { Token } from './tokens.js';
-import { isNorthSouth, LOT, RANGE, SECTION, sideOf, TOWNSHIP } from './words.js';
+import { AND, isNorthSouth, LOT, RANGE, SECTION, sideOf, TOWNSHIP } from './words.js';
 
 type Writable<T> = { -readonly [K in keyof T]: T[K] };
 export type ReferenceDraft = Writable<Partial<SectionReference>>;
@@ -46,6 +49,7 @@ function startsSection(cursor: Cursor, draft: ReferenceDraft): boolean {
   };
   // S12 is section 12 only beside a township; elsewhere it is 12 degrees south, or nothing.
   if (cursor.peek().text === 'S' && cursor.peek().kind === 'word') {
+    if (cursor.peek(1).text === '2' && !cursor.peek(1).spaced) return isSectionTwo(cursor, 0);
     const at = numbered(cursor, 1);
     return at !== null && wholeNumber(cursor.peek(at)) !== null && ((draft.township !== undefined && draft.section === undefined) || township(at + 1));
   }
@@ -58,13 +62,7 @@ function readSection(cursor: Cursor, draft: ReferenceDraft): void {
   if (first.text === 'SECS' || first.text === 'SECTIONS') throw cursor.refuse('one section', { at: first });
   skipNumberSign(cursor);
   setSection(cursor, draft, cursor.next());
-  if ((cursor.isMark('&') || cursor.isMark(',')) && wholeNumber(cursor.peek(1)) !== null && SECTION.has(first.text) && isListed(cursor)) throw cursor.refuse('one section', { at: first });
-}
-
-/** A second bare number behind a section is another section, unless a township, a call or a coordinate begins with it. */
-function isListed(cursor: Cursor): boolean {
-  const after = cursor.peek(2);
-  return after.kind === 'end' || (after.kind === 'mark' && (after.text === ',' || after.text === ';'));
+  if ((cursor.isMark('&') || cursor.isMark(',') || cursor.isWord(AND)) && wholeNumber(cursor.peek(1)) !== null && SECTION.has(first.text) && !moreBegins(cursor, draft)) throw cursor.refuse('one section', { at: first });
 }
 
 function setSection(cursor: Cursor, draft: ReferenceDraft, token: Token): void {
@@ -132,12 +130,17 @@ function readLot(cursor: Cursor, draft: ReferenceDraft): void {
   const suffix = letter.kind === 'word' && letter.text.length === 1 && !letter.spaced ? cursor.next().text : '';
   const lot = `${Number(token.text)}${suffix}`;
   if (draft.lot !== undefined && draft.lot !== lot) throw cursor.refuse('one lot', { at: first });
-  if ((cursor.isMark('&') || cursor.peek().text === 'AND') && (wholeNumber(cursor.peek(1)) !== null && !isCallAhead(cursor))) throw cursor.refuse('one lot', { at: first });
+  if ((cursor.isMark('&') || cursor.isMark(',') || cursor.isWord(AND)) && wholeNumber(cursor.peek(1)) !== null && !moreBegins(cursor, draft)) throw cursor.refuse('one lot', { at: first });
   draft.lot = lot;
 }
 
-/** `Lot 3 and 660 FNL`: the number behind "and" belongs to a call. */
-const isCallAhead = (cursor: Cursor): boolean => cursor.peek(2).kind === 'word' || cursor.isMark("'", 2);
+/** `Lot 3 and 660 FNL`, `Lot 3, 12-5N-3W`: the number behind the "and" or comma begins something else than another lot or section. */
+function moreBegins(cursor: Cursor, draft: ReferenceDraft): boolean {
+  cursor.at++;
+  const begins = startsCall(cursor) || startsOffset(cursor) || isCompact(cursor) || startsSection(cursor, draft) || cursor.isMark('°', 1) || cursor.peek().text.includes('.');
+  cursor.at--;
+  return begins;
+}
 
 interface Compact {
   /** Tokens up to the township's number: 0, or 2 behind a section and its hyphen. */
