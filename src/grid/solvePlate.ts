@@ -111,10 +111,11 @@ interface Work {
 function solveOnGrid(grids: Grids, { l, z, watch }: Work, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
   layHolds(grids, l);
   grids.levels[l]!.right.fill(0);
+  const path = { step: new Float32Array(z.length), image: new Float32Array(z.length) };
   let before = NaN;
   let remaining = Infinity;
   for (let step = 1; step <= maxSteps; step++) {
-    const size = cycle(grids, { l, z, watch });
+    const size = cycle(grids, { l, z, watch }, path);
     const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, size / before || 0));
     // The changes fall about geometrically: what is still to come is their sum.
     remaining = (size * rate) / (1 - rate);
@@ -161,7 +162,7 @@ function spikeWeight(level: PlateLevel, k: number): number {
 }
 
 /** One V-cycle on the surface itself; returns the size of the largest change. */
-function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work): number {
+function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: Path): number {
   const level = levels[l]!;
   const last = l === levels.length - 1;
   let size = sweep(level, pins[l]!, { z, watch });
@@ -176,18 +177,58 @@ function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work): numbe
   correct({ levels, transfers }, l + 1);
   correction.fill(0);
   const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: level.inverseDiagonal, watch });
-  // The correction goes as far as lowers the energy most: the hold only estimates what it costs.
-  const gain = dot(correction, scratch);
-  plateResidual(level, correction, scratch);
-  const cost = -dot(correction, scratch);
-  if (cost > 0) {
-    const length = gain / cost;
-    for (let k = 0; k < z.length; k++) z[k]! += length * correction[k]!;
-    size = Math.max(size, length * most);
-  }
+  const length = advance(level, z, path);
+  size = Math.max(size, length * most);
   sweep(level, pins[l]!, { z, watch });
   return size;
 }
+
+/** The last coarse step and what the operator makes of it; zero before the first. */
+interface Path {
+  readonly step: Float32Array;
+  readonly image: Float32Array;
+}
+
+/**
+ * Moves the surface along the correction and along the last step as far as lowers the energy most (conjugate directions:
+ * what the hold only estimates is made good here). level.scratch holds the residual and is spoilt. Returns the share of
+ * the correction that was taken.
+ */
+function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): number {
+  const { correction, scratch } = level;
+  let gain = 0;
+  let gainStep = 0;
+  for (let k = 0; k < z.length; k++) {
+    gain += correction[k]! * scratch[k]!;
+    gainStep += step[k]! * scratch[k]!;
+  }
+  // The right side of the surface is zero, so this is −A correction.
+  plateResidual(level, correction, scratch);
+  let cost = 0;
+  let cross = 0;
+  let costStep = 0;
+  for (let k = 0; k < z.length; k++) {
+    cost -= correction[k]! * scratch[k]!;
+    cross += correction[k]! * image[k]!;
+    costStep += step[k]! * image[k]!;
+  }
+  if (!(cost > 0)) return 0;
+  const determinant = cost * costStep - cross * cross;
+  // Where both directions are one but for rounding, the correction alone is taken.
+  const both = determinant > PARALLEL * cost * costStep;
+  const length = both ? (gain * costStep - gainStep * cross) / determinant : gain / cost;
+  const again = both ? (gainStep * cost - gain * cross) / determinant : 0;
+  for (let k = 0; k < z.length; k++) {
+    const move = length * correction[k]! + again * step[k]!;
+    step[k] = move;
+    image[k] = again * image[k]! - length * scratch[k]!;
+    z[k]! += move;
+  }
+  return Math.abs(length);
+}
+
+/** Relative determinant below which two directions are taken for one: rounding of 32-bit work space. */
+const PARALLEL = 1e-5;
 
 function sweep(level: PlateLevel, pins: PinRows, { z, watch }: Pick<Work, 'z' | 'watch'>): number {
   const { width, height } = level;
@@ -214,10 +255,4 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   correct({ levels, transfers }, l + 1);
   prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null, watch: null });
   heldSmooth(level, correction);
-}
-
-function dot(a: Float64Array, b: Float32Array): number {
-  let sum = 0;
-  for (let k = 0; k < a.length; k++) sum += a[k]! * b[k]!;
-  return sum;
 }
