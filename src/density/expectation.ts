@@ -22,7 +22,7 @@ const WEIGHTS = [5 / 18, 8 / 18, 5 / 18];
  * ∫ density × grid over the plane, blunders included. A cell's value holds all over the cell; a cell with NaN and all
  * ground outside the grid count 0. Discs and areas are cut exactly at the cells' edges; a Gaussian is integrated over
  * each cell, so one that is smaller than a cell comes out right. A rounded Gaussian is a rectangle with blurred edges;
- * blur is a sum over shifts, within about 1e−3 where the grid does not change from cell to cell.
+ * blur is a sum over shifts, within about 3e−3 where the grid does not change from cell to cell.
  */
 export function expectation(density: Density, grid: Grid): number {
   let sum = 0;

@@ -11,7 +11,7 @@ const CLIP_DECIMALS = 5;
 
 /**
  * Mass of the whole density, blunders included, that lies in an area: exact for Gaussians and areas, within 1e−6 for a
- * rounded Gaussian, within about 1e−3 for an area with blurred edges; a disc counts as a polygon of the same size (within 1e−5).
+ * rounded Gaussian, within about 3e−3 for an area with blurred edges; a disc counts as a polygon of the same size (within 1e−5).
  */
 export function massIn(density: Density, area: Area): number {
   let sum = 0;

@@ -14,7 +14,7 @@ const PANEL = 10;
 
 /**
  * Mass of the whole density, blunders included, that lies in an ellipse: within 1e−7 for Gaussians, rounded or not, exact
- * for areas, within about 1e−3 for areas with blurred edges, within 1e−5 for discs.
+ * for areas, within about 3e−3 for areas with blurred edges, within 1e−5 for discs.
  */
 export function massInEllipse(density: Density, ellipse: Ellipse): number {
   if (!(ellipse.semiMajM > 0 && ellipse.semiMinM > 0)) return 0;
