@@ -45,7 +45,10 @@ export function lineOperator(azimuthDeg: number, options: LineFilterOptions = {}
   };
 }
 
-/** A grid without stripes along its lines, in its unit. Anomalies lose some of their waves across the lines too. NaN stays NaN. */
+/**
+ * A grid without stripes along its lines, in its unit. Anomalies lose some of their waves
+ * across the lines too, and within a few wavelengths of an edge or gap, where a stripe ends, part of it stays. NaN stays NaN.
+ */
 export function lineFilter(grid: Grid, azimuthDeg: number, options: LineFilterOptions = {}): TransformedGrid {
   const { degree, wavelengthM } = { ...LINE_FILTER_DEFAULTS, ...options };
   if (!(degree > 0)) throw new UserError({ code: 'value_invalid', where: 'line filter, degree', found: String(degree), wanted: 'a number above 0' });

@@ -35,8 +35,8 @@ const rad = (deg: number): number => (deg * Math.PI) / 180;
 /**
  * 1/Θ or 1/Θ² with Θ = sin I + i cos I cos(D − θ), θ the azimuth of the wave: from the total-field anomaly to the vertical
  * field (positive down) for a vertical casing, to the anomaly at the pole for iron along the field. The phase is exact at
- * any inclination; below `steadyBelowDeg` the amplitude is that of the steeper field. A plane stays as it is; the mean
- * has the factor of a vertical wave, 1/sin I.
+ * any inclination; below `steadyBelowDeg` the amplitude is that of the steeper field. The
+ * mean counts as vertical, 1/sin I or its square; a plane takes the factor's mean over all directions.
  *
  * Source: Blakely (1995), ch. 12.3; MacLeod, Jones & Dai (1993), Exploration Geophysics 24, 679-688 (pseudo-inclination).
  */
@@ -63,7 +63,11 @@ export function poleOperator({ inclinationDeg, declinationDeg }: FieldDirection,
       out[0] = power === 1 ? re : re * re - turn * turn;
       out[1] = power === 1 ? turn : 2 * re * turn;
     },
-    plane: (plane) => plane,
+    plane({ level, east, north }) {
+      // A plane has no direction of its own: it takes the mean of 1/Θ or 1/Θ² over all directions, ± 1 or |sin I|.
+      const factor = power === 1 ? Math.sign(sin) : Math.abs(sin);
+      return { level: factor * level, east: factor * east, north: factor * north };
+    },
   };
 }
 
