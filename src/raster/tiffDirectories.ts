@@ -98,6 +98,43 @@ export async function fetchTiffDirectories(source: ByteSource): Promise<ReadTiff
   }
 }
 
+/** The tags of one directory; what is wrong with them goes to `faults`. Values take no more bytes than there is `room`. */
+function readTags(
+  held: Held, { view, entries, offset, big, littleEndian, room, faults }: { view: DataView; entries: number; offset: number; big: boolean; littleEndian: boolean; room: number; faults: string[] },
+): { tags: Map<number, ReadTag>; used: number } {
+  const [entryBytes, wordBytes] = big ? [20, 8] as const : [12, 4] as const;
+  const word = (at: number): number => (big ? Number(view.getBigUint64(at, littleEndian)) : view.getUint32(at, littleEndian));
+  const tags = new Map<number, ReadTag>();
+  let before = -1;
+  let used = 0;
+  for (let at = 0; at < entries * entryBytes; at += entryBytes) {
+    const id = view.getUint16(at, littleEndian);
+    if (id <= before) faults.push(`tag ${id} of the directory at byte ${offset} is not in ascending order`);
+    before = id;
+    const type = view.getUint16(at + 2, littleEndian);
+    const count = word(at + 4);
+    const reader = READERS.get(type);
+    if (!reader) continue;
+    const [valueBytes, read] = reader;
+    const length = count * valueBytes;
+    const inside = length <= wordBytes;
+    const valuesAt = inside ? at + 4 + wordBytes : word(at + 4 + wordBytes);
+    if (!inside && valuesAt + length > held.size) {
+      faults.push(`the values of tag ${id} of the directory at byte ${offset} lie outside the file`);
+      continue;
+    }
+    used += inside ? 0 : length;
+    if (used > room) {
+      faults.push(LARGER_THAN_FILE);
+      break;
+    }
+    const values = inside ? view : held.at(valuesAt, length);
+    const first = inside ? valuesAt : 0;
+    tags.set(id, { type, count, values: Array.from({ length: count }, (_, i) => read(values, first + i * valueBytes, littleEndian)), end: inside ? 0 : valuesAt + length });
+  }
+  return { tags, used };
+}
+
 function nothing(fault: string): ReadTiff {
   return { big: false, littleEndian: true, directories: [], faults: [fault] };
 }
@@ -138,35 +175,8 @@ function parse(held: Held): ReadTiff {
       break;
     }
     const view = held.at(offset + form.count, entries * form.entry + form.word);
-    const tags = new Map<number, ReadTag>();
-    let before = -1;
-    for (let entry = 0; entry < entries; entry += 1) {
-      const at = entry * form.entry;
-      const id = view.getUint16(at, littleEndian);
-      if (id <= before) faults.push(`tag ${id} of the directory at byte ${offset} is not in ascending order`);
-      before = id;
-      const type = view.getUint16(at + 2, littleEndian);
-      const count = word(view, at + 4);
-      const reader = READERS.get(type);
-      if (!reader) continue;
-      const [valueBytes, read] = reader;
-      const length = count * valueBytes;
-      const inside = length <= form.word;
-      const valuesAt = inside ? at + 4 + form.word : word(view, at + 4 + form.word);
-      room -= inside ? 0 : length;
-      if (room < 0) {
-        faults.push(LARGER_THAN_FILE);
-        break;
-      }
-      if (!inside && valuesAt + length > held.size) {
-        room += length;
-        faults.push(`the values of tag ${id} of the directory at byte ${offset} lie outside the file`);
-        continue;
-      }
-      const values = inside ? view : held.at(valuesAt, length);
-      const first = inside ? valuesAt : 0;
-      tags.set(id, { type, count, values: Array.from({ length: count }, (_, i) => read(values, first + i * valueBytes, littleEndian)), end: inside ? 0 : valuesAt + length });
-    }
+    const { tags, used } = readTags(held, { view, entries, offset, big, littleEndian, room, faults });
+    room -= used;
     directories.push({ offset, tags });
     if (faults.length > 0) break;
     offset = word(view, entries * form.entry);

@@ -8,6 +8,7 @@ import { gridReadings } from '../../dist/src/grid/gridReadings.js';
 import { estimateLineSpacing } from '../../dist/src/grid/estimateLineSpacing.js';
 import { linearOnTriangles } from '../../dist/src/grid/linearOnTriangles.js';
 import { Random } from '../../dist/src/numerics/random.js';
+import { benchCog } from './cog.mjs';
 
 const ROUNDS = 3;
 const SPACING_M = 8;
@@ -104,3 +105,5 @@ for (const [readings, cells] of [[10_000, 300], [100_000, 1000], [1_000_000, 200
     console.log(`  gdal_grid ${algorithm.split(':')[0]}: ${other.ms.toFixed(0)} ms (its reading of the file taken off); ours takes ${(min / other.ms).toFixed(3)} of it; median difference ${medianDifference(result.values, other.values).toFixed(2)} nT`);
   }
 }
+
+await benchCog();
