@@ -101,17 +101,29 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
   return largest;
 }
 
+/** Fine rows on either side that read a coarse row, at most: one-sided weights at the rim reach the furthest. */
+const RIM_SPAN = 5;
+
 /** coarse = Pᵀ fine. */
 export function restrict({ x, y, half }: Transfer, [fine, coarse]: readonly [Float32Array, Float32Array]): void {
   const width = x.fine;
-  half.fill(0);
-  for (let row = 0; row < y.fine; row++) {
-    const f = row * width;
-    for (let n = 0; n < 4; n++) {
-      const weight = y.weights[row * 4 + n]!;
+  // Coarse row by coarse row: its own fine row, the two beside it and the two beyond, or what the rim makes of them.
+  for (let row = 0; row < y.coarse; row++) {
+    const h = row * width;
+    const f = 2 * row * width;
+    if (row >= 3 && 2 * row + 7 < y.fine) {
+      for (let i = 0; i < width; i++) {
+        half[h + i] = fine[f + i]! + 0.5625 * (fine[f + i - width]! + fine[f + i + width]!)
+          - 0.0625 * (fine[f + i - 3 * width]! + fine[f + i + 3 * width]!);
+      }
+      continue;
+    }
+    half.fill(0, h, h + width);
+    for (let from = Math.max(0, 2 * row - RIM_SPAN); from <= Math.min(y.fine - 1, 2 * row + RIM_SPAN); from++) {
+      const n = row - y.from[from]!;
+      const weight = n >= 0 && n < 4 ? y.weights[from * 4 + n]! : 0;
       if (weight === 0) continue;
-      const h = (y.from[row]! + n) * width;
-      for (let i = 0; i < width; i++) half[h + i]! += weight * fine[f + i]!;
+      for (let i = 0; i < width; i++) half[h + i]! += weight * fine[from * width + i]!;
     }
   }
   coarse.fill(0);

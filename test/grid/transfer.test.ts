@@ -1,0 +1,85 @@
+import { describe, expect, it } from 'vitest';
+import { coarseCount, prolong, restrict, transfer } from '../../src/grid/transfer.js';
+import { clearHold, coarsenHold, emptyHold, holdNode } from '../../src/grid/hold.js';
+import { heldResidual } from '../../src/grid/heldKernels.js';
+import { plateLevel } from '../../src/grid/plateLevel.js';
+import { Random } from '../../src/numerics/random.js';
+
+const SIZES: Array<[number, number]> = [[2, 2], [3, 5], [4, 4], [5, 9], [6, 7], [12, 31], [30, 13], [17, 40]];
+const random = new Random(3);
+const noise = (n: number) => Float64Array.from({ length: n }, () => random.normal());
+const dot = (a: ArrayLike<number>, b: ArrayLike<number>) => Array.from(a, (v, k) => v * b[k]!).reduce((sum, v) => sum + v, 0);
+
+describe('transfer', () => {
+  it.each(SIZES)('restricts by the transpose of what it prolongs, %i × %i', (width, height) => {
+    const between = transfer(width, height);
+    const [cw, ch] = [coarseCount(width), coarseCount(height)];
+    const coarse = noise(cw * ch);
+    const fine = noise(width * height);
+    const up = new Float64Array(width * height);
+    prolong(between, [coarse, up], { add: false, mask: null, watch: null });
+    const down = new Float32Array(cw * ch);
+    restrict(between, [Float32Array.from(fine), down]);
+    expect(dot(up, fine)).toBeCloseTo(dot(coarse, down), 4);
+  });
+
+  it.each(SIZES)('gives a plane back, and a cubic away from the rim, %i × %i', (width, height) => {
+    const between = transfer(width, height);
+    const cw = coarseCount(width);
+    const of = (f: (x: number, y: number) => number) => {
+      const coarse = Float64Array.from({ length: cw * coarseCount(height) }, (_, k) => f(2 * (k % cw), 2 * Math.floor(k / cw)));
+      const fine = new Float64Array(width * height);
+      prolong(between, [coarse, fine], { add: false, mask: null, watch: null });
+      return fine;
+    };
+    of((x, y) => 3 - x + 2 * y).forEach((v, k) => expect(v).toBeCloseTo(3 - (k % width) + 2 * Math.floor(k / width), 9));
+    const cubic = (x: number, y: number) => x ** 3 / 50 - y ** 3 / 70 + x * x * y / 90;
+    of(cubic).forEach((v, k) => {
+      const [x, y] = [k % width, Math.floor(k / width)];
+      if (x >= 3 && y >= 3 && x < width - 4 && y < height - 4) expect(v).toBeCloseTo(cubic(x, y), 8);
+    });
+  });
+});
+
+/** (H z) of a level without plate: the held operator with both weights zero. */
+function holdTimes(width: number, height: number, lay: (hold: ReturnType<typeof emptyHold>) => void) {
+  const level = plateLevel({ width, height, alpha: 0, tau: 0 });
+  lay(level.hold);
+  return (z: Float64Array) => {
+    const out = new Float32Array(z.length);
+    heldResidual(level, z, out);
+    return out.map((v) => -v);
+  };
+}
+
+/** Mean of the two or four coarse nodes around each fine node: linear interpolation. */
+function linear(coarse: Float64Array, [width, height, coarseWidth]: [number, number, number]): Float64Array {
+  return Float64Array.from({ length: width * height }, (_, k) => {
+    const [i, j] = [k % width, Math.floor(k / width)];
+    const at = (j >> 1) * coarseWidth + (i >> 1);
+    const [di, dj] = [i & 1, (j & 1) * coarseWidth];
+    return (coarse[at]! + coarse[at + di]! + coarse[at + dj]! + coarse[at + di + dj]!) / 4;
+  });
+}
+
+describe('hold', () => {
+  it.each(SIZES.filter(([w]) => w > 2))('costs weight × (mean around)², and the same seen from the next grid, %i × %i', (width, height) => {
+    const [cw, ch] = [coarseCount(width), coarseCount(height)];
+    const [vw, vh] = [coarseCount(cw), coarseCount(ch)];
+    const pins = Array.from({ length: 12 }, () => ({ i: random.integer(width), j: random.integer(height), weight: 1 + random.uniform() }));
+    const first = { width: cw, height: ch, hold: emptyHold(cw * ch) };
+    clearHold(first.hold);
+    for (const pin of pins) holdNode(first.hold, { ...pin, coarseWidth: cw });
+    const energy = (onFine: Float64Array) => pins.reduce((sum, { i, j, weight }) => sum + weight * onFine[j * width + i]! ** 2, 0);
+
+    const z = noise(cw * ch);
+    const times = holdTimes(cw, ch, (hold) => Object.assign(hold, first.hold));
+    expect(dot(z, times(z)) / energy(linear(z, [width, height, cw]))).toBeCloseTo(1, 4);
+
+    const second = { width: vw, height: vh, hold: emptyHold(vw * vh) };
+    coarsenHold(first, second);
+    const v = noise(vw * vh);
+    const again = holdTimes(vw, vh, (hold) => Object.assign(hold, second.hold));
+    expect(dot(v, again(v)) / energy(linear(linear(v, [cw, ch, vw]), [width, height, cw]))).toBeCloseTo(1, 4);
+  });
+});
