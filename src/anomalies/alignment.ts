@@ -65,7 +65,7 @@ function runOn(pins: readonly Pin[], order: readonly number[], options: Alignmen
   const on = order
     .map((k) => ({ k, along: (pins[k]!.x - x) * s + (pins[k]!.y - y) * c, across: (pins[k]!.x - x) * c - (pins[k]!.y - y) * s }))
     .filter(({ k, across }) => Math.abs(across) <= options.toleranceM + Math.min(options.toleranceM, 2 * pins[k]!.sdM))
-    .sort((p, q) => p.along - q.along || p.k - q.k);
+    .toSorted((p, q) => p.along - q.along || p.k - q.k);
   let best: typeof on = [];
   for (let from = 0; from < on.length;) {
     let to = from + 1;

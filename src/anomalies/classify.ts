@@ -1,6 +1,7 @@
 import { normalCdf, normalPdf } from '../numerics/special.js';
 import type { Target } from '../detection/types.js';
 import { misfitOf, type Refined } from './refine.js';
+import type { Source } from './sources.js';
 
 /** How likely each nature of a source is; sums to 1. */
 export interface Nature {
@@ -99,3 +100,22 @@ function softBox(value: number, [low, high]: readonly [number, number], sd: numb
   const width = Math.max(high - low, sd / 10);
   return (normalCdf((value - low) / sd) - normalCdf((value - low - width) / sd)) / width;
 }
+
+/** A source of ordinary size and depth has about this density of ln size and depth. */
+const ORDINARY_DENSITY = 0.1;
+
+/**
+ * What a source costs on top of its parameters, in units of the information criterion, for being an odd one: minus twice
+ * the log of its density of size and depth as the likelier of casing and scrap, against an ordinary one; 0 for a line.
+ */
+export function oddness({ kind, values }: Source, { target, reachM }: { readonly target: Target; readonly reachM: number }): number {
+  if (kind === 'line') return 0;
+  const depthM = -values[2]!;
+  const loose = DEPTH_SOFT_REACHES * reachM;
+  const density = kind === 'pole'
+    ? Math.max(casingDensity({ poleAM: values[3]!, poleSdAM: 0, depthM, depthSdM: loose }, target, reachM), sizeDensity(Math.abs(values[3]!), OTHER_POLE) * shallow(depthM, loose, reachM))
+    : sizeDensity(Math.hypot(values[3]!, values[4]!, values[5]!), COMPACT) * shallow(depthM, loose, reachM);
+  return Math.max(0, -2 * Math.log(Math.max(LEAST_DENSITY, density) / ORDINARY_DENSITY));
+}
+/** Nothing is odder than this. */
+const LEAST_DENSITY = 1e-4;

@@ -2,6 +2,7 @@ import { UserError } from '../errors.js';
 import type { Grid } from '../raster/types.js';
 import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
+import { oddness } from './classify.js';
 import { linearAnomaly, sourceAnomaly } from './describe.js';
 import { noiseModel, whiteNoise } from './noise.js';
 import { findPipes } from './pipes.js';
@@ -68,10 +69,10 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
 
   const known = new Map<Entry, Refined>();
   for (let sweep = 0; sweep < SWEEPS; sweep++) {
-    for (const entry of [...map.entries]) {
+    for (const entry of map.entries.slice()) {
       if (held.has(entry)) continue;
       const refined = refine(map, entry, { noise, kinds: KINDS, before: known.get(entry), held });
-      if (isNeeded(refined)) known.set(entry, refined);
+      if (isNeeded(refined, oddness(refined.fit.sources[0]!, { target: site.target, reachM: survey.reachM }))) known.set(entry, refined);
       else map.remove(entry);
     }
   }

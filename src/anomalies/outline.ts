@@ -36,7 +36,7 @@ export function contourOutline(grid: Grid, input: OutlineInput): { area: Area; a
   const width = column1 - column0 + 3;
   const height = row1 - row0 + 3;
   if (width < 4 || height < 4) return null;
-  const values = new Array<number>(width * height).fill(0);
+  const values = Array.from<number>({ length: width * height }).fill(0);
   for (let row = row0; row <= row1; row++) {
     for (let column = column0; column <= column1; column++) {
       const value = grid.values[row * grid.width + column]!;
@@ -50,7 +50,7 @@ export function contourOutline(grid: Grid, input: OutlineInput): { area: Area; a
   const toFrame = (point: readonly number[]): [number, number] => [west + (point[0]! + column0 - 1) * cellM, north - (point[1]! + row0 - 1) * cellM];
   const polygons = shape.coordinates.map((rings) => rings.map((ring) => ring.map(toFrame)));
   if (polygons.length === 0) return null;
-  const sized = polygons.map((rings) => ({ rings, size: areaM2([rings]), holds: pointInArea([rings], x, y) })).sort((a, b) => Number(b.holds) - Number(a.holds) || b.size - a.size);
+  const sized = polygons.map((rings) => ({ rings, size: areaM2([rings]), holds: pointInArea([rings], x, y) })).toSorted((a, b) => Number(b.holds) - Number(a.holds) || b.size - a.size);
   const taken = (whole ? sized : sized.slice(0, 1)).map(({ rings }) => rings);
   return { area: taken, areaM2: areaM2(taken) };
 }

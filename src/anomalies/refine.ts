@@ -94,8 +94,9 @@ export function misfitOf(fit: Fit): number {
   return Math.max(1, fit.chi2 / Math.max(1, fit.count - fit.parameters));
 }
 
-export function isNeeded({ fit, bic }: Refined): boolean {
-  return fit.bic < bic.none - GAIN * misfitOf(fit);
+/** Whether the readings want the source, `odd` being what it costs for its size and depth. */
+export function isNeeded({ fit, bic }: Refined, odd: number): boolean {
+  return fit.bic + odd < bic.none - GAIN * misfitOf(fit);
 }
 
 /** Fewer passes than this cannot tell a line from anything else. */

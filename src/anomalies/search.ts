@@ -1,5 +1,6 @@
 import type { NoiseModel, Target } from '../detection/types.js';
 import { NT_PER_POLE } from '../field/pole.js';
+import { oddness } from './classify.js';
 import { bestFit } from './bestFit.js';
 import { fitSources, type Fit, type Window } from './fitSources.js';
 import { aboveMedian, findPeaks, localNoise, thinPeaks, type Peak } from './peaks.js';
@@ -81,7 +82,7 @@ function tryPeak(map: SourceMap, peak: Peak, { noise, target }: { readonly noise
     if (fit && (!best || fit.bic < best.bic)) best = fit;
   }
   if (!best) return null;
-  if (best.bic > without.bic - GAIN * misfitOf(best)) return null;
+  if (best.bic + oddness(best.sources[0]!, { target, reachM: survey.reachM }) > without.bic - GAIN * misfitOf(best)) return null;
   const source = best.sources[0]!;
   const [x, y] = placeOf(source);
   if (Math.hypot(x - peak.x, y - peak.y) > survey.windowM) return null;
@@ -89,7 +90,7 @@ function tryPeak(map: SourceMap, peak: Peak, { noise, target }: { readonly noise
   map.learn(window, best);
   const entry = map.add(source);
   const beside = map.near(x, y, PAIR_REACHES * survey.reachM).find((other) => other !== entry && other.source.kind !== 'line');
-  if (beside && Math.max(peakOf(map, entry), peakOf(map, beside)) > leastPeak(map, target)) untangle(map, [entry, beside], noise);
+  if (beside && Math.max(peakOf(map, entry), peakOf(map, beside)) > leastPeak(map, target)) untangle(map, [entry, beside], { noise, target });
   const neighbours = map.near(x, y, survey.windowM).filter((other) => other !== entry && other.source.kind !== 'line');
   if (neighbours.length > 0) {
     refine(map, entry, { noise, kinds: KINDS });
@@ -104,11 +105,11 @@ const STRAINED = 1;
 /** Looks beside every strong source whose fit leaves too much for a second one that it has swallowed. */
 export function splitStrained(map: SourceMap, { noise, target }: { readonly noise: NoiseModel; readonly target: Target }, { maxSources }: SearchOptions): number {
   let split = 0;
-  for (const entry of [...map.entries]) {
+  for (const entry of map.entries.slice()) {
     if (map.entries.length >= maxSources) break;
     if (entry.source.kind === 'line' || peakOf(map, entry) < leastPeak(map, target)) continue;
     const { fit } = refine(map, entry, { noise, kinds: [] });
-    if (fit.chi2 > STRAINED * (fit.count - fit.parameters) && untangle(map, [entry], noise)) split++;
+    if (fit.chi2 > STRAINED * (fit.count - fit.parameters) && untangle(map, [entry], { noise, target })) split++;
   }
   return split;
 }

@@ -73,7 +73,7 @@ export class SourceMap {
     return this.entries
       .map((entry) => ({ entry, away: Math.hypot(placeOf(entry.source)[0] - x, placeOf(entry.source)[1] - y) }))
       .filter(({ away }) => away <= radiusM)
-      .sort((a, b) => a.away - b.away || a.entry.id - b.entry.id)
+      .toSorted((a, b) => a.away - b.away || a.entry.id - b.entry.id)
       .map(({ entry }) => entry);
   }
 

@@ -103,10 +103,10 @@ function lineSpacing(blocks: Blocks, tree: KDBush, reachM: number): number {
 /** Blocks within `radiusM` of any of the places, in walking order. */
 export function blocksNear(survey: Survey, places: ReadonlyArray<readonly [number, number]>, radiusM: number): Int32Array {
   if (survey.blocks.count === 0) return new Int32Array(0);
-  if (places.length === 1) return Int32Array.from(survey.tree.within(places[0]![0], places[0]![1], radiusM)).sort();
+  if (places.length === 1) return Int32Array.from(survey.tree.within(places[0]![0], places[0]![1], radiusM)).toSorted();
   const all = new Set<number>();
   for (const [x, y] of places) for (const i of survey.tree.within(x, y, radiusM)) all.add(i);
-  return Int32Array.from(all).sort();
+  return Int32Array.from(all).toSorted();
 }
 
 export interface WindowInput {
