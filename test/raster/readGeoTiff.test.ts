@@ -34,11 +34,35 @@ describe('readGeoTiff', () => {
     ['with LZW and a predictor', ['-co', 'COMPRESS=LZW', '-co', 'PREDICTOR=3', '-co', 'TILED=YES']],
     ['as BigTIFF, big-endian', ['-co', 'BIGTIFF=YES', '-co', 'ENDIANNESS=BIG']],
     ['in 64 bits', ['-ot', 'Float64']],
+    ['in 64 bits with differences', ['-ot', 'Float64', '-co', 'COMPRESS=DEFLATE', '-co', 'PREDICTOR=2']],
+    ['in 64 bits with byte planes', ['-ot', 'Float64', '-co', 'COMPRESS=LZW', '-co', 'PREDICTOR=3', '-co', 'BLOCKYSIZE=7']],
+    ['with PackBits', ['-co', 'COMPRESS=PACKBITS', '-co', 'BLOCKYSIZE=5']],
+    ['with differences, big-endian', ['-co', 'COMPRESS=DEFLATE', '-co', 'PREDICTOR=2', '-co', 'ENDIANNESS=BIG']],
+    ['with three bands side by side', ['-b', '1', '-b', '1', '-b', '1', '-co', 'INTERLEAVE=PIXEL', '-co', 'COMPRESS=LZW', '-co', 'PREDICTOR=3']],
+    ['with three bands one after another', ['-b', '1', '-b', '1', '-b', '1', '-co', 'INTERLEAVE=BAND', '-co', 'COMPRESS=DEFLATE', '-co', 'TILED=YES', '-co', 'BLOCKXSIZE=16', '-co', 'BLOCKYSIZE=16']],
   ])('reads the grid as GDAL writes it %s', async (_, options) => {
     const { grid, epsg, unit, description } = await readGeoTiff(await foreign(options));
     expect({ ...grid, values: null }).toEqual({ ...GRID, values: null });
     expect(firstDifference(grid.values, GRID.values)).toBe(-1);
     expect({ epsg, unit, description }).toEqual({ epsg: 26917, unit: 'nT', description: 'Residual' });
+  });
+
+  it.each(['Byte', 'Int16', 'UInt16', 'Int32', 'UInt32'])('reads whole numbers of type %s', async (type) => {
+    // GDAL rounds the values on the way; a grid of whole ones stays what it is.
+    const whole = { ...GRID, values: GRID.values.map((value) => (Number.isNaN(value) ? 7 : Math.max(0, Math.min(250, Math.round(value))))) };
+    for (const predictor of ['1', '2']) {
+      const bytes = await withGdal({ 'a.tif': await encodeCog(whole, { crs: crs(26917), deflate }) }, async (api, dataset) => api.Module.FS.readFile(
+        (await api.gdal_translate(dataset, ['-of', 'GTiff', '-q', '-ot', type, '-a_nodata', 'none', '-co', 'COMPRESS=LZW', '-co', `PREDICTOR=${predictor}`], `whole-${type}-${predictor}`)).local));
+      expect(firstDifference((await readGeoTiff(bytes)).grid.values, whole.values)).toBe(-1);
+    }
+  });
+
+  it('takes tiles that the file leaves out for cells without a value', async () => {
+    const empty = madeGrid({ width: 40, height: 40, gaps: 'all' });
+    const bytes = await withGdal({ 'a.tif': await encodeCog(empty, { crs: crs(26917), deflate }) },
+      async (api, dataset) => api.Module.FS.readFile((await api.gdal_translate(dataset, ['-of', 'GTiff', '-q', '-co', 'SPARSE_OK=YES', '-co', 'TILED=YES', '-co', 'BLOCKXSIZE=16', '-co', 'BLOCKYSIZE=16'], 'sparse')).local));
+    expect(bytes.length).toBeLessThan(40 * 40 * 4);
+    expect((await readGeoTiff(bytes)).grid.values.every(Number.isNaN)).toBe(true);
   });
 
   it('takes the stated nodata for NaN', async () => {
