@@ -8,10 +8,11 @@ export interface FftSize {
 }
 
 /**
- * Columns that are transformed side by side: 16 complex numbers are four cache lines, so every line that is fetched is
- * used in full, and a block of 2,048 rows stays in the second cache.
+ * Columns that are transformed side by side. So many complex numbers are half a kilobyte of each row: lines of the cache
+ * are used in full, and each page of memory is looked up seldom. Measured at 2048² and 4096², 4 to 32 columns: the more
+ * the better or equal, and work space grows with them.
  */
-const COLUMNS = 16;
+const COLUMNS = 32;
 
 /** Numbers in a row of the spectrum: width/2 + 1 complex ones. */
 export function spectrumStride(width: number): number {
