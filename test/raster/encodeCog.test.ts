@@ -144,6 +144,13 @@ describe('encodeCog', () => {
     await expect(encode(grid, { sample: 'byte' })).rejects.toThrow(RangeError);
   });
 
+  it('refuses a value that only 64 bits can hold, and keeps an infinite one', async () => {
+    const grid = { ...madeGrid({ width: 2, height: 1 }), values: Float64Array.of(1, 1e300) };
+    await expect(encode(grid)).rejects.toThrow('does not fit float32');
+    const back = await readGeoTiff(await encode({ ...grid, values: Float64Array.of(1, -Infinity) }));
+    expect([...back.grid.values]).toEqual([1, -Infinity]);
+  });
+
   it('refuses a grid whose values do not fill it', async () => {
     await expect(encode({ ...madeGrid({ width: 8, height: 8 }), height: 9 })).rejects.toThrow('8 × 9');
     await expect(encode({ ...madeGrid({ width: 8, height: 8 }), width: 0, values: new Float32Array(0) })).rejects.toThrow('0 values');
