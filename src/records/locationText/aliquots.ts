@@ -94,8 +94,8 @@ function halfAt(cursor: Cursor, ahead: number, side: Side): Unit | null {
   return count === 0 || isTwoOfTownship(cursor, ahead) ? null : { steps: [`${side}2`], count: 1 + count };
 }
 
-/** `S2` before another part is a half whatever else the text says. */
-function isTwoOfTownship(cursor: Cursor, ahead: number): boolean {
+/** Whether `S2` is section 2; before another part it is a half whatever else the text says. */
+export function isTwoOfTownship(cursor: Cursor, ahead: number): boolean {
   if (cursor.peek(ahead).text !== 'S' || cursor.peek(ahead + 1).text !== '2') return false;
   const gap = cursor.isWord(OF, ahead + 2) ? (cursor.isWord(THE, ahead + 3) ? 4 : 3) : cursor.isMark('-', ahead + 2) ? 3 : 2;
   return !startsAliquot(cursor, ahead + gap) && isSectionTwo(cursor, ahead);

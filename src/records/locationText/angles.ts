@@ -14,6 +14,8 @@ export interface AngleText {
   readonly axis: Axis | null;
   readonly letter: Side | null;
   readonly sign: '-' | '+' | null;
+  /** A whole number and a letter, nothing else: it may be a township or a range as well. */
+  readonly bare: boolean;
   readonly first: Token;
 }
 
@@ -79,7 +81,7 @@ export function readAngle(cursor: Cursor, expected: Axis | null): AngleText {
   }
   const angle = angleFromParts(packed ?? parts, axis);
   if ('wanted' in angle) throw cursor.refuse(angle.wanted, { at: at[packed ? 0 : angle.part]! });
-  return { deg: angle.deg, resolutionDeg: angle.resolutionDeg, axis, letter, sign, first };
+  return { deg: angle.deg, resolutionDeg: angle.resolutionDeg, axis, letter, sign, bare: parts.length === 1 && !marked && label === null && letter !== null && /^\d{1,3}$/.test(parts[0]!), first };
 }
 
 /** A letter before a number. */

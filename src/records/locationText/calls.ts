@@ -86,7 +86,7 @@ function bareUnit(cursor: Cursor, { way }: Opening): number | null {
 
 function readSides(cursor: Cursor, opening: Opening, several: boolean): Side[] {
   cursor.at += opening.at;
-  if (opening.way === 'joined') return [fromLine(cursor.next().text)!];
+  if (opening.way === 'joined') return joinedSides(cursor, several);
   const first = sideAhead(cursor, 0)!;
   cursor.at += first.end;
   const sides = [first.side];
@@ -101,4 +101,14 @@ function readSides(cursor: Cursor, opening: Opening, several: boolean): Side[] {
   }
   cursor.takeWord(LINE);
   return sides;
+}
+
+/** `FNL`, or `FNL & FEL` of one length. */
+function joinedSides(cursor: Cursor, several: boolean): Side[] {
+  const sides = [fromLine(cursor.next().text)!];
+  const second = several && (cursor.isMark('&') || cursor.isWord(AND)) ? fromLine(cursor.peek(1).text) : null;
+  // FNL & FEL 1980 begins a call of its own.
+  if (second === null || lengthAhead(cursor, 2) !== null) return sides;
+  cursor.at += 2;
+  return [...sides, second];
 }

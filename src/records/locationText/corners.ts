@@ -8,7 +8,7 @@ import { AND, CENTRE, FROM, isNorthSouth, LAT, LON, OF, quarterOf, sideOf, THE }
 /** Whether a distance towards a side begins here, as in `40 rods N of` or `N 40 rods and E 20 rods from`. */
 export function startsOffset(cursor: Cursor): boolean {
   const length = lengthAhead(cursor);
-  if (length !== null) return sideAt(cursor, length.end) !== null && offsetGoesOn(cursor, length.end + 1);
+  if (length !== null) return sideAt(cursor, length.end) !== null && (offsetGoesOn(cursor, length.end + 1) || (length.unit && isDegrees(cursor, length.end + 1)));
   if (sideAt(cursor, 0) === null) return false;
   const behind = lengthAhead(cursor, 1);
   return behind !== null && behind.unit && !cursor.isMark('°', 2) && offsetGoesOn(cursor, behind.end);
@@ -23,6 +23,9 @@ function offsetGoesOn(cursor: Cursor, ahead: number): boolean {
   const behind = sideAt(cursor, ahead + gap) === null ? null : lengthAhead(cursor, ahead + gap + 1);
   return behind !== null && behind.unit && endsInOf(cursor, behind.end);
 }
+
+/** `5,400' S. 39°22'30"`: the parallel without a word before it. */
+const isDegrees = (cursor: Cursor, ahead: number): boolean => cursor.isNumber(ahead) && cursor.isMark('°', ahead + 1);
 
 const endsInOf = (cursor: Cursor, ahead: number): boolean => cursor.isWord(OF, ahead) || cursor.isWord(FROM, ahead);
 
@@ -43,7 +46,7 @@ export function readOffsets(cursor: Cursor): CornerOffset[] {
     if (offsets.some((offset) => isNorthSouth(offset.toward) === isNorthSouth(toward))) throw cursor.refuse('one distance north or south and one east or west', { at: first });
     offsets.push({ distanceM: m, resolutionM, toward });
     if (cursor.takeWord(OF) !== null || cursor.takeWord(FROM) !== null) break;
-    if (cursor.isWord(LAT) || cursor.isWord(LON)) break;
+    if (cursor.isWord(LAT) || cursor.isWord(LON) || isDegrees(cursor, 0)) break;
     if (!cursor.takeMark('&') && !cursor.takeMark(',')) cursor.takeWord(AND);
     if (offsets.length === 2 || (lengthAhead(cursor) === null && sideAt(cursor, 0) === null)) throw cursor.refuse('"of" or "from" and the corner that the distances start from');
   }

@@ -2,20 +2,37 @@ import type { Axis } from '../../geodesy/parseAngle.js';
 import { readAngle, startsAngle, type AngleText } from './angles.js';
 import type { Cursor } from './cursor.js';
 import type { GeographicStatement, LonSide } from './types.js';
-import { AND } from './words.js';
+import { AND, LAT, LON } from './words.js';
 
 export type Pair = Pick<GeographicStatement, 'lonDeg' | 'latDeg' | 'lonResolutionDeg' | 'latResolutionDeg' | 'lonSide'>;
 
 /** Reads a latitude and a longitude, in either order where they say which is which. */
 export function readPair(cursor: Cursor): Pair {
-  const first = readAngle(cursor, null);
+  const header = readHeader(cursor);
+  const first = readAngle(cursor, header);
   while (cursor.takeMark(',') || cursor.takeMark(';') || cursor.takeMark('/') || cursor.takeMark('&') || cursor.takeMark('|') || cursor.takeWord(AND)) { /* between the two */ }
   if (!startsAngle(cursor)) throw cursor.refuse(first.axis === null ? 'a latitude and a longitude' : `a ${other(first.axis)} beside the ${first.axis}`);
   const second = readAngle(cursor, null);
+  if (first.bare && second.bare) {
+    throw cursor.refuse('a latitude and longitude, or a township and range, not what can be read as either', {
+      at: first.first, advice: 'write degree signs or decimals for a place, T and R before a township and range',
+    });
+  }
   const [lat, lon] = inOrder(cursor, first, second);
   const { latDeg, latResolutionDeg } = latitude(cursor, lat);
   const { lonDeg, lonResolutionDeg, lonSide } = longitude(cursor, lon);
   return { lonDeg, latDeg, lonResolutionDeg, latResolutionDeg, lonSide };
+}
+
+/** `Lat/Long:` before the two: which of them comes first. */
+function readHeader(cursor: Cursor): Axis | null {
+  const axisAt = (ahead: number): Axis | null => (cursor.isWord(LAT, ahead) ? 'latitude' : cursor.isWord(LON, ahead) ? 'longitude' : null);
+  const [one, gap] = [axisAt(0), cursor.isMark('/', 1) || cursor.isMark(',', 1) || cursor.isMark('-', 1) || cursor.isMark('&', 1) || cursor.isWord(AND, 1) ? 2 : 1];
+  const two = axisAt(gap);
+  if (one === null || two === null || one === two) return null;
+  cursor.at += gap + 1;
+  if (!cursor.takeMark(':')) cursor.takeMark('=');
+  return one;
 }
 
 const other = (axis: Axis): Axis => (axis === 'latitude' ? 'longitude' : 'latitude');

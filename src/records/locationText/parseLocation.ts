@@ -9,6 +9,7 @@ import { latitude, longitude, readPair, type Pair } from './geographic.js';
 import { readMeridian } from './meridians.js';
 import { emptyProjected, finishProjected, readProjected, startsProjected, type ProjectedDraft } from './projected.js';
 import { addCall, emptySection, finishSection, setPart, type SectionDraft } from './sectionDraft.js';
+import { stateCode } from './statePlaneZones.js';
 import type { Token } from './tokens.js';
 import { readReference, startsReference } from './townships.js';
 import { LOCATION_TEXT_DEFAULTS, type CornerOffset, type LocationStatement, type LocationTextOptions, type MapCornerStatement, type SingleStatement } from './types.js';
@@ -90,8 +91,27 @@ function readNext(cursor: Cursor, reading: Reading): void {
     cursor.next();
     return;
   }
+  if (skipCounty(cursor)) return;
   if (readCorner(cursor) !== null) throw cursor.refuse('distances from the corner, as in 40 rods N of SW cor', { at: token });
   throw cursor.refuse(token.kind === 'word' ? 'words of a location only' : 'a location');
+}
+
+const COUNTY: ReadonlySet<string> = new Set(['COUNTY', 'CNTY', 'PARISH']);
+/** The longest names of counties have four words (`Lake of the Woods`). */
+const COUNTY_WORDS = 4;
+
+/** `Larkin County, Ohio` says nothing of where in the county; true, and behind it, where it stands here. */
+function skipCounty(cursor: Cursor): boolean {
+  let count = 0;
+  while (count < COUNTY_WORDS && cursor.peek(count).kind === 'word' && !COUNTY.has(cursor.peek(count).text)) count++;
+  if (count === 0 || !cursor.isWord(COUNTY, count)) return false;
+  cursor.at += count + 1;
+  const gap = cursor.isMark(',') ? 1 : 0;
+  const [one, two] = [cursor.peek(gap), cursor.peek(gap + 1)];
+  if (one.kind !== 'word') return true;
+  if (two.kind === 'word' && stateCode(`${one.text} ${two.text}`) !== null) cursor.at += gap + 2;
+  else if (stateCode(one.text) !== null) cursor.at += gap + 1;
+  return true;
 }
 
 const hasDatum = (reading: Reading): boolean => reading.datumAhead !== null || reading.order.some((entry) => entry.datum !== null);

@@ -21,6 +21,8 @@ const PARTS: Readonly<Record<string, string>> = {
 const SMALLEST_COORDINATE = 1000;
 /** Larger than any angle with its digits run together that stands with E or N in the United States, in metres or feet. */
 const PLAINLY_PROJECTED = 100_000;
+/** No State Plane zone reaches as far, in feet; false northings in use are a few million metres. */
+const LARGEST_COORDINATE = 100_000_000;
 /** A zone of UTM is 6° wide: its eastings lie well within these, metres; so do the northings of its northern half. */
 const UTM_EASTING_M = [100_000, 1_000_000] as const;
 const UTM_NORTHING_M = [0, 10_000_000] as const;
@@ -204,6 +206,7 @@ function setCoordinate(cursor: Cursor, draft: ProjectedDraft, axis: 'easting' | 
   if (token.kind !== 'number') throw cursor.refuse(`a number for the ${axis}`, { at: token });
   const number = groupedNumber(token);
   if (number === null) throw cursor.refuse('a coordinate whose comma groups three digits', { at: token, advice: 'write decimals behind a point' });
+  if (number.value > LARGEST_COORDINATE) throw cursor.refuse(`a coordinate of at most ${LARGEST_COORDINATE}`, { at: token });
   if (draft[axis] !== null) throw cursor.refuse(`one ${axis}`, { at: token });
   const unit = unitAhead(cursor, 0);
   if (unit !== null) cursor.at += unit.count;

@@ -1,8 +1,8 @@
 import type { SectionReference } from '../../geodesy/sections/types.js';
+import { isTwoOfTownship } from './aliquots.js';
 import { startsCall } from './calls.js';
 import { startsOffset } from './corners.js';
 import { wholeNumber, type Cursor } from './cursor.js';
-import { isSectionTwo } from './sectionTwo.js';
 import type { Token } from './tokens.js';
 import { AND, isNorthSouth, LOT, RANGE, SECTION, sideOf, TOWNSHIP } from './words.js';
 
@@ -49,7 +49,7 @@ function startsSection(cursor: Cursor, draft: ReferenceDraft): boolean {
   };
   // S12 is section 12 only beside a township; elsewhere it is 12 degrees south, or nothing.
   if (cursor.peek().text === 'S' && cursor.peek().kind === 'word') {
-    if (cursor.peek(1).text === '2' && !cursor.peek(1).spaced) return isSectionTwo(cursor, 0);
+    if (cursor.peek(1).text === '2' && !cursor.peek(1).spaced) return isTwoOfTownship(cursor, 0);
     const at = numbered(cursor, 1);
     return at !== null && wholeNumber(cursor.peek(at)) !== null && ((draft.township !== undefined && draft.section === undefined) || township(at + 1));
   }
@@ -103,6 +103,8 @@ function setTier(cursor: Cursor, draft: ReferenceDraft, which: 'township' | 'ran
   const halfBehind = fraction.kind === 'fraction' && fraction.top === 1 && fraction.bottom === 2;
   if (halfBehind && !half) cursor.next();
   if (cursor.isMark('-')) cursor.next();
+  // T5NR3WS12: the side and the next part's letter are one word to the eye of a tokeniser.
+  if (/^(?:[NS]R|[EW]S)$/.test(cursor.peek().text) && cursor.isNumber(1)) cursor.splitWord(1);
   const word = cursor.peek();
   const side = word.kind === 'word' ? sideOf(word.text) : null;
   const dirs = which === 'township' ? 'N or S' : 'E or W';
@@ -143,7 +145,7 @@ function moreBegins(cursor: Cursor, draft: ReferenceDraft): boolean {
 }
 
 interface Compact {
-  /** Tokens up to the township's number: 0, or 2 behind a section and its hyphen. */
+  /** Tokens up to the township's number: 0, or 1 or 2 behind a section and perhaps a hyphen. */
   readonly township: number;
   readonly range: number;
   readonly townshipOnly: boolean;
@@ -151,7 +153,8 @@ interface Compact {
 
 /** `12-5N-3W`, `5N-3W`, `5N 3W`: where the numbers stand; null where this is nothing of the kind. */
 function compactAt(cursor: Cursor): Compact | null {
-  const lead = wholeNumber(cursor.peek()) !== null && cursor.isMark('-', 1) && cursor.isNumber(2) ? 2 : 0;
+  const hyphened = wholeNumber(cursor.peek()) !== null && cursor.isMark('-', 1) && cursor.isNumber(2);
+  const lead = hyphened ? 2 : wholeNumber(cursor.peek()) !== null && cursor.isNumber(1) ? 1 : 0;
   for (const at of lead === 0 ? [0] : [lead, 0]) {
     const north = dirAfter(cursor, at);
     if (north === null || !north.northSouth) continue;
@@ -162,6 +165,11 @@ function compactAt(cursor: Cursor): Compact | null {
     return { township: at, range, townshipOnly: at === 0 };
   }
   return null;
+}
+
+function likePlace(cursor: Cursor, { township, range }: { readonly township: number; readonly range: number }): boolean {
+  const [lat, lon] = [Number(cursor.peek(township).text), Number(cursor.peek(range).text)];
+  return lat >= PLACES.lat[0] && lat <= PLACES.lat[1] && lon >= PLACES.lon[0] && lon <= PLACES.lon[1];
 }
 
 /** A short whole number, perhaps with a half, and the side glued to it or behind a hyphen. */
@@ -181,19 +189,19 @@ const isCompact = (cursor: Cursor): boolean => compactAt(cursor) !== null;
 function readCompact(cursor: Cursor, draft: ReferenceDraft): void {
   const { township, range, townshipOnly } = compactAt(cursor)!;
   const first = cursor.peek();
-  const [lat, lon] = [Number(cursor.peek(township).text), Number(cursor.peek(range).text)];
+  const placeLike = likePlace(cursor, { township, range });
   const behind = cursor.at + range;
-  const likePlace = lat >= PLACES.lat[0] && lat <= PLACES.lat[1] && lon >= PLACES.lon[0] && lon <= PLACES.lon[1];
   if (!townshipOnly) {
     setSection(cursor, draft, cursor.next());
-    cursor.next();
+    cursor.takeMark('-');
   }
   setTier(cursor, draft, 'township');
   while (cursor.at < behind) cursor.next();
   setTier(cursor, draft, 'range');
   readClosingSection(cursor, draft);
   const namesSection = cursor.tokens.some((token) => token.kind === 'word' && SECTION.has(token.text));
-  if (likePlace && draft.section === undefined && !namesSection) {
+  // 12 39N 80W may be 12°39' N, 80° W as well.
+  if (placeLike && !namesSection && (draft.section === undefined || township === 1)) {
     throw cursor.refuse('a township and range, or a latitude and longitude, not what can be read as either', { at: first, advice: 'write T and R before a township and range, decimals or degree signs for a place' });
   }
 }

@@ -21,7 +21,7 @@ export function section(rest: Partial<SectionStatement>): SectionStatement {
 
 /** `NE SW`: as written, smallest first. */
 export function part(written: string): { steps: AliquotStep[] } {
-  return { steps: written.split(' ').filter((step) => step !== '').reverse() as AliquotStep[] };
+  return { steps: written.split(' ').filter((step) => step !== '').toReversed() as AliquotStep[] };
 }
 
 export function calls(one: CallText, two: CallText, { of = part(''), ...rest }: Partial<SectionStatement> & { of?: MeasuredFrom } = {}): SectionStatement {
