@@ -14,7 +14,7 @@ import type { Area, Density, Ellipse, GaussianPart } from './types.js';
 export const REGION_FINENESS: Fineness = Object.freeze({ perSd: 6, acrossArea: 64 });
 /** Corners of the region of one Gaussian: a chord stays within 0.03 % of the axis. */
 const GAUSSIAN_CORNERS = 144;
-/** The outline bulges beyond the chords between its cells, and a known shape may differ, by less than this share. */
+/** The outline bulges beyond the chords between its cells by less than this share. */
 const BULGE = 1.002;
 
 /** The smallest region that holds 95 % of a density without its blunders. */
