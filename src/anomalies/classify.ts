@@ -34,6 +34,8 @@ const DEEP_SHARE = 0.2;
 const LINE_DENSITY = 0.05;
 /** The stated range of strengths is softened by this share at either end (one standard deviation of ln). */
 const STRENGTH_SOFT = 0.3;
+/** A strength that the fit hardly knows still counts as known to this (ln): ignorance must not make rock a casing. */
+const MOST_LOG_SD = 0.7;
 /** Tops are believed above or below the stated range by this share of the reach (one standard deviation). */
 const DEPTH_SOFT_REACHES = 0.12;
 /** No chance is stated nearer to 0 or 1 than this: models are never that true. */
@@ -90,7 +92,7 @@ const DEPTH_SOFT_M = 0.3;
 /** Density of ln strength and depth that the stated casing has, its edges softened, with the errors of the fit. */
 function casingDensity({ poleAM, poleSdAM, depthM, depthSdM }: PoleValues, { poleAM: [weak, strong], depthM: [shallow, deep] }: Target, reachM: number): number {
   const size = Math.abs(poleAM);
-  const logSd = Math.hypot(STRENGTH_SOFT, poleSdAM / size);
+  const logSd = Math.hypot(STRENGTH_SOFT, Math.min(MOST_LOG_SD, poleSdAM / size));
   const depthSd = Math.hypot(DEPTH_SOFT_REACHES * reachM, depthSdM);
   return softBox(Math.log(size), [Math.log(weak), Math.log(strong)], logSd) * softBox(depthM, [shallow, deep], depthSd);
 }

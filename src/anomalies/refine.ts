@@ -22,6 +22,8 @@ export interface Refined {
 /** Neighbours that are fitted along with a source, at most, and how near they have to lie, in windows. */
 const NEIGHBOURS = 4;
 const NEIGHBOUR_WINDOWS = 1.1;
+/** A fit that moves a source by more than this many reaches is not taken. */
+const STRAY_REACHES = 1.3;
 
 export interface RefineOptions {
   readonly noise: NoiseModel;
@@ -58,13 +60,21 @@ export function refine(map: SourceMap, entry: Entry, { noise, kinds, before, hel
     const starts: Source[] = known ? [known] : startingPoints(left, kind, peak);
     fits[kind] = bestFit(window, starts, others)!;
   }
-  const fit = Object.values(fits).reduce((a, b) => (b.bic < a.bic ? b : a));
-  // On the map a source stays compact: what an endless line would do to its neighbours is anybody's guess.
-  const compact = [fits.pole, fits.dipole].filter((one) => one !== undefined).reduce((a, b) => (b.bic < a.bic ? b : a), fits.pole ?? fits.dipole ?? fit);
-  map.learn(window, compact);
-  free.forEach((one, k) => {
-    if (!held?.has(one)) map.move(one, compact.sources[k]!);
+  // A source that runs off to help another one is no fit of itself.
+  const stays = (one: Fit) => one.sources.every((source, k) => {
+    const [was, is] = [placeOf(free[k]!.source), placeOf(source)];
+    return source.kind === 'line' || Math.hypot(is[0] - was[0], is[1] - was[1]) <= STRAY_REACHES * survey.reachM;
   });
+  const all = Object.values(fits);
+  const fit = (all.some(stays) ? all.filter(stays) : all).reduce((a, b) => (b.bic < a.bic ? b : a));
+  // On the map a source stays compact: what an endless line would do to its neighbours is anybody's guess.
+  const compact = [fits.pole, fits.dipole].filter((one) => one !== undefined && (stays(one) || !all.some(stays))).reduce<Fit>((a, b) => (b && b.bic < a.bic ? b : a), fits.pole && stays(fits.pole) ? fits.pole : fits.dipole ?? fits.pole ?? fit);
+  if (stays(compact)) {
+    map.learn(window, compact);
+    free.forEach((one, k) => {
+      if (!held?.has(one)) map.move(one, compact.sources[k]!);
+    });
+  }
   const none = fitSources(window, others);
   return {
     entry, fit, window, bic: { pole: fits.pole?.bic ?? Infinity, dipole: fits.dipole?.bic ?? Infinity, line: fits.line?.bic ?? Infinity, none: none.bic },
