@@ -77,5 +77,8 @@ export function projectedOf(cell: Cell, columns: RecordColumns, crs: Crs): Coord
 function missingCoordinate(...cells: Array<readonly [name: string, text: string]>): Fault | null {
   const empty = cells.filter(([, text]) => text === '').map(([name]) => name);
   if (empty.length === 0) return null;
-  return { column: empty.join(', '), value: '', problem: 'the coordinates are not given', advice: 'fill them in from the permit, or place the well by hand' };
+  return {
+    column: empty.join(', '), value: '', problem: 'the coordinates are not given', advice: 'fill them in from the permit, or place the well by hand',
+    ...(empty.length === cells.length ? { absent: true as const } : {}),
+  };
 }

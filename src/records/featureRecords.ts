@@ -4,18 +4,18 @@ import type { Crs } from '../geodesy/types.js';
 import type { InputFeature } from '../vector/types.js';
 import { decimalsOf } from './digits.js';
 import type { RawRecord } from './rawRecord.js';
-import { mappedColumn, recordHead, type Cell } from './recordHead.js';
+import { cellColumns, groupColumns, groupText, mappedColumn, recordHead, type Cell } from './recordHead.js';
 import type { RecordColumns } from './recordSource.js';
 
 const COORDINATE_KEYS: ReadonlySet<string> = new Set(['latitude', 'longitude', 'easting', 'northing']);
 
 /** Points of a vector file with their columns; a feature that is no point becomes its row's fault. */
-export function featureRecords(features: readonly InputFeature[], settings: { columns: RecordColumns; name: string; crs: Crs }): RawRecord[] {
+export function* featureRecords(features: readonly InputFeature[], settings: { columns: RecordColumns; name: string; crs: Crs }): Generator<RawRecord> {
   const { columns, name, crs } = settings;
-  const names = [...new Set(features.flatMap((feature) => Object.keys(feature.properties)))];
+  const names = [...propertyNames(features)];
   const known = new Map(names.map((each) => [each, [] as string[]]));
-  const mapped = Object.entries(columns) as Array<[keyof RecordColumns, string | undefined]>;
-  const forCoordinates = mapped.find(([key, wanted]) => wanted !== undefined && COORDINATE_KEYS.has(key));
+  const mapped: Array<[string, string]> = [...cellColumns(columns), ...groupColumns(columns).map((each): [string, string] => ['group', each])];
+  const forCoordinates = mapped.find(([key]) => COORDINATE_KEYS.has(key));
   if (forCoordinates) {
     throw new UserError({
       code: 'key_invalid', where: name, found: `columns.${forCoordinates[0]} for a file that has points of its own`,
@@ -24,16 +24,23 @@ export function featureRecords(features: readonly InputFeature[], settings: { co
   }
   // Without a feature nobody knows the file's columns.
   for (const [key, wanted] of features.length > 0 ? mapped : []) {
-    if (wanted !== undefined) mappedColumn(known, wanted, { key, source: name, names });
+    mappedColumn(known, wanted, { key, source: name, names });
   }
   const resolution = pointResolution(features, crs);
-  return features.map((feature, i) => {
-    const cell: Cell = (key) => {
-      const value = columns[key] === undefined ? null : feature.properties[columns[key]];
+  for (const [i, feature] of features.entries()) {
+    const textOf = (column: string): string => {
+      const value = feature.properties[column];
       return value === null || value === undefined ? '' : String(value).trim();
     };
-    return { ...recordHead(cell, { columns, row: i + 1 }), ...pointOf(feature, crs, resolution) };
-  });
+    const cell: Cell = (key) => (columns[key] === undefined ? '' : textOf(columns[key]));
+    yield { ...recordHead(cell, { columns, row: i + 1 }), group: groupText(groupColumns(columns).map(textOf)), ...pointOf(feature, crs, resolution) };
+  }
+}
+
+function propertyNames(features: readonly InputFeature[]): Set<string> {
+  const names = new Set<string>();
+  for (const { properties } of features) for (const name in properties) names.add(name);
+  return names;
 }
 
 /** Coordinate of a point feature; other geometries become the row's fault. */
@@ -66,7 +73,7 @@ function pointOf(feature: InputFeature, crs: Crs, resolution: number): Pick<RawR
   const position = pointPosition(feature);
   if (position === null || position.length < 2) {
     const what = feature.geometry?.type ?? 'no geometry';
-    return { coordinates: { columns: 'geometry', value: what }, place: { column: 'geometry', value: what, problem: `${what}, not a point`, advice: 'give one point a record' } };
+    return { coordinates: { columns: 'geometry', value: what }, place: { column: 'geometry', value: what, problem: `${what}, not a point`, advice: 'give one point a record', ...(feature.geometry === null ? { absent: true as const } : {}) } };
   }
   const [x, y] = position as [number, number];
   const coordinates = { columns: 'geometry', value: `${roundedText(x / crs.metresPerUnit, crs)}, ${roundedText(y / crs.metresPerUnit, crs)}` };

@@ -1,101 +1,151 @@
-import { noShapes, type KnownShapes } from '../density/drawnEllipse.js';
+import { noShapes } from '../density/drawnEllipse.js';
 import { UserError, type ComplaintCode } from '../errors.js';
+import { CALL_DEFAULTS } from '../geodesy/sections/placeFromCalls.js';
+import type { SectionLayer } from '../geodesy/sections/sectionLayer.js';
+import type { Datum, DatumShift } from '../geodesy/types.js';
 import type { Site } from '../site/types.js';
 import { US_SURVEY_FOOT_M } from '../units.js';
-import { farFromParcel } from './farFromParcel.js';
+import { apiRemarks } from './apiRemarks.js';
+import { reachOf } from './farFromParcel.js';
 import type { Slip } from './implausible.js';
-import { placeRecord } from './placeRecord.js';
-import { isFault, type Fault, type RawPlace, type RawRecord } from './rawRecord.js';
+import { joinDuplicates } from './joinDuplicates.js';
+import type { LocateContext } from './locateContext.js';
+import type { Fault, RawRecord } from './rawRecord.js';
 import { readRawRecords } from './readRawRecords.js';
-import { recordDatum } from './recordDatum.js';
-import type { RecordSource } from './recordSource.js';
-import type { Records, UnplacedRecord, WellRecord } from './types.js';
+import { decisionOf } from './recordLog.js';
+import { RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
+import { solveRecord, type Outcome } from './solveRecord.js';
+import type { Decision, JoinedRow, Records, WellRecord } from './types.js';
 
 export const LOCATE_DEFAULTS = Object.freeze({
   /** A record farther than this from the parcel is a mistake in its row, not a place; blunders of a mile stay inside. */
   maxDistanceM: 10_000,
-  /** Blunders are spread over a disc of a mile: a section off, a wrong quarter. */
+  /** Blunders are spread over a disc of a mile: a section off, a wrong quarter. Where the section is known, over it. */
   blunderRadiusM: 5280 * US_SURVEY_FOOT_M,
+  /** Standard error of a corner of the section layer per axis: as read off a map at 1:24,000. */
+  sectionSdM: CALL_DEFAULTS.vertexSdM,
+  /** Standard error of measuring a call on the ground: this, and this share of its length. */
+  callSdM: CALL_DEFAULTS.measureSdM,
+  callSdShare: CALL_DEFAULTS.measureSdShare,
+  /** Statements of a well that lie as far apart as right ones do with less than this chance disagree: 1 in 1,000. */
+  disagreeBelow: 0.001,
   /** Rows that are held at a time while records are located; it changes no result. */
   batchRows: 10_000,
 });
-export type LocateOptions = { readonly [K in keyof typeof LOCATE_DEFAULTS]?: number };
+export type LocateOptions = { readonly [K in keyof typeof LOCATE_DEFAULTS]?: number } & {
+  /** Sections in the survey's frame, for records that name them. */
+  readonly sections?: SectionLayer;
+};
 
 /** Rows with the same id closer than this are the same entry twice: below any digit that a permit gives. */
 const SAME_PLACE_M = 0.05;
 /** One row alone may be off by any slip; from two on a slip that they all share is the file's. */
 const SHARED_SLIP_FROM = 2;
-
-type Outcome = { readonly record: WellRecord } | { readonly fault: Fault; readonly slip: Slip | null };
+/** Share of a file's rows that name sections within reach from which one beyond the meridian is a slip of side. */
+const MOSTLY_NEAR = 0.9;
 
 /** What is remembered of a record that was placed: enough to tell its like again. */
 type Remembered = Pick<WellRecord, 'source' | 'row' | 'x' | 'y'>;
+
+/** A batch of rows, with what is needed to look at them once more when all rows are known. */
+interface Batch extends Lists {
+  /** Rows of `placed`, one for one. */
+  readonly raws: RawRecord[];
+}
+type Lists = { readonly [K in 'placed' | 'unplaced' | 'disagreements' | 'repairs' | 'apiRemarks' | 'log']: NonNullable<Records[K]>[number][] };
 
 /**
  * Historic records as places with error in the survey's frame (metres).
  *
  * A row that cannot be placed (no coordinates, no number, far from the parcel) is returned in `unplaced` with its column, its
  * value and what to do; a mistake in a file as a whole is a UserError. Records of all files together have distinct ids: a
- * repeated id becomes `…#2`, `…#3` with a note; a row that repeats both id and place of an earlier one is unplaced.
+ * repeated id becomes `…#2`, `…#3` with a note; a row that repeats both id and place of an earlier one is unplaced. Rows
+ * that tell of one well (the same API number, or places and attributes that agree) are joined into one record.
  */
 export function locateRecords(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Records {
-  const placed: WellRecord[] = [];
-  const unplaced: UnplacedRecord[] = [];
-  for (const batch of locateInBatches(sources, site, options)) {
-    for (const record of batch.placed) placed.push(record);
-    for (const record of batch.unplaced) unplaced.push(record);
+  const all = emptyBatch();
+  const shares = new Map<string, number>();
+  const seen = function* (): Generator<RecordSource> {
+    for (const source of sources) {
+      shares.set(source.name, source.settings.blunderShare ?? RECORD_FILE_DEFAULTS.blunderShare);
+      yield source;
+    }
+  };
+  for (const batch of batches(seen(), site, options)) {
+    for (const key of Object.keys(all) as Array<keyof Batch>) for (const each of batch[key]) (all[key] as unknown[]).push(each);
   }
-  return { placed, unplaced };
+  const { raws, ...lists } = all;
+  const { placed, joined, disagreements } = joinDuplicates(lists.placed, raws, {
+    disagreeBelow: options.disagreeBelow ?? LOCATE_DEFAULTS.disagreeBelow, shareOf: (record) => shares.get(record.source)!,
+  });
+  return { ...lists, placed, joined, disagreements: [...lists.disagreements, ...disagreements], log: withJoins(lists.log, joined) };
 }
 
 /**
  * The same in batches of `batchRows` rows, in their order: what is held at a time grows with the batch. Of earlier rows only
- * id and place are remembered. A slip that a whole file shares is known, and thrown, at the file's end.
+ * id and place are remembered, so rows that tell of one well are not joined. A slip that a whole file shares is known, and
+ * thrown, at the file's end.
  */
 export function* locateInBatches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Generator<Records> {
+  for (const { raws, ...lists } of batches(sources, site, options)) yield lists;
+}
+
+function* batches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions): Generator<Batch> {
   const settings = { ...LOCATE_DEFAULTS, ...options };
+  const { sectionSdM, callSdM, callSdShare, disagreeBelow, blunderRadiusM, batchRows } = settings;
   const byId = new Map<string, Remembered[]>();
+  const shared = withSharedShifts(site);
+  const common = {
+    site: shared, reach: reachOf(shared, settings.maxDistanceM), layer: settings.sections ?? null, disagreeBelow, blunderRadiusM,
+    ways: { sectionSdM, callSdM, callSdShare, areas: new Map() },
+  };
   for (const source of sources) {
     const slips = new SharedSlip();
-    const shapes = noShapes();
+    const context: LocateContext = { ...common, source, shapes: noShapes() };
     let batch = emptyBatch();
     let rows = 0;
+    let mostlyNear: boolean | null = null;
     for (const raw of readRawRecords(source)) {
-      const outcome = outcomeOf(raw, { source, site, shapes, ...settings });
+      const first = solveRecord(raw, context, { rangeByFile: false });
+      const outcome = first.section.mirror && (mostlyNear ??= sectionsMostlyNear(context)) ? solveRecord(raw, context, { rangeByFile: true }) : first;
       slips.count(outcome);
-      const same = byId.get(raw.recordId);
-      const fault = 'fault' in outcome ? outcome.fault : repeatFault(outcome.record, same, raw);
-      if (fault) {
-        const { column, value, problem, advice } = fault;
-        batch.unplaced.push({ recordId: raw.recordId, source: source.name, row: raw.row, column, value, problem, advice });
-      } else if ('record' in outcome) {
-        const { x, y, row } = outcome.record;
-        batch.placed.push(numbered(outcome.record, same));
-        const remembered = { source: source.name, row, x, y };
-        if (same) same.push(remembered); else byId.set(raw.recordId, [remembered]);
-      }
-      if (++rows % settings.batchRows === 0) {
+      enter(batch, outcome, { raw, source, byId });
+      if (++rows % batchRows === 0) {
         yield batch;
         batch = emptyBatch();
       }
     }
     slips.refuse(source);
-    if (batch.placed.length + batch.unplaced.length > 0) yield batch;
+    if (batch.log.length > 0) yield batch;
   }
 }
 
-function emptyBatch(): { placed: WellRecord[]; unplaced: UnplacedRecord[] } {
-  return { placed: [], unplaced: [] };
+/** Enters what became of a row into the lists of its batch. */
+function enter(batch: Batch, outcome: Outcome, { raw, source, byId }: { readonly raw: RawRecord; readonly source: RecordSource; readonly byId: Map<string, Remembered[]> }): void {
+  const about = { recordId: raw.recordId, source: source.name, row: raw.row };
+  const same = byId.get(raw.recordId);
+  const fault = 'fault' in outcome ? outcome.fault : repeatFault(outcome.record, same, raw);
+  for (const repair of outcome.repairs) batch.repairs.push({ ...about, ...repair });
+  const { apiNumber, remarks } = apiRemarks(raw, source);
+  for (const remark of remarks) batch.apiRemarks.push({ ...about, value: raw.apiNumber, remark });
+  if (fault) {
+    const { column, value, problem, advice } = fault;
+    batch.unplaced.push({ ...about, column, value, problem, advice });
+    batch.log.push(decisionOf(about, { outcome, fault, record: null }));
+  } else if ('record' in outcome) {
+    const placed = numbered(outcome.record, same);
+    const record = apiNumber === null ? placed : { ...placed, apiNumber };
+    batch.placed.push(record);
+    batch.raws.push(raw);
+    const remembered = { source: source.name, row: raw.row, x: record.x, y: record.y };
+    if (same) same.push(remembered); else byId.set(raw.recordId, [remembered]);
+    for (const each of outcome.disagreements) batch.disagreements.push({ ...about, recordId: record.recordId, ...each });
+    batch.log.push(decisionOf({ ...about, recordId: record.recordId }, { outcome, fault: null, record }));
+  }
 }
 
-function outcomeOf(raw: RawRecord, options: { source: RecordSource; site: Site; shapes: KnownShapes } & Required<LocateOptions>): Outcome {
-  const { place } = raw;
-  if (isFault(place)) return { fault: place, slip: null };
-  if (raw.fault) return { fault: raw.fault, slip: null };
-  const datums = recordDatum(raw, options.source);
-  if ('problem' in datums) return { fault: datums, slip: null };
-  const readable: RawRecord & { place: RawPlace } = { ...raw, place };
-  return farFromParcel(readable, datums, options) ?? { record: placeRecord(readable, datums, options) };
+function emptyBatch(): Batch {
+  return { placed: [], raws: [], unplaced: [], disagreements: [], repairs: [], apiRemarks: [], log: [] };
 }
 
 /** A file in which every row with coordinates has the same slip is described wrongly as a whole. */
@@ -129,6 +179,7 @@ function sharedSlip(source: RecordSource, { kind, words, rows }: Pick<Slip, 'kin
     latitude_sign: 'write north latitudes without a minus sign',
     metres: 'state a CRS whose unit is the metre',
     feet: 'state a CRS whose unit is the foot',
+    utm_zone: 'state the CRS of the zone that the coordinates are in',
   }[kind];
   return new UserError({
     code, where: source.name, found: `no row within reach of the parcel, though ${rows} would be with ${words}`,
@@ -150,4 +201,41 @@ function numbered(record: WellRecord, same: readonly Remembered[] | undefined): 
   const others = same.map(({ source, row }) => `${source}, row ${row}`).join('; ');
   const note = `id also in ${others}, elsewhere: taken as a well of its own; if it is the same well, keep the better row`;
   return { ...record, recordId: `${record.recordId}#${same.length + 1}`, note: [record.note, note].filter((text) => text !== '').join('; ') };
+}
+
+/** The site with each way between datums built once. */
+function withSharedShifts(site: Site): Site {
+  const ways = new Map<Datum, DatumShift>();
+  return {
+    ...site,
+    shiftFrom: (datum) => {
+      const known = ways.get(datum);
+      if (known) return known;
+      const way = site.shiftFrom(datum);
+      ways.set(datum, way);
+      return way;
+    },
+  };
+}
+
+/** The log with what became of the rows that were joined. */
+function withJoins(log: readonly Decision[], joined: readonly JoinedRow[]): readonly Decision[] {
+  if (joined.length === 0) return log;
+  const into = new Map(joined.map((each) => [`${each.source} ${each.row}`, each]));
+  return log.map((line) => {
+    const join = into.get(`${line.source} ${line.row}`);
+    return join ? { ...line, sureTo: `${line.sureTo}; joined into ${join.into}: ${join.why}` } : line;
+  });
+}
+
+/** Whether the rows of a file that name a section in full name one within reach nearly all. Asked of a file only where a row gives cause. */
+function sectionsMostlyNear(context: LocateContext): boolean {
+  let [named, near] = [0, 0];
+  for (const raw of readRawRecords(context.source)) {
+    if (raw.location === null) continue;
+    const { section } = solveRecord(raw, context, { rangeByFile: false });
+    if (section.named) named++;
+    if (section.near) near++;
+  }
+  return near >= MOSTLY_NEAR * named;
 }

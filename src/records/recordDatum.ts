@@ -1,26 +1,48 @@
 import { UserError } from '../errors.js';
-import type { Datum } from '../geodesy/types.js';
+import type { Crs, Datum } from '../geodesy/types.js';
+import { datumByDate, type DatedDatum } from './datumByDate.js';
 import { datumWord } from './datumWord.js';
 import type { Fault, RawRecord } from './rawRecord.js';
-import { sourceCrs, type RecordFileSettings, type RecordSource } from './recordSource.js';
+import type { RecordFileSettings, RecordSource } from './recordSource.js';
 
 /** Datums that a record may be in with their weights, which sum to 1; a single one where it is known. */
 export type DatumWeights = ReadonlyArray<{ readonly datum: Datum; readonly weight: number }>;
 
 const WANTED = 'NAD27, NAD83, NAD83(2011) or WGS 84, or blank where nobody knows';
 
+/** The datums of a row, and what has to be said of how they were found. */
+export interface RowDatum {
+  readonly weights: DatumWeights;
+  readonly note: string;
+}
+
+/** What the datum is wanted for, where it is not the row's coordinates. */
+export interface DatumWish {
+  /** CRS that the coordinates are in; null for angles whose file names none. */
+  readonly crs: Crs | null;
+  /** Datum that stands beside the coordinates in a text. */
+  readonly stated?: Datum;
+}
+
 /**
- * The datum of a row: its own, else the file's, else the CRS's, else the stated weights of an unknown one. A row that has
- * none of these is a UserError, since a datum taken for granted is off by up to 100 m in the lower 48.
+ * The datum of a row: its own, else by the date of its map, else the file's, else the CRS's, else the stated weights of an
+ * unknown one. A row that has none of these is a UserError, since a datum taken for granted is off by up to 100 m in the
+ * lower 48.
  */
-export function recordDatum(raw: RawRecord, source: RecordSource): DatumWeights | Fault {
+export function recordDatum(raw: RawRecord, source: RecordSource, { crs, stated }: DatumWish): RowDatum | Fault {
+  if (stated !== undefined) return { weights: [{ datum: stated, weight: 1 }], note: '' };
+  const dated = datumByDate(raw.mapDate, source.settings.datumByDate ?? [], `${source.name}, datum_by_date`);
+  const found = weightsOf(raw, source, { crs, dated });
+  return 'problem' in found ? found : { weights: found, note: dated.note };
+}
+
+function weightsOf(raw: RawRecord, source: RecordSource, { crs, dated }: { readonly crs: Crs | null; readonly dated: DatedDatum }): DatumWeights | Fault {
   const { settings, name } = source;
   const column = settings.columns?.datum ?? 'datum';
   const row = raw.datumText === null ? 'unknown' : datumWord(raw.datumText);
   if (row === null) {
     throw new UserError({ code: 'datum_unknown', where: `${name}, row ${raw.row}, column ${column}`, found: `"${raw.datumText}"`, wanted: WANTED });
   }
-  const crs = sourceCrs(source);
   if (crs?.kind === 'projected') {
     const clash = row !== 'unknown' && family(row) !== family(crs.datum);
     if (!clash) return [{ datum: crs.datum, weight: 1 }];
@@ -32,9 +54,11 @@ export function recordDatum(raw: RawRecord, source: RecordSource): DatumWeights 
   if (row !== 'unknown') return [{ datum: row, weight: 1 }];
   // "unknown" in so many words overrides the file's datum; a blank cell does not.
   const saysUnknown = raw.datumText !== null && raw.datumText.trim() !== '';
-  const file = fileDatum(settings, name);
+  if (!saysUnknown && dated.datum !== null && dated.datum !== 'unknown') return [{ datum: dated.datum, weight: 1 }];
+  const byRule = dated.datum === 'unknown';
+  const file = byRule ? null : fileDatum(settings, name);
   if (!saysUnknown && file !== null) return [{ datum: file, weight: 1 }];
-  if (!saysUnknown && crs !== null) return [{ datum: crs.datum, weight: 1 }];
+  if (!saysUnknown && !byRule && crs !== null) return [{ datum: crs.datum, weight: 1 }];
   const weights = unknownWeights(settings, name);
   if (weights !== null) return weights;
   throw new UserError({

@@ -2,14 +2,17 @@ import { UserError } from '../errors.js';
 import { nearest } from '../nearest.js';
 import { quantity } from '../units.js';
 import { numberText } from './digits.js';
+import { locationText } from './locationColumns.js';
 import type { Fault, RawRecord } from './rawRecord.js';
 import type { RecordColumns } from './recordSource.js';
 
 /** Text of the cell under a mapped key; empty where the key is not mapped. */
-export type Cell = (key: keyof RecordColumns) => string;
+export type Cell = (key: CellKey) => string;
+/** Keys of one column each; a group may have several. */
+export type CellKey = Exclude<keyof RecordColumns, 'group'>;
 
 /** A row without its coordinates. */
-export type RecordHead = Omit<RawRecord, 'place' | 'coordinates'>;
+export type RecordHead = Omit<RawRecord, 'place' | 'coordinates' | 'group'>;
 
 /** Everything but the coordinates; a length that nobody can read becomes the row's fault. */
 export function recordHead(cell: Cell, about: { columns: RecordColumns; row: number }): RecordHead {
@@ -26,7 +29,9 @@ export function recordHead(cell: Cell, about: { columns: RecordColumns; row: num
   return {
     recordId: cell('recordId') || `row ${about.row}`, row: about.row,
     datumText: columns.datum === undefined ? null : cell('datum'),
-    ...lengths, fault, group: cell('group'), note: cell('note'),
+    location: locationText(cell, columns), meridian: cell('meridian'), mapDate: cell('mapDate'), sourceText: cell('source'),
+    apiNumber: cell('apiNumber'), name: cell('name'), operator: cell('operator'), wellNumber: cell('wellNumber'),
+    ...lengths, fault, note: cell('note'),
   };
 }
 
@@ -40,6 +45,21 @@ function length(text: string, columnName: string): number | Fault {
     if (!(error instanceof UserError)) throw error;
     return fault;
   }
+}
+
+/** What makes up a record's group, joined: empty where every cell is. */
+export function groupText(cells: readonly string[]): string {
+  return cells.some((text) => text !== '') ? cells.join(' / ') : '';
+}
+
+/** Columns of a group, one or several. */
+export function groupColumns({ group }: RecordColumns): readonly string[] {
+  return group === undefined ? [] : typeof group === 'string' ? [group] : group;
+}
+
+/** Mapped columns of one cell each. */
+export function cellColumns(columns: RecordColumns): Array<[CellKey, string]> {
+  return Object.entries(columns).filter(([key, name]) => key !== 'group' && name !== undefined) as Array<[CellKey, string]>;
 }
 
 /** A mapped column of a file; a name that the file does not have is a UserError. */

@@ -56,7 +56,7 @@ const CLASS_WORDS: Readonly<Record<Exclude<SourceClass, 'map'>, string>> = {
 };
 
 /** Error of a source: as stated, else by its class. `where` names the file, for messages. */
-export function sourceError(stated: StatedError, source: { readonly class: SourceClass; readonly mapScale: number | null }, where: string): SourceError {
+export function sourceError(stated: StatedError, source: { readonly class: SourceClass; readonly mapScale: number | null; readonly classSdM?: number | null }, where: string): SourceError {
   const name = source.class === 'map' ? mapWords(source.mapScale) : CLASS_WORDS[source.class];
   const given = [stated.errorM, stated.error90M, stated.error95M].filter((value) => value !== null);
   if (given.length > 1) {
@@ -74,6 +74,8 @@ export function sourceError(stated: StatedError, source: { readonly class: Sourc
     const sdM = stated.error95M / RADIAL_95;
     return { sdM, words: `${name}, stated ${metres(stated.error95M)} (95 % radius), ${metres(sdM)} per axis` };
   }
+  const own = source.classSdM ?? null;
+  if (own !== null) return { sdM: own, words: `${name} ${metres(own)} (as stated for its class)` };
   if (source.class !== 'map') return { sdM: CLASS_SD_M[source.class], words: `${name} ${metres(CLASS_SD_M[source.class])}` };
   if (source.mapScale === null) {
     throw new UserError({

@@ -1,6 +1,7 @@
 import type { Datum } from '../geodesy/types.js';
 import type { EllipseExcess } from '../density/region95.js';
 import type { Density } from '../density/types.js';
+import type { RepairKind } from './repairKinds.js';
 
 /** A historic record (permit, map point) that has become a place with an error. Metres in the survey's frame. */
 export interface WellRecord {
@@ -34,6 +35,10 @@ export interface WellRecord {
   readonly group: { readonly id: string; readonly sharedSdM: number } | null;
   /** Chance that a steel casing was set and left, before any search. */
   readonly pCasing: number;
+  /** API well number as the standard writes it; absent where the file has none that can be read. */
+  readonly apiNumber?: string;
+  /** Rows that were joined into this record, its own first, as `file, row n`; absent where it is one row. */
+  readonly joined?: readonly string[];
 }
 
 /** A record that could not be placed, with what to do about it. */
@@ -49,7 +54,84 @@ export interface UnplacedRecord {
   readonly advice: string;
 }
 
+/** Statements of one well that lie farther apart than their errors allow. Distances in metres. */
+export interface Disagreement {
+  readonly recordId: string;
+  readonly source: string;
+  readonly row: number;
+  /** What the position rests on, and what disagrees with it. */
+  readonly kept: string;
+  readonly other: string;
+  /** Between the middles of both, m. */
+  readonly distanceM: number;
+  /** Chance that right statements lie at least so far apart. */
+  readonly p: number;
+  /** Chance that the density gives the other one. */
+  readonly otherShare: number;
+}
+
+/** A slip of the pen that would explain a place where no record can be. */
+export interface Repair {
+  readonly recordId: string;
+  readonly source: string;
+  readonly row: number;
+  readonly kind: RepairKind;
+  readonly column: string;
+  /** What is changed, in words, and the text before and after. */
+  readonly what: string;
+  readonly before: string;
+  readonly after: string;
+  /** From the parcel, m; Infinity where the place as written is none. */
+  readonly distanceBeforeM: number;
+  readonly distanceAfterM: number;
+  /** What speaks for it. */
+  readonly evidence: string;
+  /** True where the survey file allows it and it was done, false where it is proposed. */
+  readonly applied: boolean;
+}
+
+/** A row that was joined into another one's record, since both tell of one well. */
+export interface JoinedRow {
+  readonly recordId: string;
+  readonly source: string;
+  readonly row: number;
+  /** Record that it was joined into. */
+  readonly into: string;
+  readonly why: string;
+  /** How far apart both positions lie, m. */
+  readonly distanceM: number;
+}
+
+/** What is odd about an API number; the record is placed all the same. */
+export interface ApiRemark {
+  readonly recordId: string;
+  readonly source: string;
+  readonly row: number;
+  readonly value: string;
+  readonly remark: string;
+}
+
+/** How one row became a place, or why it did not. */
+export interface Decision {
+  readonly recordId: string;
+  readonly source: string;
+  readonly row: number;
+  /** What was read, and as what. */
+  readonly readAs: string;
+  /** Datum shifts, and repairs. */
+  readonly movedBy: string;
+  readonly restsOn: string;
+  /** How sure the place is, or that there is none. */
+  readonly sureTo: string;
+}
+
 export interface Records {
   readonly placed: readonly WellRecord[];
   readonly unplaced: readonly UnplacedRecord[];
+  readonly disagreements?: readonly Disagreement[];
+  readonly repairs?: readonly Repair[];
+  readonly joined?: readonly JoinedRow[];
+  readonly apiRemarks?: readonly ApiRemark[];
+  /** One line a row, in the order of the files. */
+  readonly log?: readonly Decision[];
 }
