@@ -32,12 +32,14 @@ export function readAliquot(cursor: Cursor): AliquotStep[] {
     if (written.length > MOST_STEPS) throw cursor.refuse(`a part of at most ${MOST_STEPS} steps`, { at: first });
     cursor.at += unit.count;
     const gap = connector(cursor);
+    // NENE-NWNE: two parts rather than a part of a part.
+    if (gap === 1 && unit.steps.length > 1 && aliquotAt(cursor, gap)!.steps.length > 1) throw cursor.refuse('one part of a section');
     if (gap === null) return written.toReversed();
     cursor.at += gap;
   }
 }
 
-/** Tokens between one part and the part that it belongs to: `of the`, a hyphen, or none; null where none follows. */
+/** Tokens between one part and the part that it belongs to: `of the`, a hyphen, a slash, or none; null where none follows. */
 function connector(cursor: Cursor): number | null {
   let gap = 0;
   const list = cursor.isMark(',') || cursor.isMark(';') || cursor.isMark('&') || cursor.isWord(AND);
@@ -47,7 +49,7 @@ function connector(cursor: Cursor): number | null {
     }
     return null;
   }
-  if (cursor.isMark('-')) gap = 1;
+  if (cursor.isMark('-') || cursor.isMark('/')) gap = 1;
   else if (cursor.isWord(OF)) gap = cursor.isWord(THE, 1) ? 2 : 1;
   return startsAliquot(cursor, gap) ? gap : null;
 }

@@ -132,7 +132,7 @@ function readParts(cursor: Cursor): Parts {
       marked = true;
       wordMarks ||= mark === 'word';
     }
-    if (parts.length === 3 || text.includes('.') || !takeSeparator(cursor, { marked: mark !== null, spaced: share > parts.length })) return { parts, at, marked };
+    if (parts.length === 3 || text.includes('.') || !takeSeparator(cursor, { marked, spaced: share > parts.length })) return { parts, at, marked };
   }
 }
 

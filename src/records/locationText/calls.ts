@@ -1,7 +1,7 @@
 import type { Side } from '../../geodesy/sections/types.js';
 import type { Cursor } from './cursor.js';
 import { lengthAhead, LENGTH_UNIT_M, readLength, type Length } from './lengths.js';
-import { AND, FROM, LINE, sideOf, THE } from './words.js';
+import { AND, FROM, LINE, OF, sideOf, THE } from './words.js';
 
 export interface CallText extends Length {
   readonly from: Side;
@@ -29,7 +29,7 @@ function sideAhead(cursor: Cursor, ahead: number): { side: Side; end: number; li
   return cursor.isWord(LINE, ahead + 1 + slash) ? { side, end: ahead + 2 + slash, line: true } : { side, end: ahead + 1, line: false };
 }
 
-type Opening = { readonly way: 'joined' | 'f' | 'from' | 'line'; readonly at: number };
+type Opening = { readonly way: 'joined' | 'f' | 'from' | 'line' | 'off'; readonly at: number };
 
 /** How the line of a call is named behind its length, and where; null where no call follows. */
 function openingAhead(cursor: Cursor, ahead: number): Opening | null {
@@ -44,22 +44,33 @@ function openingAhead(cursor: Cursor, ahead: number): Opening | null {
     const at = ahead + (cursor.isWord(THE, ahead + 1) ? 2 : 1);
     return sideAhead(cursor, at) ? { way: 'from', at } : null;
   }
-  return sideAhead(cursor, ahead)?.line ? { way: 'line', at: ahead } : null;
+  const side = sideAhead(cursor, ahead);
+  if (side === null) return null;
+  if (side.line) return { way: 'line', at: ahead };
+  // 660' S of the N line.
+  if (!cursor.isWord(OF, side.end) && !cursor.isWord(FROM, side.end)) return null;
+  const at = side.end + (cursor.isWord(THE, side.end + 1) ? 2 : 1);
+  return sideAhead(cursor, at)?.line ? { way: 'off', at } : null;
 }
+
+const OPPOSITE: Readonly<Record<Side, Side>> = { N: 'S', S: 'N', E: 'W', W: 'E' };
 
 /** Whether a footage call begins here, with its length or, as in `FNL 660`, with its line. */
 export function startsCall(cursor: Cursor): boolean {
   const length = lengthAhead(cursor);
   if (length !== null) return openingAhead(cursor, length.end) !== null;
   const opening = openingAhead(cursor, 0);
-  if (opening === null || opening.way === 'line') return false;
+  if (opening === null || opening.way === 'line' || opening.way === 'off') return false;
   return lengthAhead(cursor, lineEnd(cursor, opening)) !== null;
 }
 
+/** `FNL: 660`, `FNL=660`, `FNL-660`. */
+const isGap = (cursor: Cursor, ahead: number): boolean => cursor.isMark(':', ahead) || cursor.isMark('=', ahead) || cursor.isMark('-', ahead);
+
 function lineEnd(cursor: Cursor, opening: Opening): number {
-  if (opening.way === 'joined') return opening.at + 1;
-  const side = sideAhead(cursor, opening.at)!;
-  return side.line ? side.end : side.end + (cursor.isWord(LINE, side.end) ? 1 : 0);
+  const side = opening.way === 'joined' ? null : sideAhead(cursor, opening.at)!;
+  const end = side === null ? opening.at + 1 : side.line ? side.end : side.end + (cursor.isWord(LINE, side.end) ? 1 : 0);
+  return isGap(cursor, end) ? end + 1 : end;
 }
 
 /**
@@ -71,10 +82,14 @@ export function readCall(cursor: Cursor): CallText[] {
   if (behind === null) {
     const opening = openingAhead(cursor, 0)!;
     const [side] = readSides(cursor, opening, false);
+    if (isGap(cursor, 0)) cursor.next();
     return [{ ...readLength(cursor, bareUnit(cursor, opening)), from: side! }];
   }
   const opening = openingAhead(cursor, behind.end)!;
   const length = readLength(cursor, bareUnit(cursor, opening));
+  const toward = opening.way === 'off' ? sideOf(cursor.peek().text) : null;
+  const line = sideAhead(cursor, opening.at - behind.end);
+  if (toward !== null && line !== null && toward !== OPPOSITE[line.side]) throw cursor.refuse('a way from the line into the section, as in 660 ft S of the north line');
   return readSides(cursor, { ...opening, at: opening.at - behind.end }, true).map((from) => ({ ...length, from }));
 }
 

@@ -32,7 +32,8 @@ interface Reading {
  * Reads a location as it stands in a record: latitude and longitude, projected coordinates, a section with footage calls,
  * parts, lots or corner ties, distances from a map's corner, or several of these. Nothing is guessed: what can be read in
  * two ways, what is impossible, and every word that it does not know is refused with UserError `position_invalid`, which
- * quotes the text, the spot in it, and what was expected there. `where` is the file, row and column, for the message.
+ * quotes the text, the spot in it, and what was expected there. `where` is the file, row and column, for the message. Only
+ * what says nothing of the place is passed over: a county, a datum beside a section alone, words such as "located".
  */
 export function parseLocation(text: string, where: string, options: Partial<LocationTextOptions> = {}): LocationStatement {
   const cursor = new Cursor(text, where, { ...LOCATION_TEXT_DEFAULTS, ...options });
@@ -70,8 +71,8 @@ function readNext(cursor: Cursor, reading: Reading): void {
     if (token.text.length > 2 && token.text[0] === 'C' && isQuarterRun(token.text.slice(1))) cursor.splitWord(1);
     if (CENTRE.has(cursor.peek().text) && centreAhead(cursor)) return readCentre(cursor, sectionOf(reading, token));
   }
-  // A hyphen glued to a word or number joins it to the next; it is no sign.
-  if (token.kind === 'mark' && token.text === '-' && !token.spaced && cursor.follows('word', 'number', 'fraction')) {
+  // A hyphen glued to a word or number joins it to the next, and one with space behind it parts; a sign is neither.
+  if (token.kind === 'mark' && token.text === '-' && (cursor.peek(1).spaced || (!token.spaced && cursor.follows('word', 'number', 'fraction')))) {
     cursor.next();
     return;
   }

@@ -53,7 +53,7 @@ export function startsProjected(cursor: Cursor, draft: ProjectedDraft | null): b
   const token = cursor.peek();
   if (token.kind === 'word') {
     if (token.text === 'UTM' || STATE_PLANE.has(token.text) || (token.text === 'STATE' && cursor.peek(1).text === 'PLANE')) return true;
-    if (token.text === 'ZONE' && draft !== null) return true;
+    if (token.text === 'ZONE' && (draft !== null || saysUtm(cursor))) return true;
     if (PLAIN_LABELS.has(token.text) && labelled(cursor)) return true;
     if (draft !== null && unitAhead(cursor, 0) !== null) return true;
     if (stateZoneAhead(cursor, false) !== null) return true;
@@ -61,8 +61,10 @@ export function startsProjected(cursor: Cursor, draft: ProjectedDraft | null): b
   }
   if (token.kind !== 'number') return false;
   if (sideBehind(cursor) !== null) return isCoordinate(cursor, token, draft);
-  return draft?.system?.kind === 'UTM' && draft.easting === null && draft.northing === null && isLarge(token, PLAINLY_PROJECTED);
+  return (draft === null || (draft.easting === null && draft.northing === null)) && isLarge(token, PLAINLY_PROJECTED) && saysUtm(cursor);
 }
+
+const saysUtm = (cursor: Cursor): boolean => cursor.tokens.some((token) => token.kind === 'word' && token.text === 'UTM');
 
 /** Reads what begins here into the draft. */
 export function readProjected(cursor: Cursor, draft: ProjectedDraft): void {
@@ -86,6 +88,7 @@ export function readProjected(cursor: Cursor, draft: ProjectedDraft): void {
 /** The statement that the text makes; refused where it is not whole. */
 export function finishProjected(cursor: Cursor, draft: ProjectedDraft): Omit<ProjectedStatement, 'datum'> {
   const { system, easting, northing } = draft;
+  if (system === null && saysUtm(cursor)) throw cursor.refuse('the zone of the UTM coordinates', { at: draft.first });
   if (easting === null || northing === null) {
     throw cursor.refuse(easting === null && northing === null ? 'an easting and a northing beside their system' : `${easting === null ? 'an easting' : 'a northing'} too`, { at: draft.first });
   }
@@ -224,8 +227,13 @@ function setSystem(cursor: Cursor, draft: ProjectedDraft, system: ProjectedSyste
 /** `UTM zone 17`, `UTM 17N`, `UTM-17`, `17 T` with a band; zones south of the equator, and S that may be a band, are refused. */
 function readUtm(cursor: Cursor, draft: ProjectedDraft): void {
   const first = cursor.next();
-  if (!cursor.takeMark('-')) cursor.takeMark(',');
-  if (cursor.peek().text === 'ZONE' || cursor.peek().text === 'Z') cursor.next();
+  if (first.text === 'UTM') {
+    if (!cursor.takeMark('-')) cursor.takeMark(',');
+    const zoned = cursor.peek().text === 'ZONE' || cursor.peek().text === 'Z';
+    // UTM NAD83 Zone 17: the zone stands elsewhere.
+    if (!zoned && (!cursor.isNumber() || cursor.peek().text.length > 2)) return;
+    if (zoned) cursor.next();
+  }
   if (!cursor.takeMark('-')) cursor.takeMark(':');
   const token = cursor.next();
   const zone = token.kind === 'number' && /^\d{1,2}$/.test(token.text) ? Number(token.text) : 0;
@@ -262,6 +270,7 @@ const isZoneNumber = (cursor: Cursor): boolean => cursor.peek().text === 'ZONE' 
 /** `zone 3702`, `zone 17` where UTM is named, `zone PA South`. */
 function readZone(cursor: Cursor, draft: ProjectedDraft): void {
   const first = cursor.peek();
+  if (first.text === 'ZONE' && saysUtm(cursor) && /^\d{1,2}$/.test(cursor.peek(1).text)) return readUtm(cursor, draft);
   if (first.text === 'ZONE') cursor.next();
   const named = stateZoneAhead(cursor, true);
   if (named !== null) {

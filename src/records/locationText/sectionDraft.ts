@@ -46,10 +46,10 @@ export function addCall(cursor: Cursor, draft: SectionDraft, call: CallText, at:
 
 const feet = (m: number): number => Math.round((m * 3937) / 1200);
 
-/** Names the part; a part named twice has to be the same, save the one that calls are measured from. */
+/** Names the part, once; the part that calls are measured from may stand beside it. */
 export function setPart(cursor: Cursor, draft: SectionDraft, steps: readonly AliquotStep[], { at, linked }: { readonly at: Token; readonly linked: boolean }): void {
   const before = draft.part;
-  if (before !== null && before.join() !== steps.join()) {
+  if (before !== null) {
     const from = draft.callLinks.concat(draft.corner?.link ?? null);
     const replaces = from.some((link) => isPart(link) && link.steps.join() === before.join());
     if (!replaces && !linked) throw cursor.refuse('one part of the section, named once', { at });

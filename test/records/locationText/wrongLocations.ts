@@ -40,6 +40,7 @@ export const WRONG: ReadonlyArray<readonly [text: string, spot: string, wanted: 
   ['39.3 N 80.2 W NAD27 NAD83', 'NAD', /one datum/],
   // Projected coordinates.
   ['UTM 17N 543210 E', 'UTM', /a northing too/],
+  ['UTM 543210 E 4349500 N', 'UTM', /the zone of the UTM/],
   ['UTM 17N', 'UTM', /an easting and a northing/],
   ['UTM 61 543210 E 4349500 N', '61', /UTM zone from 1 to 60/],
   ['UTM 17S 543210 E 4349500 N', 'S', /north of the equator/],
@@ -63,6 +64,7 @@ export const WRONG: ReadonlyArray<readonly [text: string, spot: string, wanted: 
   ['660,5 FNL 1980 FEL', '660,5', /comma groups three digits/],
   ['six sixty feet from the north line and 330 feet from the east line', 'sixty', /words that make one number/],
   ['six hundred sixty (606) feet from the north line and 330 feet from the east line', '606', /same number in digits/],
+  ["660' N of N line & 1980' W of E line", 'N', /into the section/],
   ['660 FNL 1980 FEL BHL', 'BHL', /words of a location/],
   // Corner ties.
   ['100 ft N of NE cor', '100', /into the section/],
@@ -74,6 +76,8 @@ export const WRONG: ReadonlyArray<readonly [text: string, spot: string, wanted: 
   // Parts.
   ['NE/4, SW/4', ',', /one part of a section/],
   ['NE/4 and SE/4 Sec 12', 'and', /one part of a section/],
+  ['NENE-NWNE', '-', /one part of a section/],
+  ['NE: NE', 'NE', /one part of the section/],
   ['NE SW Sec 12 NW NW', 'NW', /one part of the section/],
   ['NE NE NE NE NE', 'NE', /at most 4 steps/],
   ['Lots 3 and 4', 'Lots', /one lot/],
