@@ -7,8 +7,8 @@ import { VERTICAL_DERIVATIVE } from './verticalDerivative.js';
 export function gradient(grid: Grid, options: SpectralOptions = {}): { readonly east: Float64Array; readonly north: Float64Array; readonly down: Float64Array } {
   const spectrum = spectrumOf(grid, options);
   return {
-    east: applyOperator(spectrum, horizontalDerivativeOperator(90)),
-    north: applyOperator(spectrum, horizontalDerivativeOperator(0)),
+    east: applyOperator(spectrum, horizontalDerivativeOperator(90, grid.cellM)),
+    north: applyOperator(spectrum, horizontalDerivativeOperator(0, grid.cellM)),
     down: applyOperator(spectrum, VERTICAL_DERIVATIVE),
   };
 }

@@ -75,9 +75,17 @@ export function spectrumOf(grid: Grid, options: SpectralOptions = {}): Spectrum 
 }
 
 /** The values of the grid after the operator, NaN where the grid is NaN. The spectrum stays as it was. */
-export function applyOperator({ grid, plane, width, height, numbers }: Spectrum, operator: SpectralOperator): Float64Array {
+export function applyOperator(spectrum: Spectrum, operator: SpectralOperator): Float64Array {
+  return consume({ ...spectrum, numbers: spectrum.numbers.slice() }, operator);
+}
+
+/** One linear operator on a grid with gaps: see `spectrumOf` and `applyOperator`. */
+export function spectral(grid: Grid, operator: SpectralOperator, options: SpectralOptions = {}): Float64Array {
+  return consume(spectrumOf(grid, options), operator);
+}
+
+function consume({ grid, plane, width, height, numbers: field }: Spectrum, operator: SpectralOperator): Float64Array {
   const stride = spectrumStride(width);
-  const field = numbers.slice();
   eachWave({ width, height, cellM: grid.cellM }, operator, (at, re, im) => {
     const a = field[at]!, b = field[at + 1]!;
     field[at] = a * re - b * im;
@@ -90,11 +98,6 @@ export function applyOperator({ grid, plane, width, height, numbers }: Spectrum,
     for (let i = 0; i < grid.width; i++, n++) values[n] = Number.isNaN(grid.values[n]!) ? NaN : field[j * stride + i]! + planeValue(i, j);
   }
   return values;
-}
-
-/** One linear operator on a grid with gaps: see `spectrumOf` and `applyOperator`. */
-export function spectral(grid: Grid, operator: SpectralOperator, options: SpectralOptions = {}): Float64Array {
-  return applyOperator(spectrumOf(grid, options), operator);
 }
 
 interface Waves {

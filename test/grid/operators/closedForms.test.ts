@@ -98,12 +98,12 @@ describe('operators against closed forms (projected anomaly; Blakely 1995, ch. 1
     }
   });
 
-  it.each(CASES)('$name: where the source is one depth inside the edge, within 5 % beyond two depths', ({ run }) => {
+  it.each(CASES)('$name: where the source is one depth inside the edge, within 3.5 % beyond two depths', ({ run }) => {
     const near = CELLS / 2 - DEPTH_M;
     for (const field of FIELDS) {
       for (const [x, y] of [[near, 10], [-20, near], [30, -near]] as const) {
         const { got, wanted } = run(field, [x, y, DEPTH_M], CELLS);
-        expect(worstShare(got, wanted, 2 * DEPTH_M), `${field} at ${x}, ${y}`).toBeLessThan(0.05);
+        expect(worstShare(got, wanted, 2 * DEPTH_M), `${field} at ${x}, ${y}`).toBeLessThan(0.035);
       }
     }
   });
