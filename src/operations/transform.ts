@@ -45,8 +45,8 @@ const KINDS: Readonly<Record<string, Kind>> = Object.freeze({
   horizontal_derivative: { needs: ['azimuth_deg'], unit: 'nT/m', run: (grid, { azimuthDeg }) => horizontalDerivative(grid, azimuthDeg!) },
   reduction_to_pole: {
     needs: [], unit: 'nT',
-    run: (grid, { magnetisation, steadyBelowDeg }, { mainField: { inclinationDeg, declinationDeg, convergenceDeg } }) =>
-      reductionToPole(grid, { inclinationDeg, declinationDeg: declinationDeg - convergenceDeg }, { magnetisation, steadyBelowDeg }),
+    run: (grid, { magnetisation, steadyBelowDeg }, { mainField: { totalNT, inclinationDeg, declinationDeg, convergenceDeg } }) =>
+      reductionToPole(grid, { inclinationDeg, declinationDeg: declinationDeg - convergenceDeg, totalNT }, { magnetisation, steadyBelowDeg }),
   },
   analytic_signal: { needs: [], unit: 'nT/m', run: (grid) => analyticSignal(grid) },
   tilt: { needs: [], unit: 'deg', run: (grid) => tilt(grid) },

@@ -19,7 +19,7 @@ const WEIGHTS: readonly number[] = Object.freeze(Array.from({ length: REACH }, (
  * cells. k itself would ring along rows and columns from each reading that a gridded surface is bent by, and from its
  * edges. A plane gives its slope.
  *
- * Source: Fornberg (1988), Mathematics of Computation 51, 699-706 (weights); Blakely (1995), eq. 12.12 (i k).
+ * Source: Fornberg (1988), Mathematics of Computation 51, 699-706 (weights); Blakely (1995), ch. 12 (i k).
  */
 export function horizontalDerivativeOperator(azimuthDeg: number, cellM: number): SpectralOperator {
   const east = Math.sin((azimuthDeg * Math.PI) / 180);

@@ -6,7 +6,7 @@ import type { SpectralOperator, TransformedGrid } from './types.js';
 /** The padding spans this many heights: from there on less than a thousandth of a point's weight comes round the torus. */
 const PAD_PER_HEIGHT = 6;
 
-/** e^(−|k|h): the field as it is `heightM` higher. A plane stays as it is. Source: Blakely (1995), eq. 12.6. */
+/** e^(−|k|h): the field as it is `heightM` higher. A plane stays as it is. Source: Blakely (1995), ch. 12. */
 export function upwardOperator(heightM: number): SpectralOperator {
   return {
     response(east, north, out) {

@@ -2,7 +2,7 @@ import type { Grid } from '../../raster/types.js';
 import { spectral, type SpectralOptions } from './spectral.js';
 import type { SpectralOperator, TransformedGrid } from './types.js';
 
-/** |k|: growth of the field downwards, towards its sources. A plane has none. Source: Blakely (1995), eq. 12.13. */
+/** |k|: growth of the field downwards, towards its sources. A plane has none. Source: Blakely (1995), ch. 12. */
 export const VERTICAL_DERIVATIVE: SpectralOperator = Object.freeze({
   response(east: number, north: number, out: Float64Array) {
     out[0] = Math.sqrt(east * east + north * north);

@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Vector3 } from '../../../src/field/pole.js';
+import { totalFieldAnomaly } from '../../../src/field/totalField.js';
 import { analyticSignal } from '../../../src/grid/operators/analyticSignal.js';
 import { horizontalDerivative } from '../../../src/grid/operators/horizontalDerivative.js';
 import { reductionToPole } from '../../../src/grid/operators/reductionToPole.js';
@@ -120,6 +121,28 @@ describe('operators against closed forms (projected anomaly; Blakely 1995, ch. 1
     const made = pole(POLE_AM, [0, 0, DEPTH_M]);
     const grid = onGrid(CELLS, made, along(unitOf(65, -8)));
     expect(worstShare(reductionToPole(grid, field, { magnetisation: 'along_field' }).values, onGrid(CELLS, made, downwards))).toBeGreaterThan(0.1);
+  });
+});
+
+describe('reduction to the pole of the exact anomaly |F + B| − |F|', () => {
+  const totalNT = 52000;
+  const reduced = (m: number, inclinationDeg: number) => {
+    const unit = unitOf(inclinationDeg, -8), made = pole(m, [0, 0, DEPTH_M]);
+    const main = unit.map((c) => totalNT * c);
+    const grid = onGrid(CELLS, made, (b) => totalFieldAnomaly(b, main));
+    const { values, warnings } = reductionToPole(grid, { inclinationDeg, declinationDeg: -8, totalNT });
+    return { share: worstShare(values, onGrid(CELLS, made, downwards)), warnings };
+  };
+
+  it('is within 1.2 % for a source of 1,200 nT, and warns of one of 12,000 nT', () => {
+    for (const inclinationDeg of [65, 30]) {
+      const weak = reduced(-200, inclinationDeg);
+      expect(weak.share).toBeLessThan(0.012);
+      expect(weak.warnings).toEqual([]);
+      const strong = reduced(-2000, inclinationDeg);
+      expect(strong.share).toBeGreaterThan(0.03);
+      expect(strong.warnings.join()).toContain('% of the main field');
+    }
   });
 });
 
