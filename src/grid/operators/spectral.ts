@@ -42,7 +42,7 @@ export interface Spectrum {
  * torus, and transforms it.
  *
  * Edges, measured with continuation, derivatives and reduction to the pole of poles and dipoles on a grid 40 depths wide
- * (depth below the sensor, four cells; fields of 65°, 30° and −55°): a source four depths or more inside an edge comes out
+ * (depth below the sensor, four cells; fields of 65°, 30° and −55°): a source five depths or more inside an edge comes out
  * within 1 % of its peak right up to the edge. One depth inside it is within 3.5 % beyond two depths from the edge, and up
  * to 12 % at the edge. Of a source on the edge itself half is missing: only cells further inside are of use.
  */
