@@ -16,7 +16,7 @@ export interface Nature {
  * Prior odds before any reading (a working assumption, said in every note): casings and scrap are about as common among
  * what stands out on old oil fields, pieces of pipe and other poles somewhat less.
  */
-export const PRIOR = Object.freeze({ casing: 0.35, otherPole: 0.1, compact: 0.35, linear: 0.2 });
+export const PRIOR = Object.freeze({ casing: 0.35, otherPole: 0.2, compact: 0.3, linear: 0.15 });
 
 /**
  * Strengths of poles that are no casings, and moments of compact iron, as log-normals (a working assumption: joints and
@@ -33,7 +33,7 @@ const DEEP_SHARE = 0.2;
 /** Density of ln strength and depth for a line, which has neither stated: that of the middle of the others. */
 const LINE_DENSITY = 0.05;
 /** The stated range of strengths is softened by this share at either end (one standard deviation of ln). */
-const STRENGTH_SOFT = 0.3;
+const STRENGTH_SOFT = 0.2;
 /** A strength that the fit hardly knows still counts as known to this (ln): ignorance must not make rock a casing. */
 const MOST_LOG_SD = 0.7;
 /** Tops are believed above or below the stated range by this share of the reach (one standard deviation). */
@@ -82,12 +82,13 @@ function sizeDensity(value: number, { middle, logSd }: { readonly middle: number
   return (1 - ANYTHING_SHARE) * (normalPdf(Math.log(Math.max(1e-9, value) / middle) / logSd) / logSd) + ANYTHING_SHARE / ANYTHING_LOG_RANGE;
 }
 
-/** Density of a depth that is most likely shallow; one above ground counts by how far its error lets it reach below. */
+/** Density of a depth that is most likely shallow. Some iron stands above ground; the rest of what seems to must owe that to its error. */
 function shallow(depthM: number, depthSdM: number, reachM: number): number {
   const sd = Math.hypot(depthSdM, DEPTH_SOFT_M);
-  return normalCdf(depthM / sd) * (((1 - DEEP_SHARE) * Math.exp(-Math.max(0, depthM) / SHALLOW_M)) / SHALLOW_M + DEEP_SHARE / (2 * reachM));
+  return Math.max(STANDING_SHARE, normalCdf(depthM / sd)) * (((1 - DEEP_SHARE) * Math.exp(-Math.max(0, depthM) / SHALLOW_M)) / SHALLOW_M + DEEP_SHARE / (2 * reachM));
 }
 const DEPTH_SOFT_M = 0.3;
+const STANDING_SHARE = 0.15;
 
 /** Density of ln strength and depth that the stated casing has, its edges softened, with the errors of the fit. */
 function casingDensity({ poleAM, poleSdAM, depthM, depthSdM }: PoleValues, { poleAM: [weak, strong], depthM: [shallow, deep] }: Target, reachM: number): number {

@@ -2,7 +2,7 @@ import { UserError } from '../errors.js';
 import type { Grid } from '../raster/types.js';
 import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
-import { oddness } from './classify.js';
+import { PRIOR, oddness } from './classify.js';
 import { linearAnomaly, sourceAnomaly } from './describe.js';
 import { noiseModel, whiteNoise } from './noise.js';
 import { findPipes } from './pipes.js';
@@ -84,7 +84,7 @@ export function delineate(readings: Readings, residual: Grid, site: Site, option
   const notes = [
     `Sensor to source ${survey.reachM.toFixed(1)} m, lines ${survey.spacingM.toFixed(1)} m apart, sources fitted within ${survey.windowM.toFixed(0)} m. Ground is taken as flat.`,
     `Noise of the residual away from sources: ${noise.whiteSdNT.toFixed(2)} nT a reading (white), ${noise.correlatedSdNT.toFixed(1)} nT over ${noise.correlationM.toFixed(0)} m (geology and the like), positions ${noise.positionSdM} m per axis wandering over ${noise.positionCorrelationS} s, sensor height ${settings.heightSdM} m.`,
-    'Prior odds of casing, other pole, compact iron and line: 35, 10, 35 and 20 (a working assumption).',
+    `Prior odds of casing, other pole, compact iron and line: ${PRIOR.casing}, ${PRIOR.otherPole}, ${PRIOR.compact} and ${PRIOR.linear} (a working assumption).`,
   ];
   if (full) notes.push(`The search stopped at ${settings.maxSources} sources (max_sources); weaker ones were not looked for.`);
   return { list: list.map((anomaly, k) => ({ ...anomaly, anomalyId: `A${k + 1}` })), noise, notes };
