@@ -51,7 +51,7 @@ export function coordinateUnit(candidates: readonly Candidate[], about: {
     kind: slip.kind, column: text.columns, what: slip.words, before: text.value, after: placeText(candidate),
     distanceBeforeM: far.distanceM, distanceAfterM: distanceM, applied: allowed && slip === best!.slip,
     evidence: [
-      `${metres(distanceM)} from the parcel`, ...(named === null ? [] : [`within ${named.said.replace('anywhere in ', '')}, as the row says`]),
+      `${metres(distanceM)} from the parcel`, ...(named === null ? [] : [`within ${named.said}, as the row says`]),
       ...(rivals.length > 0 ? [`but so would ${mended.length - 1} other`] : []),
     ].join(', '),
   }));

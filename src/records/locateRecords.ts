@@ -87,7 +87,7 @@ export function locateRecords(sources: Iterable<RecordSource>, site: Site, optio
  * thrown, at the file's end.
  */
 export function* locateInBatches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Generator<Records> {
-  for (const { raws, ...lists } of batches(sources, site, options)) yield lists;
+  for (const { raws: _, ...lists } of batches(sources, site, options)) yield lists;
 }
 
 function* batches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions): Generator<Batch> {

@@ -8,7 +8,7 @@ import { parseLocation } from './locationText/parseLocation.js';
 import type { SectionStatement, SingleStatement } from './locationText/types.js';
 import { percent, type Candidate } from './placeRecord.js';
 import { isFault, type Fault, type RawRecord, type RawText } from './rawRecord.js';
-import { recordDatum } from './recordDatum.js';
+import { recordDatum, type DatumWeights } from './recordDatum.js';
 import { recordError } from './recordError.js';
 import { groupColumns } from './recordHead.js';
 import { RECORD_FILE_DEFAULTS, sourceCrs } from './recordSource.js';
@@ -74,7 +74,7 @@ function readUnits(raw: RawRecord, context: LocateContext, rangeByFile: boolean)
   }
   const named = section?.solutions.find((each) => each.parts[0]!.kind === 'area') ?? null;
 
-  const solveCoordinates = (text: RawText, kind: Solution['kind'], wish: Parameters<typeof recordDatum>[2], candidatesOf: (datums: Parameters<typeof statementCandidates>[1]) => { candidates: readonly Candidate[]; extraSdM: number }): void => {
+  const solveCoordinates = (text: RawText, kind: Solution['kind'], wish: Parameters<typeof recordDatum>[2], candidatesOf: (datums: DatumWeights) => { candidates: readonly Candidate[]; extraSdM: number }): void => {
     const datum = recordDatum(raw, source, wish);
     if ('problem' in datum) return void units.faults.push(datum);
     const error = recordError(raw, source);
@@ -108,10 +108,20 @@ function readUnits(raw: RawRecord, context: LocateContext, rangeByFile: boolean)
     const fileCrs = settings.crs ?? null;
     const crs = each.kind === 'projected' && each.system === null ? fileCrs : fileCrs?.kind === 'geographic' ? fileCrs : null;
     solveCoordinates(raw.location!, each.kind === 'mapCorner' ? 'map corner' : 'coordinates', { crs, ...(each.datum === undefined ? {} : { stated: each.datum }) },
-      (datums) => statementCandidates(each, datums, { fileCrs, where }));
+      (datums) => {
+        const western = inAmerica(each, datums);
+        if (western !== each) units.notes.push(`longitude of "${raw.location!.value}" without a side taken as west, since ${datums.map(({ datum }) => datum).join(' and ')} hold${datums.length === 1 ? 's' : ''} in North America only`);
+        return statementCandidates(western, datums, { fileCrs, where });
+      });
   }
   if (statement && section) addSection(units, section, { raw, statement: withMeridian(statement, raw, context), where, rangeByFile, context });
   return units;
+}
+
+/** A text's longitude that says nothing of its side, west of Greenwich where every datum it may be on holds in North America only. */
+function inAmerica<T extends SingleStatement>(statement: T, datums: DatumWeights): T {
+  if (statement.kind !== 'geographic' && statement.kind !== 'mapCorner') return statement;
+  return statement.lonSide === 'unsaid' && datums.every(({ datum }) => datum !== 'WGS 84') ? { ...statement, lonDeg: -statement.lonDeg } : statement;
 }
 
 function addSection(units: Units, section: SectionUnit, about: { readonly raw: RawRecord; readonly statement: SectionStatement; readonly where: string; readonly rangeByFile: boolean; readonly context: LocateContext }): void {

@@ -2,6 +2,7 @@ import { densityCovariance, densityMean } from '../density/moments.js';
 import type { Area, Covariance, Density } from '../density/types.js';
 import { UserError } from '../errors.js';
 import { aliquotPolygon } from '../geodesy/sections/aliquotPolygon.js';
+import { areaSpread } from '../geodesy/sections/areaSpread.js';
 import { placeFromCalls } from '../geodesy/sections/placeFromCalls.js';
 import { sectionGeometry } from '../geodesy/sections/sectionGeometry.js';
 import type { SectionLayer } from '../geodesy/sections/sectionLayer.js';
@@ -71,7 +72,7 @@ export function solveSection(statement: SectionStatement, text: RawText, ways: S
   if (footage) attempt(() => footagePlace(ground, footage));
   if (tie) {
     const { steps, calls } = tieAsCalls(tie);
-    attempt(() => pointOf(ground, { kind: 'corner tie', said: `tie ${formatLocation({ ...statement, reference: {}, part: null, centre: false, footage: null })}`, found: callsFrom(ground, tie.of, calls, steps) }));
+    attempt(() => pointOf(ground, { kind: 'corner tie', said: `tie ${formatLocation({ ...statement, reference: {}, part: null, centre: false, footage: null, tie: { ...tie, of: 'unsaid' } })} of ${partName(ground, tie.of === 'unsaid' ? part ?? WHOLE : tie.of)}`, found: callsFrom(ground, tie.of, calls, steps) }));
   }
   if (centre) {
     const within = part ?? (reference.lot === undefined ? WHOLE : 'lot');
@@ -153,6 +154,9 @@ function partArea({ section }: Ground, part: AliquotPart): Area {
   return [[aliquotPolygon(section, part)]];
 }
 
+/** Covariance of the edge of a polygon for corners off by 1 m on each axis: a line moves by two thirds of its ends' variance. */
+const LOT_SPREAD: Covariance = [2 / 3, 0, 2 / 3];
+
 function areaOf(ground: Ground, kind: 'part' | 'lot' | 'section'): Solution {
   const { ways, section, part, reference } = ground;
   const of = kind === 'part' ? part! : kind === 'lot' ? 'lot' : WHOLE;
@@ -161,10 +165,12 @@ function areaOf(ground: Ground, kind: 'part' | 'lot' | 'section'): Solution {
   if (known) return known;
   const area: Area = kind === 'part' ? partArea(ground, part!) : kind === 'lot' ? [[ways.layer.lotPolygon(reference, ways.where)]] : ground.area;
   const variance = ways.sectionSdM ** 2 + ways.groupSdM ** 2;
-  const density: Density = { parts: [{ role: 'place', kind: 'area', weight: 1, area, ...(variance > 0 ? { cov: [variance, 0, variance] as const } : {}) }] };
+  const spread = kind === 'lot' ? LOT_SPREAD : areaSpread(section, kind === 'part' ? part! : WHOLE);
+  const edgeCov = spread.map((value, k) => ways.sectionSdM ** 2 * value + (k === 1 ? 0 : ways.groupSdM ** 2)) as unknown as Covariance;
+  const density: Density = { parts: [{ role: 'place', kind: 'area', weight: 1, area, ...(variance > 0 ? { cov: edgeCov } : {}) }] };
   const cov = densityCovariance(density);
   const solution: Solution = {
-    kind, said: `anywhere in ${partName(ground, of)}`, parts: density.parts, ...densityMean(density), cov, sdM: Math.sqrt((cov[0] + cov[2]) / 2),
+    kind, said: partName(ground, of), parts: density.parts, ...densityMean(density), cov, sdM: Math.sqrt((cov[0] + cov[2]) / 2),
     datum: ways.frame.datum, shift: FROM_LAYER, sharedSdM: 0,
     basis: [`anywhere in ${partName(ground, of)}`, ...(variance > 0 ? [`section corners ${metres(ways.sectionSdM)}`, ...groupWords(ways.groupSdM)] : [])],
     // Who knows no more than the section may have the wrong one, so its blunders go beyond it.
