@@ -14,8 +14,8 @@ const FILES: ReadonlyArray<ReportFile & { readonly part: Told }> = [
   { part: 'plan', name: 'plan.geojson, plan.fgb', format: BOTH, title: 'Lines in walking order' },
   { part: 'plan', name: 'search_area.geojson, search_area.fgb', format: BOTH, title: 'Ground to be searched' },
   { part: 'plan', name: 'plan.gpx', format: 'GPX 1.1', title: 'Lines for a receiver' },
-  { part: 'residual', name: 'residual.tif', format: 'Cloud-Optimised GeoTIFF', title: 'Residual field, nT' },
-  { part: 'detection', name: 'detection.tif', format: 'Cloud-Optimised GeoTIFF', title: 'Chance of detection, 0 to 1' },
+  { part: 'residual', name: 'residual.tif, residual.sld', format: 'Cloud-Optimised GeoTIFF, and its style (SLD 1.0)', title: 'Residual field, nT' },
+  { part: 'detection', name: 'detection.tif, detection.sld', format: 'Cloud-Optimised GeoTIFF, and its style (SLD 1.0)', title: 'Chance of detection, 0 to 1' },
   { part: 'readings', name: 'readings.csv', format: 'CSV', title: 'Reduced readings, a column for each step' },
 ];
 

@@ -1,7 +1,5 @@
 import { UserError } from '../errors.js';
 import type { Operation, Slot } from '../operations/types.js';
-import { encodeCog } from '../raster/encodeCog.js';
-import { gridStatistics, type GridStatistics } from '../raster/gridStatistics.js';
 import type { Grid } from '../raster/types.js';
 import type { Anomalies } from '../anomalies/types.js';
 import type { Findings } from '../findings/types.js';
@@ -10,6 +8,7 @@ import type { Readings } from '../readings/types.js';
 import type { Records } from '../records/types.js';
 import type { Site } from '../site/types.js';
 import type { Layer } from '../vector/types.js';
+import { gridFiles } from './gridFiles.js';
 import type { Host } from './host.js';
 import { anomalyLayers } from './layers/anomalyLayers.js';
 import { findingLayers } from './layers/findingLayers.js';
@@ -44,7 +43,7 @@ export async function deliverRole(role: string, value: unknown, options: {
     case 'findings': return [...await layers(findingLayers(value as Findings, site)), stageFile(role, slot, value)];
     case 'layer': return layers([value as Layer]);
     case 'readings': return readingsFiles(role, value as Readings, { slot, site });
-    case 'grid': return [await gridFile(role, value as Grid, options)];
+    case 'grid': return gridFiles(role, value as Grid, { slot, site, host });
     case 'html': return [{ key: role, path: `${role}.html`, title: slot.title, mediaType: 'text/html', roles: [role], content: TEXT.encode(value as string) }];
     case 'json': return [{ key: role, path: `${role}.json`, title: slot.title, mediaType: 'application/json', roles: [role], content: TEXT.encode(encodeValue(value)) }];
     default: throw new UserError({ code: 'operation_invalid', where: `operation "${options.operation.id}", ${role}`, found: `the form ${JSON.stringify(slot.form)}`, wanted: 'a form that Ironplat can write' });
@@ -64,25 +63,4 @@ function readingsFiles(role: string, readings: Readings, { slot, site }: { slot:
     { key: role, path: `${role}.csv`, title: slot.title, mediaType: 'text/csv', roles: [role], epsg: site.frame.epsg, content: csv },
     stageFile(role, slot, header),
   ];
-}
-
-async function gridFile(role: string, grid: Grid, { slot, site, host, operation }: { slot: Slot; site: Site; host: Host; operation: Operation }): Promise<Delivered> {
-  const { frame } = site;
-  const content = await encodeCog(grid, { crs: frame, deflate: host.deflate, description: slot.title, unit: slot.unit ?? '' });
-  const statistics = gridStatistics(Float32Array.from(grid.values), NaN);
-  return {
-    key: role, path: `${role}.tif`, title: slot.title, mediaType: 'image/tiff; application=geotiff; profile=cloud-optimized', content,
-    roles: operation.outputs[role] && BUILT_IN_GRIDS.has(role) ? [role, 'data'] : ['transform', 'data'],
-    raster: {
-      epsg: frame.epsg, width: grid.width, height: grid.height, west: grid.west / frame.metresPerUnit, north: grid.north / frame.metresPerUnit,
-      cell: grid.cellM / frame.metresPerUnit, unit: slot.unit ?? '', ...(statistics ? { statistics: stacStatistics(statistics) } : {}),
-    },
-  };
-}
-
-/** Grids with a role of their own; a caller's further grids are transforms. */
-const BUILT_IN_GRIDS: ReadonlySet<string> = new Set(['residual', 'detection', 'covered']);
-
-function stacStatistics({ minimum, maximum, mean, standardDeviation, validPercent }: GridStatistics): Record<string, number> {
-  return { minimum, maximum, mean, stddev: standardDeviation, valid_percent: validPercent };
 }
