@@ -33,7 +33,8 @@ const BODY = /^(?<d>\d*\.?\d+|\d+\.)\s*(?:(?:°|d(?:eg)?\.?|[:\s-])\s*(?:(?<m>\d
  * Reads one angle as people write it: decimal degrees, degrees and minutes, or degrees, minutes and seconds; with a sign
  * or a hemisphere letter (before or after), with °, ′, ″ and their look-alikes, d m s, colons, hyphens or spaces between.
  * `40°26'46"` has a resolution of 1/3600, `39.3000` of 0.0001. A longitude without sign or letter counts as east: nothing
- * is repaired here. Packed digits and decimal commas are read only where `spelling` says so. Throws UserError `position_invalid` where the text is ambiguous, unreadable or out of range.
+ * is repaired here. Packed digits and decimal commas are read only where `spelling` says so. Throws UserError
+ * `position_invalid` where the text is ambiguous, unreadable or out of range.
  */
 export function parseAngle(text: string, axis: Axis, where: string, spelling: Partial<AngleSpelling> = {}): ParsedAngle {
   const { packed, decimalComma } = { ...ANGLE_SPELLING_DEFAULTS, ...spelling };

@@ -1,7 +1,7 @@
 import type { AliquotStep, Side } from '../../geodesy/sections/types.js';
 import type { Cursor } from './cursor.js';
 import { isSectionTwo } from './sectionTwo.js';
-import { AND, HALF, isNorthSouth, OF, QUARTER, quarterOf, sideOf, THE } from './words.js';
+import { AND, HALF, isNorthSouth, LOT, OF, QUARTER, quarterOf, sideOf, THE } from './words.js';
 
 interface Unit {
   /** In the order written, smallest first. */
@@ -34,7 +34,10 @@ export function readAliquot(cursor: Cursor): AliquotStep[] {
     const gap = connector(cursor);
     // NENE-NWNE: two parts rather than a part of a part.
     if (gap === 1 && unit.steps.length > 1 && aliquotAt(cursor, gap)!.steps.length > 1) throw cursor.refuse('one part of a section');
-    if (gap === null) return written.toReversed();
+    if (gap === null) {
+      if (cursor.isWord(OF) && cursor.isWord(LOT, cursor.isWord(THE, 1) ? 2 : 1)) throw cursor.refuse('a part of a section: what part of a lot is, its plat alone tells', { at: first });
+      return written.toReversed();
+    }
     cursor.at += gap;
   }
 }

@@ -1,6 +1,7 @@
 import { angleFromParts, packedParts } from '../../geodesy/angleParts.js';
 import type { Axis } from '../../geodesy/parseAngle.js';
 import type { Side } from '../../geodesy/sections/types.js';
+import { callAhead } from './calls.js';
 import { decimalNumber, type Cursor } from './cursor.js';
 import type { NumberToken, Token, WordToken } from './tokens.js';
 import { isNorthSouth, LAT, LON, sideOf } from './words.js';
@@ -147,10 +148,11 @@ function partText(cursor: Cursor, token: NumberToken): string {
 function spacedShare(cursor: Cursor): number {
   if (Number(cursor.peek().text) > LARGEST_DEG) return 1;
   let count = 1;
-  while (cursor.isNumber(count) && cursor.peek(count).spaced && !decimals(cursor.peek(count - 1))) count++;
+  const goesOn = (at: number): boolean => cursor.isNumber(at) && cursor.peek(at).spaced && !callAhead(cursor, at);
+  while (goesOn(count) && !decimals(cursor.peek(count - 1))) count++;
   if (count === 1) return 1;
   let run = count;
-  while (cursor.isNumber(run) && cursor.peek(run).spaced) run++;
+  while (goesOn(run)) run++;
   if (run <= 3) return count;
   if (run > MOST_NUMBERS || run % 2 === 1) throw cursor.refuse('as many numbers for the latitude as for the longitude', { advice: 'write a comma, a letter or marks between them' });
   return Math.min(run / 2, count);

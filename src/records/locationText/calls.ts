@@ -55,6 +55,12 @@ function openingAhead(cursor: Cursor, ahead: number): Opening | null {
 
 const OPPOSITE: Readonly<Record<Side, Side>> = { N: 'S', S: 'N', E: 'W', W: 'E' };
 
+/** Whether a length and the line of its call begin so many tokens on. */
+export function callAhead(cursor: Cursor, ahead: number): boolean {
+  const length = lengthAhead(cursor, ahead);
+  return length !== null && openingAhead(cursor, length.end) !== null;
+}
+
 /** Whether a footage call begins here, with its length or, as in `FNL 660`, with its line. */
 export function startsCall(cursor: Cursor): boolean {
   const length = lengthAhead(cursor);

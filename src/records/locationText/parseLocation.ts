@@ -191,14 +191,18 @@ function readFootage(cursor: Cursor, draft: SectionDraft): void {
   if (link !== null) draft.callLinks.push(link);
 }
 
-/** "of" and the part, lot or section behind it; null, with nothing read, where there is no "of" before one. */
-function readLink(cursor: Cursor, draft: SectionDraft): SectionDraft['callLinks'][number] {
-  if (!cursor.isWord(OF)) return null;
-  const gap = cursor.isWord(THE, 1) ? 2 : 1;
+/**
+ * "of" and the part, lot or section behind it; null, with nothing read, where there is no "of" before one. A corner needs no
+ * "of": `SW cor NE/4` is the part's corner.
+ */
+function readLink(cursor: Cursor, draft: SectionDraft, { bare = false } = {}): SectionDraft['callLinks'][number] {
+  const said = cursor.isWord(OF);
+  if (!said && !bare) return null;
+  const gap = !said ? 0 : cursor.isWord(THE, 1) ? 2 : 1;
   if (cursor.isWord(SECTION, gap)) {
     cursor.at += gap;
     // "of the section" may leave its number to another column.
-    if (!/^[-#:\d]|^NO$/.test(cursor.peek(1).text)) cursor.next();
+    if (said && !/^[-#:\d]|^NO$/.test(cursor.peek(1).text)) cursor.next();
     return 'section';
   }
   if (cursor.isWord(LOT, gap)) {
@@ -228,7 +232,8 @@ function readTie(cursor: Cursor, reading: Reading): void {
   const outward = offsets.find((offset) => !leadsInside(name, offset.toward));
   if (outward !== undefined) throw cursor.refuse(`a way from the ${name.replace('4', ' quarter')} corner into the section`, { at: first });
   for (const { distanceM } of offsets) if (distanceM > cursor.options.maxCallM) throw cursor.refuse('a distance of at most a section\'s length', { at: first });
-  draft.corner = { name, offsets, link: readLink(cursor, draft) };
+  draft.corner = { name, offsets, link: null };
+  draft.corner.link = readLink(cursor, draft, { bare: true });
 }
 
 /** `5,400' S of 39°22'30", 6,100' W of 80°15'00"`, or both distances from a pair. */

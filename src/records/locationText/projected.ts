@@ -1,6 +1,7 @@
 import type { Cursor } from './cursor.js';
 import { groupedNumber } from './cursor.js';
-import { stateCode, zoneByNumber, zoneOf } from './statePlaneZones.js';
+import { zoneByNumber } from './statePlaneZones.js';
+import { stateZoneAhead } from './stateZoneName.js';
 import type { Token } from './tokens.js';
 import type { ProjectedStatement, ProjectedSystem, ProjectedUnit } from './types.js';
 import { AND, sideOf, UNITED } from './words.js';
@@ -13,10 +14,6 @@ const PLAIN_LABELS = words('EASTING NORTHING X Y');
 const STATE_PLANE = words('SPC SPCS SPCE STATEPLANE');
 const METRE = words('M METER METERS METRE METRES');
 const FOOT = words('FT FEET FOOT');
-const PARTS: Readonly<Record<string, string>> = {
-  N: 'N', NORTH: 'N', NORTHERN: 'N', S: 'S', SOUTH: 'S', SOUTHERN: 'S', E: 'E', EAST: 'E', EASTERN: 'E', W: 'W', WEST: 'W', WESTERN: 'W',
-  C: 'C', CENTRAL: 'C', NC: 'NC', SC: 'SC', EC: 'EC', WC: 'WC', OFFSHORE: 'O', MAINLAND: 'M', ISLAND: 'I',
-};
 /** Numbers below this, beside a side, are degrees; no projected coordinate in use is as small on both axes. */
 const SMALLEST_COORDINATE = 1000;
 /** Larger than any angle with its digits run together that stands with E or N in the United States, in metres or feet. */
@@ -281,51 +278,4 @@ function readZone(cursor: Cursor, draft: ProjectedDraft): void {
   const zone = token.kind === 'number' && /^\d{3,4}$/.test(token.text) ? zoneByNumber(Number(token.text)) : null;
   if (zone === null) throw cursor.refuse('a State Plane zone by number, as in 3702, or by name, as in Pennsylvania South', { at: token });
   setSystem(cursor, draft, { kind: 'State Plane', ...zone }, first);
-}
-
-/**
- * A State Plane zone by the names of state and zone. Two-letter codes of states count only where the text says State Plane
- * or spells the zone's part out, since IN, OR and ME are words too.
- */
-function stateZoneAhead(cursor: Cursor, said: boolean): { system: ProjectedSystem; count: number } | null {
-  const [one, two] = [cursor.peek(), cursor.peek(1)];
-  if (one.kind !== 'word') return null;
-  const double = two.kind === 'word' ? stateCode(`${one.text} ${two.text}`) : null;
-  const state = double ?? stateCode(one.text);
-  if (state === null) return null;
-  const spelled = double !== null || one.text.length > 2;
-  let at = double === null ? 1 : 2;
-  const hyphened = cursor.isMark('-', at);
-  if (hyphened || cursor.isMark(',', at)) at++;
-  const zoneWord = cursor.peek(at).text === 'ZONE' ? 1 : 0;
-  const part = partAhead(cursor, at + zoneWord);
-  if (part !== null && (said || spelled || part.spelled) && (hyphened || !isLabelOf(cursor, part, at + zoneWord + part.count))) {
-    const zone = zoneOf(state, part.part);
-    if (zone !== null) {
-      const after = cursor.peek(at + zoneWord + part.count).text === 'ZONE' ? 1 : 0;
-      return { system: { kind: 'State Plane', ...zone }, count: at + zoneWord + part.count + after };
-    }
-  }
-  const alone = said || zoneWord === 1 ? zoneOf(state, '') : null;
-  return alone === null ? null : { system: { kind: 'State Plane', ...alone }, count: (double === null ? 1 : 2) + zoneWord };
-}
-
-/** `Ohio N 345678`: the side belongs to the number behind it, unless that has a side of its own behind it. */
-function isLabelOf(cursor: Cursor, { part }: { readonly part: string }, ahead: number): boolean {
-  if ((part !== 'N' && part !== 'E') || !cursor.isNumber(ahead)) return false;
-  const behind = cursor.peek(ahead + 1);
-  return behind.kind !== 'word' || sideOf(behind.text) === null || cursor.isNumber(ahead + 2);
-}
-
-/** The part of a state that a zone is named for: `South`, `S`, `North Central`, `4`. */
-function partAhead(cursor: Cursor, ahead: number): { part: string; count: number; spelled: boolean } | null {
-  const token = cursor.peek(ahead);
-  if (token.kind === 'number') return /^\d{1,2}$/.test(token.text) && !cursor.isNumber(ahead + 1) ? { part: token.text, count: 1, spelled: false } : null;
-  if (token.kind !== 'word') return null;
-  if (token.text === 'LONG' && cursor.peek(ahead + 1).text === 'ISLAND') return { part: 'L', count: 2, spelled: true };
-  if (!Object.hasOwn(PARTS, token.text)) return null;
-  const part = PARTS[token.text]!;
-  const next = cursor.peek(ahead + 1);
-  if (next.kind === 'word' && next.text === 'CENTRAL' && 'NSEW'.includes(part)) return { part: `${part}C`, count: 2, spelled: true };
-  return { part, count: 1, spelled: token.text.length > 2 };
 }

@@ -139,7 +139,7 @@ function readLot(cursor: Cursor, draft: ReferenceDraft): void {
 /** `Lot 3 and 660 FNL`, `Lot 3, 12-5N-3W`: the number behind the "and" or comma begins something else than another lot or section. */
 function moreBegins(cursor: Cursor, draft: ReferenceDraft): boolean {
   cursor.at++;
-  const begins = startsCall(cursor) || startsOffset(cursor) || isCompact(cursor) || startsSection(cursor, draft) || cursor.isMark('°', 1) || cursor.peek().text.includes('.');
+  const begins = startsCall(cursor) || startsOffset(cursor) || isCompact(cursor) || startsSection(cursor, draft) || cursor.isNumber(1) || cursor.isMark('°', 1) || cursor.peek().text.includes('.');
   cursor.at--;
   return begins;
 }

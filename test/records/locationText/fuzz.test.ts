@@ -5,7 +5,7 @@ import { formatLocation } from '../../../src/records/locationText/formatLocation
 import { parseLocation } from '../../../src/records/locationText/parseLocation.js';
 import type { LocationStatement, SingleStatement } from '../../../src/records/locationText/types.js';
 import { US_SURVEY_FOOT_M } from '../../../src/units.js';
-import { make, mutate } from './generate.js';
+import { make, mutate, soup } from './generate.js';
 import { difference } from './statements.js';
 
 /** 20,000 texts by default; IRONPLAT_FUZZ sets another number. */
@@ -45,6 +45,24 @@ describe(`location texts made by a grammar (${COUNT}, IRONPLAT_FUZZ sets the num
     // Slips that spoil every text, or none, would test nothing.
     expect(read / COUNT).toBeGreaterThan(0.05);
     expect(read / COUNT).toBeLessThan(0.6);
+  });
+
+  it('are refused by UserError alone where their words stand in no order', () => {
+    const random = new Random(20_263);
+    const wrong: string[] = [];
+    for (let i = 0; i < COUNT; i++) {
+      const text = soup(random);
+      let statement: LocationStatement;
+      try {
+        statement = parseLocation(text, 'made');
+      } catch (error) {
+        if (!(error instanceof UserError) || error.code !== 'position_invalid') wrong.push(`${JSON.stringify(text)}: ${String(error)}`);
+        continue;
+      }
+      const fault = faultOf(() => impossible(statement) ?? roundTrip(statement));
+      if (fault !== null) wrong.push(`${JSON.stringify(text)}: ${fault}`);
+    }
+    expect(wrong.slice(0, 20)).toEqual([]);
   });
 });
 

@@ -195,3 +195,14 @@ export function mutate(random: Random, text: string, other: string): string {
   }
   return out;
 }
+
+const SOUP = (
+  "N S E W north South EAST w NE SW NESW C center cor corner /4 /2 1/4 ½ ¼ 2 4 12 36 37 5N 3W T5N R3W T R Sec Section S12 S2 Lot lots 3 660 660' 1,980 1980 39.3 80.2 -80.2 39-22-30 "
+  + '39°22\'30" ° \' " deg min sec 543210 4349500 392230N 0801500W UTM zone 17 17N SPCS 3702 PA Ohio North ftUS ft feet rods chains links m mile FNL FSL FEL FWL F L line lines '
+  + 'from fr of the and & , ; : ( ) - / . + of Lat Long NAD 27 83 NAD83 WGS84 6th PM Willamette Meridian X Y Easting Northing E1912345 six hundred sixty thousand County State Plane Zone'
+).split(' ');
+
+/** Words of the grammar in no order at all. */
+export function soup(random: Random): string {
+  return Array.from({ length: 1 + random.integer(14) }, () => pick(random, SOUP) + (random.uniform() < 0.8 ? ' ' : '')).join('');
+}

@@ -142,6 +142,9 @@ export const RIGHT: readonly Row[] = [
   ['N 40 rods and E 20 rods from SW cor Sec. 3', tie('SW', [[[40, 'rod'], 'N'], [[20, 'rod'], 'E']], { reference: { section: 3 } })],
   ["660' S & 330' W of NE/c of Sec 9", tie('NE', [[660, 'S'], [330, 'W']], { reference: { section: 9 } })],
   ['660 feet south and 330 feet west of the northeast corner of section 9', tie('NE', [[660, 'S'], [330, 'W']], { reference: { section: 9 } })],
+  ['40 rods N of SW cor NE/4 Sec 12', tie('SW', [[[40, 'rod'], 'N']], { of: part('NE'), part: part('NE'), reference: { section: 12 } })],
+  ["100' N of C NE/4", tie('C', [[100, 'N']], { of: part('NE'), part: part('NE') })],
+  ["100' N of C, NE/4", tie('C', [[100, 'N']], { of: 'unsaid', part: part('NE') })],
   ['10 chains S of N/4 cor Sec 12', tie('N4', [[[10, 'chain'], 'S']], { reference: { section: 12 } })],
   ['100 feet E of the south quarter corner of section 12', tie('S4', [[100, 'E']], { reference: { section: 12 } })],
   ['150 ft N and 150 ft W of center of Sec 12', tie('C', [[150, 'N'], [150, 'W']], { reference: { section: 12 } })],
@@ -220,6 +223,8 @@ export const RIGHT: readonly Row[] = [
   // Several in one text.
   ["660' FNL, 1980' FEL, Sec 12 T5N R3W, 39.3 N 80.2 W NAD83", { kind: 'combined', parts: [
     calls([660, 'N'], [1980, 'E'], { reference: trs('12-5N-3W') }), geo(39.3, -80.2, 0.1, { datum: 'NAD83' })] }],
+  ['N 39 22 30.0 W 80 15 00.0 660 FNL 330 FEL', { kind: 'combined', parts: [geo(LAT, LON, SECOND / 10), calls([660, 'N'], [330, 'E'])] }],
+  ['Sec 12, 39 22 30 N 80 15 00 W', { kind: 'combined', parts: [section({ reference: { section: 12 } }), geo(LAT, LON, SECOND)] }],
   ['39.3 N 80.2 W NAD27; 39.30009 N 80.19981 W NAD83', { kind: 'combined', parts: [
     geo(39.3, -80.2, 0.1, { datum: 'NAD27' }), geo(39.30009, -80.19981, 1e-5, { datum: 'NAD83' })] }],
   ['Sec 12-5N-3W (NE SW) UTM 17N 543210 E 4349500 N', { kind: 'combined', parts: [

@@ -80,6 +80,7 @@ export const WRONG: ReadonlyArray<readonly [text: string, spot: string, wanted: 
   ['NE: NE', 'NE', /one part of the section/],
   ['NE SW Sec 12 NW NW', 'NW', /one part of the section/],
   ['NE NE NE NE NE', 'NE', /at most 4 steps/],
+  ['N/2 of Lot 3', 'N', /a part of a section/],
   ['Lots 3 and 4', 'Lots', /one lot/],
   ['Lot 3 & 4 Sec 2', 'Lot', /one lot/],
   // Sections.
