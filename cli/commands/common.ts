@@ -1,7 +1,9 @@
-import { relative } from 'node:path';
+import { relative, sep } from 'node:path';
 import { Option } from 'commander';
 import { UserError } from '../../src/errors.js';
 import { VECTOR_FORMATS, type VectorFormat } from '../../src/survey/layerFiles.js';
+import { jsonObject } from '../../src/survey/jsonObject.js';
+import type { Host } from '../../src/survey/host.js';
 import type { Terminal } from '../terminal.js';
 
 /** Flags that every command which makes files has. */
@@ -37,4 +39,14 @@ export function progressOn(terminal: Terminal, quiet: boolean | undefined): { sh
 export function shown(path: string, terminal: Terminal): string {
   const near = relative(terminal.cwd, path);
   return near === '' ? '.' : near;
+}
+
+/** Paths as they stand in what is delivered: seen from a folder, with forward slashes. */
+export function seenFrom(folder: string): (path: string) => string {
+  return (path) => relative(folder, path).split(sep).join('/');
+}
+
+/** The object in a JSON file; `what` is what it should be, for messages. */
+export async function readJsonObject(host: Host, path: string, what: string): Promise<Record<string, unknown>> {
+  return jsonObject(new TextDecoder().decode(await host.files.read(path)), path, what);
 }

@@ -1,4 +1,4 @@
-import { dirname, join, relative, resolve, sep } from 'node:path';
+import { dirname, join, resolve } from 'node:path';
 import { Command, Option } from 'commander';
 import { UserError } from '../../src/errors.js';
 import type { Operation, Slot } from '../../src/operations/types.js';
@@ -14,7 +14,7 @@ import { nodeHost } from '../nodeHost.js';
 import { withStandardGrids } from '../standardGrids.js';
 import type { Terminal } from '../terminal.js';
 import { writeFiles } from '../writeFiles.js';
-import { FORMATS, formatsOf, JSON_FLAG, OUT, progressOn, QUIET, shown, type OutputFlags } from './common.js';
+import { FORMATS, formatsOf, JSON_FLAG, OUT, progressOn, QUIET, readJsonObject, seenFrom, shown, type OutputFlags } from './common.js';
 
 /**
  * One operation on files. What the survey file says may be overruled by flags; inputs come from the folder that earlier
@@ -42,8 +42,7 @@ export function operationCommand(operation: Operation, operations: readonly Oper
       const survey = await withStandardGrids(await surveyOf(operation, operations, { flags, host, terminal }), terminal);
       const given = (site: Site): Promise<Map<string, unknown>> => readInputs(operation, { site, host, out, flags, terminal });
       const result = await runSurvey(survey, { operations: [operation], host, given, strict: true });
-      const folder = dirname(survey.where);
-      const files = await deliverRun(result, { host, inputs: inputs(), formats: formatsOf(flags.formats), manifest: false, relative: (name) => relative(folder, name).split(sep).join('/') });
+      const files = await deliverRun(result, { host, inputs: inputs(), formats: formatsOf(flags.formats), manifest: false, relative: seenFrom(dirname(survey.where)) });
       await writeFiles(out, files);
       progress.clear();
       for (const warning of result.warnings) terminal.err(`warning: ${warning}\n`);
@@ -57,7 +56,7 @@ export function operationCommand(operation: Operation, operations: readonly Oper
 
 async function surveyOf(operation: Operation, operations: readonly Operation[], { flags, host, terminal }: { flags: Record<string, unknown>; host: Host; terminal: Terminal }): Promise<Survey> {
   const file = flags.survey === undefined ? null : resolve(terminal.cwd, String(flags.survey));
-  const written = file === null ? {} : parse(new TextDecoder().decode(await host.files.read(file)), file);
+  const written = file === null ? {} : await readJsonObject(host, file, 'a survey file');
   const where = file ?? join(terminal.cwd, 'command line');
   const folder = dirname(where);
   // Paths of flags are seen from where the user stands, paths of the file from where it lies.
@@ -71,14 +70,6 @@ async function surveyOf(operation: Operation, operations: readonly Operation[], 
 
 function fromHere(value: unknown, terminal: Terminal): unknown {
   return Array.isArray(value) ? value.map((item) => fromHere(item, terminal)) : typeof value === 'string' ? resolve(terminal.cwd, value) : value;
-}
-
-function parse(text: string, file: string): Record<string, unknown> {
-  try {
-    return JSON.parse(text) as Record<string, unknown>;
-  } catch (error) {
-    throw new UserError({ code: 'file_unreadable', where: file, found: `text that is not JSON (${(error as Error).message})`, wanted: 'a survey file in JSON' });
-  }
 }
 
 async function readInputs(operation: Operation, { site, host, out, flags, terminal }: {

@@ -1,4 +1,4 @@
-import { dirname, relative, resolve, sep } from 'node:path';
+import { dirname, resolve } from 'node:path';
 import { Command } from 'commander';
 import type { Operation } from '../../src/operations/types.js';
 import { deliverRun } from '../../src/survey/deliverRun.js';
@@ -10,7 +10,7 @@ import { nodeHost } from '../nodeHost.js';
 import { withStandardGrids } from '../standardGrids.js';
 import type { Terminal } from '../terminal.js';
 import { writeFiles } from '../writeFiles.js';
-import { FORMATS, formatsOf, JSON_FLAG, OUT, progressOn, QUIET, shown, type OutputFlags } from './common.js';
+import { FORMATS, formatsOf, JSON_FLAG, OUT, progressOn, QUIET, seenFrom, shown, type OutputFlags } from './common.js';
 
 /** `ironplat run SURVEY.json --out DIR`: every stage, from the records to the report. */
 export function runCommand(operations: readonly Operation[], terminal: Terminal): Command {
@@ -29,9 +29,7 @@ export function runCommand(operations: readonly Operation[], terminal: Terminal)
       const survey = await withStandardGrids(readSurvey(text, path, { operations, resolve: (name) => host.resolve(name, folder) }), terminal);
       const result = await runSurvey(survey, { operations, host });
       const out = resolve(terminal.cwd, flags.out);
-      const files = await deliverRun(result, {
-        host, inputs: inputs(), formats, manifest: true, relative: (name) => relative(folder, name).split(sep).join('/'),
-      });
+      const files = await deliverRun(result, { host, inputs: inputs(), formats, manifest: true, relative: seenFrom(folder) });
       progress.show('writing');
       await writeFiles(out, files);
       progress.clear();

@@ -8,7 +8,7 @@ import type { Scenario } from '../../src/simulation/types.js';
 import { nodeHost } from '../nodeHost.js';
 import type { Terminal } from '../terminal.js';
 import { writeFiles } from '../writeFiles.js';
-import { JSON_FLAG, OUT, QUIET, shown, type OutputFlags } from './common.js';
+import { JSON_FLAG, OUT, QUIET, readJsonObject, shown, type OutputFlags } from './common.js';
 
 /** `ironplat simulate`: a made field day over given sources, to try a plan or to test the whole chain. */
 export function simulateCommand(terminal: Terminal): Command {
@@ -20,7 +20,7 @@ export function simulateCommand(terminal: Terminal): Command {
     .addHelpText('after', '\nExample:\n  ironplat simulate scenario.json --out made --seed 7')
     .action(async (file: string, flags: OutputFlags & { seed?: string }) => {
       const host = nodeHost(() => undefined);
-      const given = parse(new TextDecoder().decode(await host.files.read(resolve(terminal.cwd, file))), file);
+      const given = await readJsonObject(host, resolve(terminal.cwd, file), 'a scenario');
       if (flags.seed !== undefined) Object.assign(given, { seed: seedOf(flags.seed) });
       const scenario = readParameters(given, SCENARIO_SCHEMA, { where: file, resolve: (path) => path }) as unknown as Scenario;
       const day = simulateFieldDay(scenario);
@@ -34,14 +34,6 @@ export function simulateCommand(terminal: Terminal): Command {
         ? `${JSON.stringify({ out: shown(out, terminal), readings: day.fieldNT.length, seed: scenario.seed, files: [...files.keys()] }, null, 2)}\n`
         : `Made ${day.fieldNT.length} readings over ${casings.length} casings, ${pipelines.length} pipelines and ${scrap.length} pieces of scrap (seed ${scenario.seed}) in ${shown(out, terminal)}.\n`);
     });
-}
-
-function parse(text: string, file: string): Record<string, unknown> {
-  try {
-    return JSON.parse(text) as Record<string, unknown>;
-  } catch (error) {
-    throw new UserError({ code: 'file_unreadable', where: file, found: `text that is not JSON (${(error as Error).message})`, wanted: 'a scenario in JSON' });
-  }
 }
 
 function seedOf(text: string): number {

@@ -1,6 +1,7 @@
 import { UserError } from '../errors.js';
 import { readParameters } from '../operations/readParameters.js';
 import type { Operation } from '../operations/types.js';
+import { jsonObject } from './jsonObject.js';
 import { surveyFileSchema } from './surveySchema.js';
 
 /** A survey file as read: common keys with quantities in their unit and paths resolved, and the raw sections. */
@@ -15,17 +16,7 @@ export interface Survey {
 
 /** Reads the survey file's text. `resolve` turns a path of the file into one that the host can read. */
 export function readSurvey(text: string, where: string, options: { operations: readonly Operation[]; resolve(path: string): string }): Survey {
-  if (text.trim() === '') throw new UserError({ code: 'file_empty', where, found: 'an empty file', wanted: 'a survey file in JSON' });
-  let given: unknown;
-  try {
-    given = JSON.parse(text);
-  } catch (error) {
-    throw new UserError({ code: 'file_unreadable', where, found: `text that is not JSON (${(error as Error).message})`, wanted: 'a survey file in JSON' });
-  }
-  if (given === null || typeof given !== 'object' || Array.isArray(given)) {
-    throw new UserError({ code: 'file_unreadable', where, found: 'JSON that is no object', wanted: 'a survey file: an object with crs, date, parcel and a section an operation' });
-  }
-  return surveyFrom(given as Record<string, unknown>, where, options);
+  return surveyFrom(jsonObject(text, where, 'a survey file'), where, options);
 }
 
 /** A survey from an object, as a program or the command line's flags give it. */
