@@ -21,6 +21,18 @@ export const SAMPLE_FORMATS: Readonly<Record<SampleKind, SampleFormat>> = Object
   byte: { kind: 'byte', bits: 8, tiffFormat: 1, predictor: 2, nodata: 255, lowest: 0, highest: 254 },
 });
 
+/**
+ * The scale and offset with which whole numbers hold every value from `minimum` to `maximum` as finely as they can: a
+ * value comes back within half of `scale`. A byte is enough for a preview, 16 bits for most fields. Where both are
+ * equal the scale is 1.
+ */
+export function sampleScaling(kind: 'int16' | 'byte', { minimum, maximum }: { minimum: number; maximum: number }): { scale: number; offset: number } {
+  const { lowest, highest } = SAMPLE_FORMATS[kind];
+  if (!(maximum - minimum >= 0 && maximum - minimum < Infinity)) throw new RangeError(`No scale from ${minimum} to ${maximum}`);
+  const scale = (maximum - minimum) / (highest - lowest) || 1;
+  return { scale, offset: minimum - lowest * scale };
+}
+
 export type Samples = Float32Array | Int16Array | Uint8Array;
 
 /**
