@@ -67,7 +67,7 @@ function rawSlip(random: Random): Point {
 
 /** 40 ft at 1:24,000: the radius within which the map standard wants 90 % of the points. */
 const STANDARD_M = 12.192;
-const rawRadii = ((random) => Float64Array.from({ length: 40_000 }, () => Math.hypot(...rawSlip(random))).sort())(new Random(99));
+const rawRadii = ((random) => Float64Array.from({ length: 40_000 }, () => Math.hypot(...rawSlip(random))).toSorted())(new Random(99));
 /** Brings the made map to the standard, no better and no worse. */
 const toStandard = STANDARD_M / rawRadii[36_000]!;
 
