@@ -57,7 +57,7 @@ const LAST_DAMPING = 1e16;
  * seen, so the units of the parameters do not matter; a parameter held at its bound by the gradient is left out of the step.
  * Throws where the residuals at `start` are not finite.
  *
- * Source: Marquardt (1963), J. SIAM 11(2); Moré (1978), Lecture Notes in Math. 630 (scaling);
+ * Source: Marquardt (1963), J. SIAM 11(2); Moré (1978), LNM 630 (scaling);
  * Nielsen (1999), IMM-REP-1999-05 (damping by gain ratio).
  */
 export function levenbergMarquardt(
