@@ -1,3 +1,5 @@
+import type { Pins } from './pins.js';
+
 /**
  * What holds a correction on a coarse grid near the pins of a finer one. A correction has to vanish at the pins; where it
  * does not, it is cut off there, and the spike that this leaves costs energy: weight × (correction at the pin)². The
@@ -30,27 +32,36 @@ export function clearHold({ self, east, south, southEast, southWest }: Hold): vo
   southWest.fill(0);
 }
 
-/** Adds the hold of one node of the finer grid, at column `i` and row `j` there: weight × (mean of the coarse nodes around)². */
-export function holdNode(hold: Hold, { i, j, weight, coarseWidth }: { i: number; j: number; weight: number; coarseWidth: number }): void {
-  const at = (j >> 1) * coarseWidth + (i >> 1);
-  const wide = i & 1;
-  const high = j & 1;
-  const each = weight / (1 + 3 * wide) / (1 + 3 * high);
-  hold.self[at]! += each;
-  if (wide) {
-    hold.self[at + 1]! += each;
-    hold.east[at]! += each;
+/**
+ * Adds the hold of a pin at column `x` and row `y` of this grid, between nodes as a rule: weight × (the correction
+ * there by bilinear interpolation)². The pin's own place counts, not the node it belongs to: along a line that wanders
+ * over the nodes, holding the nodes would also hold the slope across (measured: twice as many cycles).
+ */
+export function holdPlace(hold: Hold, { x, y, weight, width }: { x: number; y: number; weight: number; width: number }): void {
+  const i = Math.floor(x);
+  const j = Math.floor(y);
+  const east = x - i;
+  const south = y - j;
+  const at = j * width + i;
+  const here = (1 - east) * (1 - south);
+  const right = east * (1 - south);
+  const below = (1 - east) * south;
+  const across = east * south;
+  hold.self[at]! += weight * here * here;
+  if (east > 0) {
+    hold.self[at + 1]! += weight * right * right;
+    hold.east[at]! += weight * here * right;
   }
-  if (high) {
-    hold.self[at + coarseWidth]! += each;
-    hold.south[at]! += each;
+  if (south > 0) {
+    hold.self[at + width]! += weight * below * below;
+    hold.south[at]! += weight * here * below;
   }
-  if (wide && high) {
-    hold.self[at + coarseWidth + 1]! += each;
-    hold.east[at + coarseWidth]! += each;
-    hold.south[at + 1]! += each;
-    hold.southEast[at]! += each;
-    hold.southWest[at + 1]! += each;
+  if (east > 0 && south > 0) {
+    hold.self[at + width + 1]! += weight * across * across;
+    hold.east[at + width]! += weight * below * across;
+    hold.south[at + 1]! += weight * right * across;
+    hold.southEast[at]! += weight * here * across;
+    hold.southWest[at + 1]! += weight * right * below;
   }
 }
 
@@ -58,6 +69,19 @@ interface Sized {
   readonly width: number;
   readonly height: number;
   readonly hold: Hold;
+}
+
+/** Lays pins of a finer grid, whose nodes are `step` times as close, on this one. A pin on the rim there holds its node. */
+export function holdPins({ width, hold }: Sized, { pins, weights, finer, step }: {
+  pins: Pins; weights: Float32Array; finer: { readonly width: number; readonly height: number }; step: number;
+}): void {
+  const { node, dx, dy } = pins;
+  for (let n = 0; n < node.length; n++) {
+    const j = Math.floor(node[n]! / finer.width);
+    const i = node[n]! - j * finer.width;
+    const rim = i === 0 || j === 0 || i === finer.width - 1 || j === finer.height - 1;
+    holdPlace(hold, { x: (rim ? i : i + dx[n]!) / step, y: (rim ? j : j + dy[n]!) / step, weight: weights[n]!, width });
+  }
 }
 
 /** The hold of a grid, seen from the next coarser one: Pᵀ H P with linear interpolation P, which is nine-point again. */

@@ -110,3 +110,28 @@ export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, row: Pi
   }
   return largest;
 }
+
+/**
+ * Makes a correction vanish at the pins' own places: each pinned node takes the value that does it, given the nodes around
+ * (pins on the rim hold their node itself). What is added to the surface then leaves the data met as they were.
+ */
+export function pinCorrection(correction: Float64Array, { node, dx, dy }: Pins, { width, height }: { width: number; height: number }): void {
+  for (let n = 0; n < node.length; n++) {
+    const k = node[n]!;
+    const j = Math.floor(k / width);
+    const i = k - j * width;
+    correction[k] = 0;
+    if (i === 0 || j === 0 || i === width - 1 || j === height - 1) continue;
+    const x = dx[n]!;
+    const y = dy[n]!;
+    const west = (x * (x - 1)) / 2;
+    const middle = 1 - x * x;
+    const east = (x * (x + 1)) / 2;
+    const north = k - width;
+    const south = k + width;
+    const around = ((y * (y - 1)) / 2) * (west * correction[north - 1]! + middle * correction[north]! + east * correction[north + 1]!)
+      + (1 - y * y) * (west * correction[k - 1]! + east * correction[k + 1]!)
+      + ((y * (y + 1)) / 2) * (west * correction[south - 1]! + middle * correction[south]! + east * correction[south + 1]!);
+    correction[k] = -around / (middle * (1 - y * y));
+  }
+}
