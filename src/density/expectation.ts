@@ -1,7 +1,7 @@
 import type { Grid } from '../raster/types.js';
 import { normalCdf } from '../numerics/special.js';
 import { areaBounds, areaM2 } from './area.js';
-import { blurShifts, shiftedArea } from './blurShifts.js';
+import { blurShifts } from './blurShifts.js';
 import { coverage, type Lattice } from './coverage.js';
 import { discArea } from './discArea.js';
 import { coreCovariance, localFrame } from './localFrame.js';
@@ -45,7 +45,7 @@ function roundingArea(part: GaussianPart): Area {
 
 function overBlurredArea(grid: Grid, area: Area, cov: Covariance | undefined): number {
   if (!cov) return overArea(grid, area);
-  return blurShifts(cov).reduce((sum, { weight, dx, dy }) => sum + weight * overArea(grid, shiftedArea(area, dx, dy)), 0);
+  return blurShifts(area, cov).reduce((sum, { weight, area: shifted }) => sum + weight * overArea(grid, shifted), 0);
 }
 
 function overArea(grid: Grid, area: Area): number {

@@ -1,6 +1,6 @@
 import { FillRule, intersectD, type PathsD } from 'clipper2-ts';
 import { areaM2, ringAreaM2 } from './area.js';
-import { blurShifts, shiftedArea } from './blurShifts.js';
+import { blurShifts } from './blurShifts.js';
 import { discArea } from './discArea.js';
 import { gaussianInArea } from './gaussianInArea.js';
 import { roundedInArea } from './roundedInArea.js';
@@ -26,7 +26,7 @@ export function massIn(density: Density, area: Area): number {
 
 function blurredInside(part: AreaPart, area: Area): number {
   if (!part.cov) return shareInside(part.area, area);
-  return blurShifts(part.cov).reduce((sum, { weight, dx, dy }) => sum + weight * shareInside(shiftedArea(part.area, dx, dy), area), 0);
+  return blurShifts(part.area, part.cov).reduce((sum, { weight, area: shifted }) => sum + weight * shareInside(shifted, area), 0);
 }
 
 function shareInside(spread: Area, area: Area): number {

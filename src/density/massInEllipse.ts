@@ -1,5 +1,5 @@
 import { areaM2 } from './area.js';
-import { blurShifts, shiftedArea } from './blurShifts.js';
+import { blurShifts } from './blurShifts.js';
 import { discArea } from './discArea.js';
 import { LEGENDRE_NODES, LEGENDRE_WEIGHTS } from './legendre20.js';
 import { localFrame } from './localFrame.js';
@@ -76,7 +76,7 @@ function gaussianInside(part: GaussianPart, ellipse: Ellipse): number {
 
 function areaInside({ area, cov }: AreaPart, ellipse: Ellipse): number {
   if (!cov) return plainInside(area, ellipse);
-  return blurShifts(cov).reduce((sum, { weight, dx, dy }) => sum + weight * plainInside(shiftedArea(area, dx, dy), ellipse), 0);
+  return blurShifts(area, cov).reduce((sum, { weight, area: shifted }) => sum + weight * plainInside(shifted, ellipse), 0);
 }
 
 function plainInside(area: Area, ellipse: Ellipse): number {

@@ -124,6 +124,19 @@ describe('rounded places', () => {
   });
 });
 
+describe('a section with uncertain lines', () => {
+  it('counts alike at points and in areas, also where edges meet', () => {
+    const density = one(area(box(0, 0, 1600, 1610), { cov: [100, 30, 81] }));
+    for (const part of [box(0, 0, 1600, 1610), box(5, -50, 1700, 800), box(400, 300, 900, 700), box(-20, -20, 10, 1640)]) {
+      const [[[w, s], , [e, n]]] = part[0] as unknown as [[[number, number], unknown, [number, number]]];
+      let sum = 0;
+      const [stepX, stepY] = [(e - w) / 150, (n - s) / 150];
+      for (let i = 0; i < 150; i++) for (let j = 0; j < 150; j++) sum += densityAt(density, w + (i + 0.5) * stepX, s + (j + 0.5) * stepY) * stepX * stepY;
+      expect(Math.abs(massIn(density, part) - sum)).toBeLessThan(3e-3);
+    }
+  });
+});
+
 describe('areas with uncertain edges', () => {
   const density = one(area(box(0, 0, 60, 40), { cov: [64, 20, 36] }));
   it('are wider by the covariance of their edges', () => {
