@@ -5,7 +5,6 @@ import { likelySlips, type Slip } from './implausible.js';
 import type { LocateContext, RowRepair } from './locateContext.js';
 import { placeCoordinates, type Candidate } from './placeRecord.js';
 import type { Fault, RawPlace, RawText } from './rawRecord.js';
-import { RECORD_FILE_DEFAULTS } from './recordSource.js';
 import type { Solution } from './solution.js';
 import { metres, type SourceError } from './sourceError.js';
 
@@ -33,7 +32,7 @@ export function coordinateUnit(candidates: readonly Candidate[], about: {
 }, context: LocateContext): CoordinateUnit {
   const { kind, text, said, error, groupSdM, named } = about;
   const place = (list: readonly Candidate[]): Solution =>
-    placeCoordinates(list, { site: context.site, error, groupSdM, digits: context.source.settings.digits ?? RECORD_FILE_DEFAULTS.digits, kind, said, section: named === null ? null : areaOf(named) });
+    placeCoordinates(list, { site: context.site, error, groupSdM, digits: context.settings.digits, kind, said, section: named === null ? null : areaOf(named) });
   const far = farFromParcel(candidates, text, context.reach);
   if (far === null) return { solution: place(candidates), fault: null, slip: null, repairs: [] };
   const mended = far.slips.flatMap((slip) => {
@@ -46,7 +45,7 @@ export function coordinateUnit(candidates: readonly Candidate[], about: {
   });
   const best = mended[0] ?? null;
   const rivals = mended.filter(({ solution }) => Math.hypot(solution.x - best!.solution.x, solution.y - best!.solution.y) > SAME_PLACE_M);
-  const allowed = best !== null && rivals.length === 0 && (context.source.settings.repairs ?? []).includes(best.slip.kind);
+  const allowed = best !== null && rivals.length === 0 && (context.settings.repairs ?? []).includes(best.slip.kind);
   const repairs = mended.map(({ slip, distanceM, candidate }): RowRepair => ({
     kind: slip.kind, column: text.columns, what: slip.words, before: text.value, after: placeText(candidate),
     distanceBeforeM: far.distanceM, distanceAfterM: distanceM, applied: allowed && slip === best!.slip,

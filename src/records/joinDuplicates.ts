@@ -28,27 +28,27 @@ const WELL_DIGITS = 10;
 export function joinDuplicates(placed: readonly WellRecord[], raws: readonly RawRecord[], options: JoinOptions): JoinResult {
   const joined: JoinedRow[] = [];
   const disagreements: Disagreement[] = [];
-  const kept: Array<WellRecord | null> = [];
+  const kept: Array<{ record: WellRecord; api: string | null }> = [];
   const byKey = new Map<string, number[]>();
   for (const [i, record] of placed.entries()) {
     const raw = raws[i]!;
-    const api = record.apiNumber?.replace(/\D/g, '').slice(0, WELL_DIGITS) ?? null;
+    const api = apiOf(record);
     const keys = [...(api === null ? [] : [`api ${api}`]), ...attributeKeys(raw)];
     const at = partnerOf(record, api, { keys, byKey, kept, options });
     if (at === null) {
-      for (const key of keys) byKey.set(key, [...(byKey.get(key) ?? []), kept.length]);
-      kept.push(record);
+      for (const key of keys) enter(byKey, key, kept.length);
+      kept.push({ record, api });
       continue;
     }
-    const partner = kept[at]!;
+    const { record: partner, api: partnerApi } = kept[at]!;
     const how = agreement(asPlace(partner), asPlace(record));
     const apart = how.p < options.disagreeBelow;
     const [better, worse] = record.posSdM < partner.posSdM ? [record, partner] : [partner, record];
     const result = apart ? split(better, worse, options) : combine(better, worse, options);
     // The first row's id stays, so that joining further files renames nobody.
-    kept[at] = named(result, partner, record, apart ? how.distanceM : null);
-    for (const key of keys) byKey.set(key, [...new Set([...(byKey.get(key) ?? []), at])]);
-    const why = api !== null && apiOf(partner) === api ? `the same API number ${partner.apiNumber!}` : 'places and attributes that agree';
+    kept[at] = { record: named(result, partner, record, apart ? how.distanceM : null), api: partnerApi ?? api };
+    for (const key of keys) enter(byKey, key, at);
+    const why = api !== null && partnerApi === api ? `the same API number ${partner.apiNumber!}` : 'places and attributes that agree';
     joined.push({ recordId: record.recordId, source: record.source, row: record.row, into: partner.recordId, why, distanceM: how.distanceM });
     if (apart) {
       disagreements.push({
@@ -57,7 +57,13 @@ export function joinDuplicates(placed: readonly WellRecord[], raws: readonly Raw
       });
     }
   }
-  return { placed: joined.length === 0 ? placed : kept.filter((record) => record !== null), joined, disagreements };
+  return { placed: joined.length === 0 ? placed : kept.map(({ record }) => record), joined, disagreements };
+}
+
+function enter(byKey: Map<string, number[]>, key: string, at: number): void {
+  const list = byKey.get(key);
+  if (!list) byKey.set(key, [at]);
+  else if (!list.includes(at)) list.push(at);
 }
 
 function apiOf(record: WellRecord): string | null {
@@ -65,13 +71,13 @@ function apiOf(record: WellRecord): string | null {
 }
 
 function partnerOf(record: WellRecord, api: string | null, { keys, byKey, kept, options }: {
-  readonly keys: readonly string[]; readonly byKey: ReadonlyMap<string, readonly number[]>; readonly kept: ReadonlyArray<WellRecord | null>; readonly options: JoinOptions;
+  readonly keys: readonly string[]; readonly byKey: ReadonlyMap<string, readonly number[]>; readonly kept: ReadonlyArray<{ readonly record: WellRecord; readonly api: string | null }>; readonly options: JoinOptions;
 }): number | null {
   for (const key of keys) {
     for (const at of byKey.get(key) ?? []) {
-      const other = kept[at]!;
       if (key.startsWith('api ')) return at;
-      const numbers = api !== null && apiOf(other) !== null && apiOf(other) !== api;
+      const { record: other, api: otherApi } = kept[at]!;
+      const numbers = api !== null && otherApi !== null && otherApi !== api;
       if (!numbers && agreement(asPlace(other), asPlace(record)).p >= options.disagreeBelow) return at;
     }
   }

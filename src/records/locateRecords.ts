@@ -13,7 +13,7 @@ import type { LocateContext } from './locateContext.js';
 import type { Fault, RawRecord } from './rawRecord.js';
 import { readRawRecords } from './readRawRecords.js';
 import { decisionOf } from './recordLog.js';
-import { RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
+import { fullSettings, RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
 import { solveRecord, type Outcome } from './solveRecord.js';
 import type { Decision, JoinedRow, Records, WellRecord } from './types.js';
 
@@ -101,7 +101,7 @@ function* batches(sources: Iterable<RecordSource>, site: Site, options: LocateOp
   };
   for (const source of sources) {
     const slips = new SharedSlip();
-    const context: LocateContext = { ...common, source, shapes: noShapes() };
+    const context: LocateContext = { ...common, source, settings: fullSettings(source), shapes: noShapes() };
     let batch = emptyBatch();
     let rows = 0;
     let mostlyNear: boolean | null = null;

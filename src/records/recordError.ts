@@ -1,5 +1,5 @@
+import type { LocateContext } from './locateContext.js';
 import type { Fault, RawRecord } from './rawRecord.js';
-import { RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
 import { SOURCE_CLASSES, sourceError, type SourceClass, type SourceError } from './sourceError.js';
 
 /** Words for source classes as they stand in files, lower case; the classes' own names stand for themselves. */
@@ -12,8 +12,7 @@ const WORDS: Readonly<Record<string, SourceClass>> = {
 };
 
 /** Error of a row's coordinates: stated in the row, else in the file, else by the row's class, else by the file's. */
-export function recordError(raw: RawRecord, source: RecordSource): SourceError | Fault {
-  const settings = { ...RECORD_FILE_DEFAULTS, ...source.settings };
+export function recordError(raw: RawRecord, { source, settings }: Pick<LocateContext, 'source' | 'settings'>): SourceError | Fault {
   const sourceClass = raw.sourceText === '' ? settings.source : classOf(raw.sourceText);
   if (sourceClass === null) {
     return {

@@ -115,3 +115,10 @@ export const RECORD_FILE_DEFAULTS = Object.freeze({
   /** Chance that a steel casing was set and left. Common practice: some permits were never drilled, some casings were pulled. */
   pCasing: 0.8,
 });
+
+/** Settings of a file with what it says nothing about. */
+export type FullSettings = RecordFileSettings & Required<Pick<RecordFileSettings, keyof typeof RECORD_FILE_DEFAULTS>>;
+
+export function fullSettings({ settings }: Pick<RecordSource, 'settings'>): FullSettings {
+  return { ...RECORD_FILE_DEFAULTS, ...settings };
+}

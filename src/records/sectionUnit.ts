@@ -67,7 +67,7 @@ export function rangeRepair(statement: SectionStatement, text: RawText, about: {
   if (about.coordinates.length > 0 ? agreeing.length === 0 : !about.byFile) return null;
   const middleM = ({ x, y }: { readonly x: number; readonly y: number }): number => Math.hypot(x - context.reach.x, y - context.reach.y);
   const asWritten = solveSection(statement, text, { ...context.ways, ...about, layer: context.layer, frame: context.site.frame }).solutions;
-  const allowed = (context.source.settings.repairs ?? []).includes('range_side');
+  const allowed = (context.settings.repairs ?? []).includes('range_side');
   return {
     unit,
     repair: {

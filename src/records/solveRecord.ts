@@ -11,7 +11,7 @@ import { isFault, type Fault, type RawRecord, type RawText } from './rawRecord.j
 import { recordDatum, type DatumWeights } from './recordDatum.js';
 import { recordError } from './recordError.js';
 import { groupColumns } from './recordHead.js';
-import { RECORD_FILE_DEFAULTS, sourceCrs } from './recordSource.js';
+import { sourceCrs } from './recordSource.js';
 import { rangeRepair, sectionUnit, type SectionUnit } from './sectionUnit.js';
 import type { Solution } from './solution.js';
 import { metres } from './sourceError.js';
@@ -60,9 +60,8 @@ interface Units {
 
 /** Reads and solves every statement of a row; the section first, since it is evidence for the others. */
 function readUnits(raw: RawRecord, context: LocateContext, rangeByFile: boolean): Units {
-  const { source } = context;
+  const { source, settings } = context;
   const where = `${source.name}, row ${raw.row}`;
-  const settings = { ...RECORD_FILE_DEFAULTS, ...source.settings };
   const units: Units = { units: [], faults: [], repairs: [], notes: [], readAs: [], slip: null, section: { named: false, near: false, mirror: false } };
   const texts = raw.location === null ? [] : parsed(raw, units, context);
   const statement = texts.find((each) => each.kind === 'section');
@@ -77,7 +76,7 @@ function readUnits(raw: RawRecord, context: LocateContext, rangeByFile: boolean)
   const solveCoordinates = (text: RawText, kind: Solution['kind'], wish: Parameters<typeof recordDatum>[2], candidatesOf: (datums: DatumWeights) => { candidates: readonly Candidate[]; extraSdM: number }): void => {
     const datum = recordDatum(raw, source, wish);
     if ('problem' in datum) return void units.faults.push(datum);
-    const error = recordError(raw, source);
+    const error = recordError(raw, context);
     if ('problem' in error) return void units.faults.push(error);
     if (datum.note !== '') units.notes.push(datum.note);
     try {
@@ -126,7 +125,7 @@ function inAmerica<T extends SingleStatement>(statement: T, datums: DatumWeights
 
 function addSection(units: Units, section: SectionUnit, about: { readonly raw: RawRecord; readonly statement: SectionStatement; readonly where: string; readonly rangeByFile: boolean; readonly context: LocateContext }): void {
   const { raw, statement, where, rangeByFile, context } = about;
-  const groupSdM = context.source.settings.sharedSdM ?? RECORD_FILE_DEFAULTS.sharedSdM;
+  const groupSdM = context.settings.sharedSdM;
   const coordinates = units.units.flat();
   const found = section.named && !section.near ? rangeRepair(statement, raw.location!, { where, groupSdM, coordinates, byFile: rangeByFile }, context) : null;
   if (found) {
@@ -143,8 +142,8 @@ function addSection(units: Units, section: SectionUnit, about: { readonly raw: R
   units.section = { named: section.named, near: section.near, mirror: section.named && !section.near && !found && coordinates.length === 0 };
 }
 
-function parsed(raw: RawRecord, units: Units, { source }: LocateContext): readonly SingleStatement[] {
-  const { westPositive = RECORD_FILE_DEFAULTS.westPositive, pairOrder, lengthUnit } = source.settings;
+function parsed(raw: RawRecord, units: Units, { source, settings }: LocateContext): readonly SingleStatement[] {
+  const { westPositive, pairOrder, lengthUnit } = settings;
   try {
     const statement = parseLocation(raw.location!.value, `${source.name}, row ${raw.row}, column ${raw.location!.columns}`, {
       westPositive, ...(pairOrder ? { pairOrder } : {}), ...(lengthUnit ? { bareLengthUnit: lengthUnit } : {}),
@@ -165,7 +164,7 @@ function withMeridian(statement: SectionStatement, raw: RawRecord, { source }: L
 /** The record of a row from its solved statements: one list a statement that stands by itself. */
 function recordOf(raw: RawRecord, units: readonly (readonly Solution[])[], { context, notes }: { readonly context: LocateContext; readonly notes: readonly string[] }): { record: WellRecord; disagreements: Outcome['disagreements'] } {
   const { source, blunderRadiusM } = context;
-  const { blunderShare, sharedSdM: groupSdM, pCasing, columns = {} } = { ...RECORD_FILE_DEFAULTS, ...source.settings };
+  const { blunderShare, sharedSdM: groupSdM, pCasing, columns = {} } = context.settings;
   const { best, others, disagreements } = weighStatements(units, { blunderShare, disagreeBelow: context.disagreeBelow });
   const { x, y } = best;
   const left = others.reduce((sum, other) => sum + other.share, 0);
