@@ -112,7 +112,8 @@ const NOTHING_BEYOND = 6;
 /** Shares of cells on an axis, and densities at their middles; `first` is where the cells begin, from the part's centre. */
 function profile({ count, first, step }: { count: number; first: number; step: number }, sd: number, halfWidth: number): Profile {
   const [mass, rank] = [new Float64Array(count), new Float64Array(count)];
-  const rankSd = Math.max(sd, RANK_SD_OF_HALF_WIDTH * halfWidth);
+  // A part that is lost between two cells' middles still has to rank by its mass.
+  const rankSd = Math.max(sd, RANK_SD_OF_HALF_WIDTH * halfWidth, step / 2);
   const reach = halfWidth + NOTHING_BEYOND * rankSd;
   const from = Math.max(0, Math.floor((-reach - first) / step));
   const to = Math.min(count, Math.ceil((reach - first) / step));

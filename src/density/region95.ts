@@ -3,7 +3,7 @@ import { ringAreaM2 } from './area.js';
 import { ELLIPSE_MASS, ELLIPSE_SIGMAS, ellipseOfCovariance, ellipseRing, scaledEllipse } from './ellipse.js';
 import { massInEllipse } from './massInEllipse.js';
 import { densityCovariance, densityMean } from './moments.js';
-import { placeParts } from './parts.js';
+import { placeParts, steadyCovariance } from './parts.js';
 import type { Fineness } from './partShapes.js';
 import { patches, type Patch } from './patches.js';
 import { rankBetween } from './rankBetween.js';
@@ -55,7 +55,7 @@ export function region95(density: Density, fineness: Fineness = REGION_FINENESS)
     outline: () => rasters.flatMap((patch) => contour(patch, found)),
     enclosing: () => {
       const { x, y } = densityMean(density);
-      const cov = densityCovariance(density);
+      const cov = steadyCovariance(densityCovariance(density));
       const det = cov[0] * cov[2] - cov[1] * cov[1];
       let farthest = 0;
       for (const patch of rasters) {

@@ -114,6 +114,23 @@ describe('region95', () => {
     expect(region.contains(40, 0)).toBe(true);
   });
 
+  it('has a region also where parts are points, or a point lies on a wide part', () => {
+    const points = one(gaussian(0, 0, [0, 0, 0], { weight: 0.6 }), gaussian(40, 30, [0, 0, 0], { weight: 0.4 }));
+    const { ellipse, excess } = drawnEllipse(points);
+    // Shaped like a needle, it has to be long to be wide enough round the farther point, 30 m from the mean: √(1.2² + 2.4²) σ.
+    expect(ellipse.semiMajM / 24.5).toBeGreaterThan(2.6);
+    expect(ellipse.semiMajM / 24.5).toBeLessThan(2.8);
+    expect(excess.massHeld).toBeGreaterThan(0.95);
+    expect(region95(points).contains(0, 0) && region95(points).contains(40, 30) && !region95(points).contains(20, 15)).toBe(true);
+    const onWide = one(gaussian(0, 0, [1e4, 0, 1e4], { weight: 0.5 }), gaussian(180.3, 40.7, [1e-4, 0, 1e-4], { weight: 0.5 }));
+    const region = region95(onWide);
+    expect(region.contains(180.3, 40.7)).toBe(true);
+    const random = new Random(5);
+    let inside = 0;
+    for (let i = 0; i < 20_000; i++) if (region.contains(...draw(onWide, random))) inside++;
+    expect(Math.abs(inside / 20_000 - 0.95)).toBeLessThan(0.01);
+  });
+
   it('moves with the density and keeps its digits in the millions of metres', () => {
     const parts = (x: number, y: number): Density => one(gaussian(x, y, [33, 5, 20], { weight: 0.7 }), gaussian(x + 20, y - 9, [33, 5, 20], { weight: 0.3 }));
     const [near, far] = [region95(parts(0, 0)), region95(parts(600_000, 4_400_000))];
