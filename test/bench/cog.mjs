@@ -20,7 +20,7 @@ const LEVEL = 6;
 const FRAME = crs(26917);
 const MEGABYTE = 1e6;
 
-/** Noise of 1 nT on broad waves and a few sharp peaks. `lineM`: cells further than that from a line of readings are gaps. */
+/** Rows of a made field: broad waves on a level, with noise, in nT; with gaps, a third of the rows have no value. Rows are made anew at each call, in the same array. */
 function field(width, seed, { noise = 1, level = 0, gaps = false }) {
   const random = new Random(seed);
   const rows = 512;
@@ -50,7 +50,7 @@ async function timed(run) {
 }
 
 /** zlib as it is: what the trial of runs saves, and what it costs in size. */
-const plainDeflate = (bytes) => promisify(zlib)(bytes, { level: LEVEL, chunkSize: bytes.length + 4096 });
+const plainDeflate = (bytes) => promisify(zlib)(bytes, { level: LEVEL, memLevel: 9, chunkSize: bytes.length + 4096 });
 
 function firstDifference(a, b) {
   for (let i = 0; i < a.length; i++) if (a[i] !== b[i] && !(Number.isNaN(a[i]) && Number.isNaN(b[i]))) return i;
