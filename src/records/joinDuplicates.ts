@@ -19,6 +19,9 @@ interface JoinOptions {
 /** Digits of an API number that are the same for every hole and event of a well. */
 const WELL_DIGITS = 10;
 
+/** Of two places that are as good the first row's is kept; digits and projection change an error by less than this. */
+const CLEARLY_BETTER = 0.99;
+
 /**
  * Joins rows that tell of one well: those with the same API number, wherever they lie, and those without two different
  * numbers whose places agree by their errors and whose attributes (well number with name or operator) are the same. The
@@ -43,7 +46,7 @@ export function joinDuplicates(placed: readonly WellRecord[], raws: readonly Raw
     const { record: partner, api: partnerApi } = kept[at]!;
     const how = agreement(asPlace(partner), asPlace(record));
     const apart = how.p < options.disagreeBelow;
-    const [better, worse] = record.posSdM < partner.posSdM ? [record, partner] : [partner, record];
+    const [better, worse] = record.posSdM < CLEARLY_BETTER * partner.posSdM ? [record, partner] : [partner, record];
     const result = apart ? split(better, worse, options) : combine(better, worse, options);
     // The first row's id stays, so that joining further files renames nobody.
     kept[at] = { record: named(result, partner, record, apart ? how.distanceM : null), api: partnerApi ?? api };

@@ -51,7 +51,8 @@ export interface RangeRepair {
 /**
  * Looks whether a section that is not within reach would be with its range on the other side of the principal meridian.
  * Every township has a mirror image there, so being near is no evidence: either the row's own coordinates have to lie in
- * that section, or the file's other rows have to name sections within reach nearly all (`byFile`).
+ * that section, or the layer must not have the section as written, while the file's other rows name sections within reach
+ * nearly all (`byFile`).
  */
 export function rangeRepair(statement: SectionStatement, text: RawText, about: {
   readonly where: string; readonly groupSdM: number; readonly coordinates: readonly Solution[]; readonly byFile: boolean;
@@ -64,7 +65,7 @@ export function rangeRepair(statement: SectionStatement, text: RawText, about: {
   if (!best || unit.faults.length > 0) return null;
   const area = unit.solutions.at(-1)!;
   const agreeing = about.coordinates.filter((each) => agreement(each, area).p >= context.disagreeBelow);
-  if (about.coordinates.length > 0 ? agreeing.length === 0 : !about.byFile) return null;
+  if (about.coordinates.length > 0 ? agreeing.length === 0 : !about.byFile || context.layer.count(wholeReference(reference)!) > 0) return null;
   const middleM = ({ x, y }: { readonly x: number; readonly y: number }): number => Math.hypot(x - context.reach.x, y - context.reach.y);
   const asWritten = solveSection(statement, text, { ...context.ways, ...about, layer: context.layer, frame: context.site.frame }).solutions;
   const allowed = (context.settings.repairs ?? []).includes('range_side');
@@ -73,7 +74,7 @@ export function rangeRepair(statement: SectionStatement, text: RawText, about: {
     repair: {
       kind: 'range_side', column: text.columns, what: `the range on the ${other.reference.rangeDir === 'E' ? 'east' : 'west'} side of the meridian`,
       before: text.value, after: formatLocation(other), distanceBeforeM: Math.min(Infinity, ...asWritten.map(middleM)), distanceAfterM: middleM(best), applied: allowed,
-      evidence: agreeing.length > 0 ? `the row's ${agreeing[0]!.kind} lie there` : `the file's other rows name sections there; ${metres(middleM(best))} from the parcel's middle`,
+      evidence: agreeing.length > 0 ? `the row's ${agreeing[0]!.kind} lie there` : `the layer has no such section, and the file's other rows name sections there; ${metres(middleM(best))} from the parcel's middle`,
     },
   };
 }
