@@ -1,11 +1,12 @@
 import { UserError } from '../errors.js';
 import { symmetricEigen2 } from '../numerics/eigen2.js';
 import { binSamples, indexByCell } from './binSamples.js';
-import { gridFrame, samplesBounds } from './gridFrame.js';
+import { MAX_CELLS } from './gridFrame.js';
+import { CELLS_PER_SPACING, gridLayout } from './gridLayout.js';
 import type { Pins } from './pins.js';
 import { reachMask } from './reachMask.js';
 import { solvePlate } from './solvePlate.js';
-import type { Bounds, GridFrame, GridResult, Samples } from './types.js';
+import type { Bounds, GridResult, Samples } from './types.js';
 
 export interface GridOptions {
   /** Side of a cell, metres; NaN: a fifth of the spacing, rounded. */
@@ -36,19 +37,13 @@ export const GRID_DEFAULTS = Object.freeze({
   bounds: null,
 });
 
-/** Cell from line spacing: five cells between lines (common practice is four to five). */
-const CELLS_PER_SPACING = 5;
 /** Finer than this the cells between lines are invention, coarser than that the readings are wasted (common practice). */
 const FINEST = 1 / 8;
 const COARSEST = 1 / 2;
-/** Reaches over the middle between two lines, and a quarter of the spacing further, so that lines may wander. */
-const REACH_PER_SPACING = 0.75;
 /** Readings on one line leave a plate free to tilt about it; a membrane is not. */
-const TENSION_ON_LINE = 0.25;
+export const TENSION_ON_LINE = 0.25;
 /** Readings whose standard deviation across is below a cell lie on one line. */
 const LINE_WIDTH_CELLS = 1;
-/** Cells around the grid on all sides: the rim of the plate is free, and pins on it have no neighbours. */
-const RIM = 2;
 
 /**
  * Grids readings by minimum curvature in tension: the surface z with (1 − T) L² ∇⁴z = T ∇²z between the readings that
@@ -64,13 +59,7 @@ export function gridReadings(samples: Samples, options: GridOptions = {}): GridR
   if (!(tension >= 0 && tension <= 1)) {
     throw new UserError({ code: 'value_invalid', where: 'grid, tension', found: String(tension), wanted: 'a number from 0 to 1' });
   }
-  const dataBounds = samplesBounds(samples);
-  const spacingM = sizes.spacingM > 0 ? sizes.spacingM : meanDistance(samples, dataBounds);
-  const cellM = sizes.cellM > 0 ? sizes.cellM : roundCell(spacingM / CELLS_PER_SPACING);
-  const reachM = sizes.reachM > 0 ? sizes.reachM : Math.max(REACH_PER_SPACING * spacingM, cellM);
-  const frame = gridFrame(wanted ?? grow(dataBounds, reachM), cellM);
-
-  const solved = withRim(gridFrame(within(frameBounds(frame), dataBounds, reachM), cellM));
+  const { spacingM, cellM, reachM, frame, solved } = gridLayout(samples, { ...sizes, bounds: wanted, maxCells: MAX_CELLS });
   const index = indexByCell(samples, solved);
   const pins = binSamples(index, samples.value, solved.width);
   if (pins.node.length === 0) {
@@ -101,48 +90,6 @@ export function gridReadings(samples: Samples, options: GridOptions = {}): GridR
   const remainingShare = range > 0 ? remaining / range : 0;
   const result = { ...frame, values, reachM, spacingM, tension: used, filled, pinned: pins.node.length, iterations, remaining, remainingShare, converged };
   return { ...result, notes: notesOf(result), warnings: warningsOf(result, tolerance) };
-}
-
-function meanDistance({ x, y, value }: Samples, bounds: Bounds): number {
-  let count = 0;
-  for (let n = 0; n < x.length; n++) if (Number.isFinite(x[n]! + y[n]! + value[n]!)) count++;
-  const wide = bounds.east - bounds.west;
-  const high = bounds.north - bounds.south;
-  // On one line the distance along it, on a single place any length.
-  return Math.max(Math.sqrt((wide * high) / count), Math.max(wide, high) / count) || 1;
-}
-
-/** Nearest of 1, 1.5, 2, 2.5, 3, 4, 5, 6, 8 times a power of ten. */
-export function roundCell(lengthM: number): number {
-  const power = 10 ** Math.floor(Math.log10(lengthM));
-  const steps = [1, 1.5, 2, 2.5, 3, 4, 5, 6, 8, 10];
-  const nearest = steps.reduce((best, step) => (Math.abs(step - lengthM / power) < Math.abs(best - lengthM / power) ? step : best));
-  return Number((nearest * power).toPrecision(6));
-}
-
-function grow({ west, south, east, north }: Bounds, byM: number): Bounds {
-  return { west: west - byM, south: south - byM, east: east + byM, north: north + byM };
-}
-
-function frameBounds({ width, height, west, north, cellM }: GridFrame): Bounds {
-  return { west, north, east: west + width * cellM, south: north - height * cellM };
-}
-
-/** The frame's bounds, and beyond them the readings that still reach a cell of it. */
-function within(frame: Bounds, data: Bounds, reachM: number): Bounds {
-  return {
-    west: Math.min(frame.west, Math.max(data.west, frame.west - reachM)),
-    south: Math.min(frame.south, Math.max(data.south, frame.south - reachM)),
-    east: Math.max(frame.east, Math.min(data.east, frame.east + reachM)),
-    north: Math.max(frame.north, Math.min(data.north, frame.north + reachM)),
-  };
-}
-
-function withRim(frame: GridFrame): GridFrame {
-  return {
-    ...frame, width: frame.width + 2 * RIM, height: frame.height + 2 * RIM,
-    west: frame.west - RIM * frame.cellM, north: frame.north + RIM * frame.cellM,
-  };
 }
 
 interface Plane {

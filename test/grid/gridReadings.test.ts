@@ -1,6 +1,7 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { describe, expect, it } from 'vitest';
-import { gridReadings, roundCell, type GridOptions } from '../../src/grid/gridReadings.js';
+import { gridReadings, type GridOptions } from '../../src/grid/gridReadings.js';
+import { roundCell } from '../../src/grid/gridLayout.js';
 import { linearOnTriangles } from '../../src/grid/linearOnTriangles.js';
 import type { GridFrame, Samples } from '../../src/grid/types.js';
 import { Random } from '../../src/numerics/random.js';

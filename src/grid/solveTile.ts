@@ -1,0 +1,105 @@
+import { binSamples, indexByCell } from './binSamples.js';
+import { emptyPins, type Pins } from './pins.js';
+import { reachMask } from './reachMask.js';
+import { solvePlate } from './solvePlate.js';
+import { trendAt, type Trend } from './trend.js';
+import type { GridFrame } from './types.js';
+
+/** What it takes to solve one tile: plain numbers and typed arrays, so that it can be sent to another thread. */
+export interface TileTask {
+  /** The tile with its overlap. */
+  readonly frame: GridFrame;
+  /** The cells that are kept, in the frame. */
+  readonly own: { readonly left: number; readonly top: number; readonly width: number; readonly height: number };
+  /** Readings in the frame. */
+  readonly x: Float64Array;
+  readonly y: Float64Array;
+  readonly value: Float64Array;
+  readonly trend: Trend;
+  /** Nodes, ascending, that take a value where no readings are: the rim, from the surface of the whole ground. Less the trend. */
+  readonly rimNode: Int32Array;
+  readonly rimValue: Float64Array;
+  readonly tension: number;
+  readonly spacingM: number;
+  readonly reachM: number;
+  /** Largest error that the solver may leave, in the data's unit. */
+  readonly tolerance: number;
+  readonly maxSteps: number;
+}
+
+export interface TileSolution {
+  /** Of the cells that are kept, row-major; NaN beyond the reach. */
+  readonly values: Float32Array;
+  readonly filled: number;
+  readonly iterations: number;
+  readonly remaining: number;
+  readonly converged: boolean;
+}
+
+/** Minimum curvature in tension on one tile of a larger grid; see `gridTiled`. */
+export function solveTile(task: TileTask): TileSolution {
+  const { frame, own, trend, tension, spacingM, reachM } = task;
+  const { width, height, cellM, west, north } = frame;
+  const index = indexByCell(task, frame);
+  const data = binSamples(index, task.value, width);
+  for (let n = 0; n < data.node.length; n++) {
+    const j = Math.floor(data.node[n]! / width);
+    data.value[n]! -= trendAt(trend, west + (data.node[n]! - j * width + 0.5 + data.dx[n]!) * cellM, north - (j + 0.5 + data.dy[n]!) * cellM);
+  }
+  const mask = reachMask(index, frame, reachM);
+  const inside = keepOwn(mask, task);
+  const values = new Float32Array(own.width * own.height).fill(NaN);
+  if (inside === 0) return { values, filled: 0, iterations: 0, remaining: 0, converged: true };
+  const { z, ...solved } = solvePlate(
+    { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins: withRim(data, task), watch: mask },
+    task,
+  );
+  for (let j = 0, to = 0; j < own.height; j++) {
+    const y = north - (own.top + j + 0.5) * cellM;
+    const from = (own.top + j) * width + own.left;
+    for (let i = 0; i < own.width; i++, to++) {
+      if (mask[from + i] !== 0) values[to] = z[from + i]! + trendAt(trend, west + (own.left + i + 0.5) * cellM, y);
+    }
+  }
+  return { ...solved, values, filled: inside };
+}
+
+/** Takes the overlap out of the mask, in place; returns how many cells are left. */
+function keepOwn(mask: Uint8Array, { frame, own }: TileTask): number {
+  let left = 0;
+  for (let j = 0, k = 0; j < frame.height; j++) {
+    const row = j >= own.top && j < own.top + own.height;
+    for (let i = 0; i < frame.width; i++, k++) {
+      if (row && i >= own.left && i < own.left + own.width) left += mask[k]!;
+      else mask[k] = 0;
+    }
+  }
+  return left;
+}
+
+/** Pins of the readings and, at nodes without any, of the rim; in the order of nodes. */
+function withRim(data: Pins, { rimNode, rimValue }: TileTask): Pins {
+  if (rimNode.length === 0) return data;
+  const all = emptyPins(data.node.length + rimNode.length);
+  let to = 0;
+  let r = 0;
+  for (let n = 0; n <= data.node.length; n++) {
+    const node = n < data.node.length ? data.node[n]! : Infinity;
+    for (; r < rimNode.length && rimNode[r]! <= node; r++) {
+      if (rimNode[r] === node) continue;
+      all.node[to] = rimNode[r]!;
+      all.value[to] = rimValue[r]!;
+      all.weight[to++] = 1;
+    }
+    if (n === data.node.length) break;
+    all.node[to] = node;
+    all.value[to] = data.value[n]!;
+    all.dx[to] = data.dx[n]!;
+    all.dy[to] = data.dy[n]!;
+    all.weight[to++] = data.weight[n]!;
+  }
+  return {
+    node: all.node.subarray(0, to), value: all.value.subarray(0, to), dx: all.dx.subarray(0, to), dy: all.dy.subarray(0, to),
+    weight: all.weight.subarray(0, to),
+  };
+}
