@@ -43,7 +43,8 @@ export const LEAST_CHANCE = 0.01;
 
 /**
  * Posterior of a source's nature: information criterion of each kind, tempered by the misfit of the best (quasi-likelihood,
- * Burnham & Anderson 2002, section 2.5), times prior odds, times how well the pole fits the stated casing.
+ * Burnham & Anderson 2002, section 2.5), times prior odds, times how well the pole fits the stated casing. A casing may
+ * also look like a vertical dipole (a stub).
  */
 export function natureOf(refined: Refined, { pole, compact }: Candidates, { target, reachM }: { readonly target: Target; readonly reachM: number }): Nature {
   const { fit, bic } = refined;
@@ -55,7 +56,7 @@ export function natureOf(refined: Refined, { pole, compact }: Candidates, { targ
   const asOther = PRIOR.otherPole * (pole ? sizeDensity(Math.abs(pole.poleAM), OTHER_POLE) * shallow(pole.depthM, pole.depthSdM, reachM) : 0);
   const asCompact = PRIOR.compact * (compact ? sizeDensity(compact.momentAM2, COMPACT) * shallow(compact.depthM, compact.depthSdM, reachM) : 0);
   const parts = {
-    casing: weight(bic.pole) * asCasing,
+    casing: (weight(bic.pole) + weight(bic.dipole) * (compact ? asStub(compact) : 0)) * asCasing,
     otherPole: weight(bic.pole) * asOther,
     compact: weight(bic.dipole) * asCompact,
     linear: weight(bic.line) * PRIOR.linear * LINE_DENSITY,
@@ -74,7 +75,26 @@ export interface PoleValues {
 /** What the source would be as each kind; null where that was not tried. */
 export interface Candidates {
   readonly pole: PoleValues | null;
-  readonly compact: { readonly momentAM2: number; readonly depthM: number; readonly depthSdM: number } | null;
+  readonly compact: {
+    readonly momentAM2: number; readonly depthM: number; readonly depthSdM: number;
+    /** Angle between the moment and the vertical, up or down, degrees from 0 to 90. */
+    readonly offVerticalDeg: number;
+  } | null;
+}
+
+/**
+ * A top joint magnetised against the next one, or a short string, is a vertical dipole rather than a pole. Share of
+ * casings that look so, and how far off the vertical (a working assumption).
+ */
+const STUB = { share: 0.05, spreadDeg: 8 } as const;
+
+/**
+ * How much likelier a dipole of this direction is as a stub of casing than as scrap, whose moment may point anywhere:
+ * a Gaussian about the vertical, up or down, against an even spread over the sphere, times the share of stubs.
+ */
+function asStub({ offVerticalDeg }: NonNullable<Candidates['compact']>): number {
+  const spread = STUB.spreadDeg * Math.PI / 180;
+  return STUB.share * Math.exp(-0.5 * (offVerticalDeg / STUB.spreadDeg) ** 2) / spread ** 2;
 }
 
 /** Density of ln value: mostly log-normal, else anything. */

@@ -99,7 +99,11 @@ function asPole(fit: Fit | undefined): PoleValues | null {
 function asCompact(fit: Fit | undefined): Candidates['compact'] {
   if (!fit) return null;
   const { values, sd } = ownValues(fit);
-  return { momentAM2: Math.hypot(values[3]!, values[4]!, values[5]!), depthM: -values[2]!, depthSdM: sd(2) };
+  const [east, north, up] = [values[3]!, values[4]!, values[5]!];
+  return {
+    momentAM2: Math.hypot(east, north, up), depthM: -values[2]!, depthSdM: sd(2),
+    offVerticalDeg: Math.atan2(Math.hypot(east, north), Math.abs(up)) * 180 / Math.PI,
+  };
 }
 
 function ownValues(fit: Fit): { values: Float64Array; sd: (k: number) => number } {

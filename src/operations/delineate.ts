@@ -11,6 +11,8 @@ import type { Operation } from './types.js';
 
 interface DelineateParameters extends DelineateOptions {
   readonly falseAlarmsPerHa: number;
+  /** What a source has to reach before it is looked at. */
+  readonly leastDeflection: number;
   readonly detectionCellM?: number;
 }
 
@@ -50,13 +52,13 @@ export const delineate: Operation = {
     'Schwarz (1978), information criterion; Kass & Raftery (1995)',
     'Kay (1998), Fundamentals of Statistical Signal Processing II: detection chance',
   ],
-  example: 'ironplat delineate survey.json --out out/anomalies.geojson',
+  example: 'ironplat delineate --survey survey.json --out delivery',
   async run({ site, parameters, inputs, warn }) {
     const { falseAlarmsPerHa, detectionCellM, ...options } = camelKeys<DelineateParameters>(parameters);
     const readings = inputs.readings as Readings;
     const anomalies = findSources(readings, inputs.residual as Grid, site, options);
     if (anomalies.list.length >= options.maxSources) warn(`The search for sources stopped at ${options.maxSources}; raise max_sources to go on.`);
-    const { chance, covered } = detection(readings, site, { noise: anomalies.noise, falseAlarmsPerHa, detectionCellM });
+    const { chance, covered } = detection(readings, site, { noise: anomalies.noise, falseAlarmsPerHa, detectionCellM, leastDeflection: options.detectSnr });
     return { anomalies, detection: chance, covered };
   },
 };
@@ -64,13 +66,15 @@ export const delineate: Operation = {
 interface DetectionSettings {
   readonly noise: NoiseModel;
   readonly falseAlarmsPerHa: number;
+  /** What a source has to reach before it is looked at. */
+  readonly leastDeflection: number;
   readonly detectionCellM: number | undefined;
 }
 
-function detection(readings: Readings, site: Site, { noise, falseAlarmsPerHa, detectionCellM }: DetectionSettings): DetectionGrids {
+function detection(readings: Readings, site: Site, { noise, falseAlarmsPerHa, detectionCellM, leastDeflection }: DetectionSettings): DetectionGrids {
   const { x, y, heightM, timeS, line, residual } = readings;
   const usable = Uint8Array.from(residual, (value) => (Number.isFinite(value) ? 1 : 0));
   const heard = { x, y, heightM, timeS, line, usable };
   const cellM = detectionCellM ?? Math.max(DETECTION_GRID_DEFAULTS.cellM, CELL_HEIGHTS * median(heightM));
-  return detectionGrid(heard, site.open, { target: site.target, noise, mainField: site.mainField, falseAlarmsPerHa, cellM });
+  return detectionGrid(heard, site.open, { target: site.target, noise, mainField: site.mainField, falseAlarmsPerHa, cellM, leastDeflection });
 }

@@ -31,7 +31,7 @@ export const grid: Operation = {
     'Trottenberg, Oosterlee & Schüller (2001), Multigrid, Academic Press',
     'Felzenszwalb & Huttenlocher (2012), Distance transforms of sampled functions, Theory of Computing 8, 415-428',
   ],
-  example: 'ironplat grid survey.json --cell-m 1 --out out/residual.tif',
+  example: 'ironplat grid --survey survey.json --cell-m 1 --out delivery',
   async run({ parameters, inputs, progress, warn }) {
     const options = camelKeys<GridOptions>(parameters);
     const { x, y, line, flag, residual } = inputs.readings as Readings;

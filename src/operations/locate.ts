@@ -139,7 +139,7 @@ export const locate: Operation = {
     'API Bulletin D12A (1979), the API well number',
     'Mahalanobis (1936), distance of two places in units of their errors',
   ],
-  example: 'ironplat locate survey.json --out out/records.geojson',
+  example: 'ironplat locate --survey survey.json --out delivery',
   async run({ site, parameters, files, warn }) {
     const { files: list, sections: layer, ...given } = camelKeys<LocateParameters>(parameters);
     const sources: RecordSource[] = [];

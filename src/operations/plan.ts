@@ -36,7 +36,7 @@ export const plan: Operation = {
     'Lozano-Pérez & Wesley (1979), shortest ways among obstacles',
     'Koopman (1980), Stone (1975): search theory; Kay (1998): detection',
   ],
-  example: 'ironplat plan survey.json --spacing-m 8 --out out/plan.gpx',
+  example: 'ironplat plan --survey survey.json --spacing-m 8 --out delivery',
   async run({ site, parameters, inputs, progress }) {
     progress('Laying lines');
     return { plan: planSurvey(site, (inputs.records as Records | undefined) ?? null, camelKeys<PlanOptions>(parameters)) };

@@ -36,7 +36,7 @@ export const reconcile: Operation = {
     'Reid (1979), IEEE Trans. Autom. Control 24(6); Bar-Shalom & Fortmann (1988): joint posterior of associations',
     'Williams & Lau (2014), IEEE Trans. Aerosp. Electron. Syst. 50(4): belief propagation for large groups',
   ],
-  example: 'ironplat reconcile survey.json --out out/findings.geojson',
+  example: 'ironplat reconcile --survey survey.json --out delivery',
   async run({ parameters, inputs }) {
     const records = inputs.records as Records;
     const detection = inputs.detection as Grid;

@@ -80,7 +80,7 @@ export const reduce: Operation = {
     'Cleveland (1979), Robust locally weighted regression, JASA 74',
     'Beaton & Tukey (1974), The fitting of power series, Technometrics 16 (biweight)',
   ],
-  example: 'ironplat reduce survey.json --out out/readings.csv',
+  example: 'ironplat reduce --survey survey.json --out delivery',
   async run({ site, parameters, files, warn }) {
     const { files: list, base, ...options } = camelKeys<ReduceParameters>(parameters);
     const sources: ReadingFile[] = [];

@@ -33,7 +33,7 @@ export const report: Operation = {
   },
   outputs: { report: { title: 'Review document', form: 'html' } },
   sources: ['Ottosson (2020), A perceptual color space for image processing', 'Douglas & Peucker (1973), Reduction of the number of points of a line, Cartographica 10'],
-  example: 'ironplat report survey.json --out out/report.html',
+  example: 'ironplat report --survey survey.json --out delivery',
   run: async ({ site, parameters, inputs, seed, before }) => {
     const told: ReportContent = { site, ...(inputs as Told) };
     const operations = before?.operations ?? [];

@@ -94,7 +94,7 @@ export const transform: Operation = {
     'Miller & Singh (1994), Potential field tilt, Journal of Applied Geophysics 32, 213-217',
     'Butterworth (1930), On the theory of filter amplifiers, Wireless Engineer 7, 536-541',
   ],
-  example: 'ironplat transform survey.json --kind reduction_to_pole --out out/transform.tif',
+  example: 'ironplat transform --survey survey.json --kind reduction_to_pole --out delivery',
   async run({ site, parameters, inputs, progress, warn }) {
     const name = parameters.kind as string;
     const kind = KINDS[name]!;
