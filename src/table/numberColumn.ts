@@ -22,11 +22,16 @@ export function numberColumn(table: TextTable, name: string, options: Partial<Nu
   const values = new Float64Array(texts.length);
   for (let i = 0; i < texts.length; i++) {
     const text = texts[i]!;
-    if (NUMBER.test(text)) values[i] = Number(text);
-    else if (allowEmpty && EMPTY.test(text)) values[i] = NaN;
-    else throw invalid(text, `${table.source}, row ${i + 1}, column ${name}`);
+    values[i] = NUMBER.test(text) ? Number(text) : numberFromText(text, { where: `${table.source}, row ${i + 1}, column ${name}`, allowEmpty });
   }
   return values;
+}
+
+/** One cell by the same rules. */
+export function numberFromText(text: string, { where, allowEmpty }: NumberColumnOptions & { where: string }): number {
+  if (NUMBER.test(text)) return Number(text);
+  if (allowEmpty && EMPTY.test(text)) return NaN;
+  throw invalid(text, where);
 }
 
 function invalid(text: string, where: string): UserError {

@@ -71,7 +71,7 @@ function isBlank(cells: readonly string[]): boolean {
 }
 
 /** The separator that divides the header into most names; a comma where there is none. */
-function delimiterOf(text: string): string {
+export function delimiterOf(text: string): string {
   const start = text.search(/\S/);
   const end = text.slice(start).indexOf('\n');
   const header = text.slice(start, end < 0 ? text.length : start + end).replace(/"(?:[^"]|"")*"/g, '');
