@@ -8,7 +8,7 @@ import type { Readings } from '../readings/types.js';
 import type { Site } from '../site/types.js';
 import { straighten } from './alignment.js';
 import type { Pipe } from './pipes.js';
-import { LEAST_CHANCE, natureOf, type Candidates, type Nature, type PoleValues } from './classify.js';
+import { LEAST_CHANCE, MOST_CHANCE, natureOf, type Candidates, type Nature, type PoleValues } from './classify.js';
 import { parameterRange, type Fit, type Window } from './fitSources.js';
 import { circleOutline, contourOutline } from './outline.js';
 import { misfitOf, type Refined } from './refine.js';
@@ -74,7 +74,7 @@ export function sourceAnomaly(refined: Refined, context: DescribeContext): Draft
   return {
     refined, nature,
     anomaly: {
-      anomalyId: '', class: cls, pCasing: Math.min(1 - LEAST_CHANCE, Math.max(LEAST_CHANCE, nature.casing)), x, y, cov, semiMajM, semiMinM, azimDeg, posSdM,
+      anomalyId: '', class: cls, pCasing: Math.min(MOST_CHANCE, Math.max(LEAST_CHANCE, nature.casing)), x, y, cov, semiMajM, semiMinM, azimDeg, posSdM,
       peakNT, snr: deflectionOf(refined.window, fit, source) / Math.sqrt(misfit), depthM: -values[2]!, depthSdM: Math.sqrt(variance(2, 2)),
       poleAM: kind === 'pole' ? values[3]! : NaN, poleSdAM: kind === 'pole' ? Math.sqrt(variance(3, 3)) : NaN,
       momentAM2: kind === 'dipole' ? Math.hypot(values[3]!, values[4]!, values[5]!) : NaN,

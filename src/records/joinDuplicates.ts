@@ -159,7 +159,8 @@ function shareLeft(better: WellRecord, worse: WellRecord, { shareOf }: JoinOptio
 function split(better: WellRecord, worse: WellRecord, options: JoinOptions): WellRecord {
   const share = shareLeft(better, worse, options);
   const others = worse.density.parts.map((part) => ({ ...part, role: 'blunder' as const, weight: part.weight * share }));
-  return { ...better, density: { parts: [...better.density.parts.map((part) => ({ ...part, weight: part.weight * (1 - share) })), ...others] } };
+  // Nobody knows which of them would move with its group.
+  return { ...better, group: null, density: { parts: [...better.density.parts.map((part) => ({ ...part, weight: part.weight * (1 - share) })), ...others] } };
 }
 
 function named(result: WellRecord, first: WellRecord, added: WellRecord, apartM: number | null): WellRecord {

@@ -182,7 +182,8 @@ function recordOf(raw: RawRecord, units: readonly (readonly Solution[])[], { con
   const point = best.parts.every((part) => part.kind === 'gaussian');
   // A row without anything under the group's columns is not known to share what a group shares.
   const ownGroup = groupColumns(columns).length > 0 && raw.group === '' ? 0 : groupSdM;
-  const sharedSdM = point && best.parts.length === 1 ? Math.hypot(best.sharedSdM, ownGroup) : 0;
+  // A record that contradicts itself tells nothing of its group's shift.
+  const sharedSdM = point && best.parts.length === 1 && others.length === 0 ? Math.hypot(best.sharedSdM, ownGroup) : 0;
   return {
     disagreements,
     record: {

@@ -6,7 +6,7 @@ import { centreX, centreY, frame } from './testSite.js';
 /** Side of a section, metres: a mile of US survey feet. */
 export const MILE_M = (5280 * 1200) / 3937;
 /** Standard deviation of a made corner off the regular net: real corners stray by tens of feet. */
-const STRAY_M = 12;
+const STRAY_M = 8;
 
 /** Column and row, from the north-west, of a section: numbered to and fro from the north-east, as the law has it. */
 function cellOf(section: number): [col: number, row: number] {
