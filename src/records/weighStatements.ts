@@ -15,17 +15,18 @@ const LEAST_SHARE = 0.001;
 /**
  * Chooses among the statements of a record. A unit is a statement that stands by itself, with the places that it leads to
  * (calls and the part that they lie in are one unit: both hang on the same section), the smallest error first. The unit
- * that most units agree with is taken, of equals the one with the smallest error.
+ * that most kinds of units agree with is taken, of equals the one with the smallest error. A kind counts once: coordinates
+ * beside coordinates are mostly copies of each other.
  *
  * A place that disagrees with the one taken is a finding, and keeps a share of the chance: where each statement is a
- * blunder with chance b, n units that agree are right against m that agree elsewhere with odds (1 − b)ⁿ⁻ᵐ : bⁿ⁻ᵐ (Bayes),
+ * blunder with chance b, n kinds that agree are right against m that agree elsewhere with odds (1 − b)ⁿ⁻ᵐ : bⁿ⁻ᵐ (Bayes),
  * so of two that contradict each other each may be right, and of three the odd one is worth about b.
  */
 export function weighStatements(units: readonly (readonly Solution[])[], { blunderShare, disagreeBelow }: { readonly blunderShare: number; readonly disagreeBelow: number }): Weighed {
   if (units.length === 1 && units[0]!.length === 1) return { best: units[0]![0]!, others: [], disagreements: [] };
   const agrees = (a: Solution, b: Solution): boolean => a === b || agreement(a, b).p >= disagreeBelow;
   const heads = units.map((unit) => unit[0]!);
-  const votes = heads.map((head) => heads.filter((other) => agrees(head, other)).length);
+  const votes = heads.map((head) => new Set(heads.filter((other) => agrees(head, other)).map(familyOf)).size);
   const chosen = heads.reduce((at, head, i) => (votes[i]! > votes[at]! || (votes[i] === votes[at] && head.sdM < heads[at]!.sdM) ? i : at), 0);
   const best = heads[chosen]!;
   const apart = [
@@ -40,4 +41,9 @@ export function weighStatements(units: readonly (readonly Solution[])[], { blund
     best, others: others.filter(({ share }) => share >= LEAST_SHARE),
     disagreements: others.map(({ solution, share }) => ({ kept: best.said, other: solution.said, ...agreement(best, solution), otherShare: (1 - blunderShare) * share })),
   };
+}
+
+/** Coordinates, distances on a map, and what is measured in a section: each is found in a way of its own. */
+function familyOf({ kind }: Solution): string {
+  return kind === 'coordinates' || kind === 'map corner' ? kind : 'section';
 }

@@ -123,7 +123,8 @@ describe('several statements of one record', () => {
     ['coordinates 60 m outside the section named', `${near(0, 660 * FOOT_M + 60)},Sec 15 T5N R1E`, 'hand-held GPS', ['section 15, T5N R1E'], 0.475],
     ['calls that lead out of the part named', `,,660 FNL 1980 FEL NE/4 SW/4 Sec 15 T5N R1E`, 'footage calls', ['NE/4 SW/4 of section 15, T5N R1E'], 0.475],
     ['calls in the part named', `,,660 FNL 1980 FEL NW/4 NE/4 Sec 15 T5N R1E`, 'footage calls', [], 0],
-    ['two coordinates that agree, calls that do not', `${near(300, 0)},${`UTM 17N ${(called.x + 301).toFixed(0)}E ${called.y.toFixed(0)}N`}; ${CALLS}`, 'hand-held GPS', ['footage calls 660 ft FNL 1980 ft FEL of section 15, T5N R1E'], 0.95 * 0.05],
+    // Coordinates beside coordinates may be copies: they count once.
+    ['two coordinates that agree, calls that do not', `${near(300, 0)},${`UTM 17N ${(called.x + 301).toFixed(0)}E ${called.y.toFixed(0)}N`}; ${CALLS}`, 'hand-held GPS', ['footage calls 660 ft FNL 1980 ft FEL of section 15, T5N R1E'], 0.475],
     ['coordinates alone against two that agree', `${near(300, 0)},${`UTM 17N ${called.x.toFixed(0)}E ${called.y.toFixed(0)}N`}; ${CALLS}`, 'hand-held GPS', [expect.stringContaining('coordinates') as unknown as string], 0.95 * 0.05],
   ])('%s', (_, row, rests, disagree, share) => {
     const { placed, disagreements } = locate(`id,lat,lon,loc\nA,${row}\n`);
