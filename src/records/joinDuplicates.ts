@@ -22,6 +22,9 @@ const WELL_DIGITS = 10;
 /** Of two places that are as good the first row's is kept; digits and projection change an error by less than this. */
 const CLEARLY_BETTER = 0.99;
 
+/** Attributes that so many wells share (`unknown 1`) tell none of them apart, and are looked at no more. */
+const MOST_NAMESAKES = 20;
+
 /**
  * Joins rows that tell of one well: those with the same API number, wherever they lie, and those without two different
  * numbers whose places agree by their errors and whose attributes (well number with name or operator) are the same. The
@@ -66,7 +69,7 @@ export function joinDuplicates(placed: readonly WellRecord[], raws: readonly Raw
 function enter(byKey: Map<string, number[]>, key: string, at: number): void {
   const list = byKey.get(key);
   if (!list) byKey.set(key, [at]);
-  else if (!list.includes(at)) list.push(at);
+  else if (list.length < MOST_NAMESAKES && !list.includes(at)) list.push(at);
 }
 
 function apiOf(record: WellRecord): string | null {

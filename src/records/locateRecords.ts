@@ -51,6 +51,8 @@ type Remembered = Pick<WellRecord, 'source' | 'row' | 'x' | 'y'>;
 interface Batch extends Lists {
   /** Rows of `placed`, one for one. */
   readonly raws: RawRecord[];
+  /** What is noted of rows that repeat an id, should they not turn out to be rows of one well. */
+  readonly idNotes: Array<{ readonly key: string; readonly note: string }>;
 }
 type Lists = { readonly [K in 'placed' | 'unplaced' | 'disagreements' | 'repairs' | 'apiRemarks' | 'log']: NonNullable<Records[K]>[number][] };
 
@@ -74,11 +76,11 @@ export function locateRecords(sources: Iterable<RecordSource>, site: Site, optio
   for (const batch of batches(seen(), site, options)) {
     for (const key of Object.keys(all) as Array<keyof Batch>) for (const each of batch[key]) (all[key] as unknown[]).push(each);
   }
-  const { raws, ...lists } = all;
+  const { raws, idNotes, ...lists } = all;
   const { placed, joined, disagreements } = joinDuplicates(lists.placed, raws, {
     disagreeBelow: options.disagreeBelow ?? LOCATE_DEFAULTS.disagreeBelow, shareOf: (record) => shares.get(record.source)!,
   });
-  return { ...lists, placed, joined, disagreements: [...lists.disagreements, ...disagreements], log: withJoins(lists.log, joined) };
+  return { ...lists, placed: withNotes(placed, idNotes), joined, disagreements: [...lists.disagreements, ...disagreements], log: withJoins(lists.log, joined) };
 }
 
 /**
@@ -87,7 +89,7 @@ export function locateRecords(sources: Iterable<RecordSource>, site: Site, optio
  * thrown, at the file's end.
  */
 export function* locateInBatches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions = {}): Generator<Records> {
-  for (const { raws: _, ...lists } of batches(sources, site, options)) yield lists;
+  for (const { raws: _, idNotes, ...lists } of batches(sources, site, options)) yield { ...lists, placed: withNotes(lists.placed, idNotes) };
 }
 
 function* batches(sources: Iterable<RecordSource>, site: Site, options: LocateOptions): Generator<Batch> {
@@ -133,8 +135,9 @@ function enter(batch: Batch, outcome: Outcome, { raw, source, byId }: { readonly
     batch.unplaced.push({ ...about, column, value, problem, advice });
     batch.log.push(decisionOf(about, { outcome, fault, record: null }));
   } else if ('record' in outcome) {
-    const placed = numbered(outcome.record, same);
-    const record = apiNumber === null ? placed : { ...placed, apiNumber };
+    const { recordId } = outcome.record;
+    const record: WellRecord = { ...outcome.record, recordId: same ? `${recordId}#${same.length + 1}` : recordId, ...(apiNumber === null ? {} : { apiNumber }) };
+    if (same) batch.idNotes.push({ key: rowKey(about), note: repeatedId(same) });
     batch.placed.push(record);
     batch.raws.push(raw);
     const remembered = { source: source.name, row: raw.row, x: record.x, y: record.y };
@@ -145,7 +148,7 @@ function enter(batch: Batch, outcome: Outcome, { raw, source, byId }: { readonly
 }
 
 function emptyBatch(): Batch {
-  return { placed: [], raws: [], unplaced: [], disagreements: [], repairs: [], apiRemarks: [], log: [] };
+  return { placed: [], raws: [], idNotes: [], unplaced: [], disagreements: [], repairs: [], apiRemarks: [], log: [] };
 }
 
 /** A file in which every row with coordinates has the same slip is described wrongly as a whole. */
@@ -196,11 +199,20 @@ function repeatFault(record: WellRecord, same: readonly Remembered[] | undefined
   };
 }
 
-function numbered(record: WellRecord, same: readonly Remembered[] | undefined): WellRecord {
-  if (!same) return record;
+function repeatedId(same: readonly Remembered[]): string {
   const others = same.map(({ source, row }) => `${source}, row ${row}`).join('; ');
-  const note = `id also in ${others}, elsewhere: taken as a well of its own; if it is the same well, keep the better row`;
-  return { ...record, recordId: `${record.recordId}#${same.length + 1}`, note: [record.note, note].filter((text) => text !== '').join('; ') };
+  return `id also in ${others}, elsewhere: taken as a well of its own; if it is the same well, keep the better row`;
+}
+
+const rowKey = ({ source, row }: Pick<WellRecord, 'source' | 'row'>): string => `${source} ${row}`;
+
+function withNotes(placed: readonly WellRecord[], idNotes: Batch['idNotes']): readonly WellRecord[] {
+  if (idNotes.length === 0) return placed;
+  const notes = new Map(idNotes.map(({ key, note }) => [key, note]));
+  return placed.map((record) => {
+    const note = notes.get(rowKey(record));
+    return note === undefined ? record : { ...record, note: [record.note, note].filter((text) => text !== '').join('; ') };
+  });
 }
 
 /** The site with each way between datums built once. */
@@ -221,9 +233,9 @@ function withSharedShifts(site: Site): Site {
 /** The log with what became of the rows that were joined. */
 function withJoins(log: readonly Decision[], joined: readonly JoinedRow[]): readonly Decision[] {
   if (joined.length === 0) return log;
-  const into = new Map(joined.map((each) => [`${each.source} ${each.row}`, each]));
+  const into = new Map(joined.map((each) => [rowKey(each), each]));
   return log.map((line) => {
-    const join = into.get(`${line.source} ${line.row}`);
+    const join = into.get(rowKey(line));
     return join ? { ...line, sureTo: `${line.sureTo}; joined into ${join.into}: ${join.why}` } : line;
   });
 }

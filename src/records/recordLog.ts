@@ -17,11 +17,15 @@ export function decisionOf(about: Pick<Decision, 'recordId' | 'source' | 'row'>,
   };
 }
 
-function sureTo({ semiMajM, semiMinM, azimDeg, density }: WellRecord, { disagreements }: Outcome): string {
+/** The drawn ellipse of a place that is no Gaussian holds more than 95 %; said from this on. */
+const SAID_FROM_MASS = 0.955;
+
+function sureTo({ semiMajM, semiMinM, azimDeg, density, excess }: WellRecord, { disagreements }: Outcome): string {
   const blunders = density.parts.reduce((sum, part) => sum + (part.role === 'blunder' ? part.weight : 0), 0);
   const elsewhere = blunders > 0 ? `, but for a chance of ${Number((blunders * 100).toFixed(1))} % that it lies elsewhere` : '';
+  const holds = excess && excess.massHeld >= SAID_FROM_MASS ? ` (the ellipse round it holds ${Number((excess.massHeld * 100).toFixed(1))} %)` : '';
   return [
-    `95 % within ${metres(semiMajM)} by ${metres(semiMinM)}, azimuth ${azimDeg.toFixed(0)}°${elsewhere}`,
+    `95 % within ${metres(semiMajM)} by ${metres(semiMinM)}, azimuth ${azimDeg.toFixed(0)}°${holds}${elsewhere}`,
     ...disagreements.map(({ other, distanceM }) => `disagrees with its ${other}, ${metres(distanceM)} away`),
   ].join('; ');
 }

@@ -77,6 +77,19 @@ describe('two rows of one well', () => {
     // Odds 0.98 × 0.1 to 0.9 × 0.02 that the first is right.
     expect(near(uneven, 400) / 0.9).toBeCloseTo(0.018 / (0.098 + 0.018), 6);
   });
+  it('that have one id too are not noted as wells of their own', () => {
+    const text = 'id,e,n,api,name,op,no,sheet';
+    const row = (east: number): string => `A,${(centreX + east).toFixed(2)},${centreY.toFixed(2)},${API},,,,`;
+    const table = parseCsv([text, row(0), row(4), `A,${(centreX + 90).toFixed(2)},${centreY.toFixed(2)},,,,,`].join('\n'), 'a.csv');
+    const { placed } = locateRecords([{ kind: 'table', name: 'a.csv', table, settings: { columns: COLUMNS, crs: frame, errorM: 5 } }], testSite());
+    expect(placed.map(({ recordId, note }) => [recordId, note.includes('id also in')])).toEqual([['A', false], ['A#3', true]]);
+  });
+  it('are not looked for among very many namesakes', () => {
+    const rows = Array.from({ length: 3000 }, (_, i) => ({ east: 3 * (i % 60) - 90, north: 3 * Math.floor(i / 60) - 70, name: 'Unknown', no: '1' }));
+    const { placed, joined } = locateRecords([file('a.csv', rows, { errorM: 0.1 })], testSite());
+    expect(placed.length + joined!.length).toBe(3000);
+    expect(joined!.length).toBeLessThan(30);
+  });
   it('may be three, or more', () => {
     const { placed, joined } = locateRecords([file('a.csv', [{ api: API }]), file('b.csv', [{ api: API, east: 3 }]), file('c.csv', [{ api: API, north: 3 }])], testSite());
     expect(placed.map(({ recordId, joined: rows }) => [recordId, rows])).toEqual([['a1', ['a.csv, row 1', 'b.csv, row 1', 'c.csv, row 1']]]);

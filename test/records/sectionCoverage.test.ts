@@ -85,9 +85,9 @@ describe('of 10,000 wells on moved section lines 95 ± 1 % lie in the 95 % regio
         const mid = (axis: 0 | 1): number => ring.slice(0, 8).reduce((sum, p) => sum + p[axis]! / 8, 0);
         const place = [mid(0) + 1450 * (random.uniform() - 0.5), mid(1) + 1450 * (random.uniform() - 0.5)] as const;
         const written = (side: keyof typeof LINES): number => {
-          const true_ = measured(ring, side, place);
+          const exact = measured(ring, side, place);
           // Line and well are each found to within some yards, a chain is off by at most 1 in 290: 3 m and 1 in 500 in the mean of squares.
-          const taped = true_ * (1 + (Math.sqrt(3) / 500) * (2 * random.uniform() - 1)) + 3 * Math.sqrt(1.5) * (2 * random.uniform() - 1 + 2 * random.uniform() - 1);
+          const taped = exact * (1 + (Math.sqrt(3) / 500) * (2 * random.uniform() - 1)) + 3 * Math.sqrt(1.5) * (2 * random.uniform() - 1 + 2 * random.uniform() - 1);
           return Math.round(Math.max(0, taped) / FOOT_M);
         };
         const [ns, ew] = [random.uniform() < 0.5 ? 'N' : 'S', random.uniform() < 0.5 ? 'E' : 'W'] as const;

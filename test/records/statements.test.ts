@@ -173,7 +173,7 @@ describe('the decision log', () => {
     expect(log!.map(({ recordId, source, row }) => [recordId, source, row])).toEqual([['A', 'p.csv', 1], ['B', 'p.csv', 2], ['C', 'p.csv', 3], ['D', 'p.csv', 4]]);
     expect(log![0]).toMatchObject({
       readAs: 'section "660 FNL 1980 FEL Sec 15 T5N R1E"; coordinates "39.3001, -80.2001" on NAD83', movedBy: 'none',
-      restsOn: expect.stringContaining('hand-held GPS'), sureTo: expect.stringMatching(/^95 % within [\d.]+ m by [\d.]+ m, azimuth \d+°, but for a chance of 52\.5 % that it lies elsewhere; disagrees with its footage calls/),
+      restsOn: expect.stringContaining('hand-held GPS'), sureTo: expect.stringMatching(/^95 % within [\d.]+ m by [\d.]+ m, azimuth \d+° \(the ellipse round it holds 96\.\d %\), but for a chance of 52\.5 % that it lies elsewhere; disagrees with its footage calls/),
     });
     expect(log![1]!.restsOn).toContain('anywhere in NE/4 SW/4');
     expect(log![2]).toMatchObject({ movedBy: expect.stringContaining('repair proposed: the sign of the longitude'), sureTo: expect.stringContaining('not placed') });
