@@ -1,0 +1,105 @@
+import { UserError } from '../errors.js';
+import { median } from '../numerics/robust.js';
+import type { Grid } from '../raster/types.js';
+import { gridReadings, type GridOptions } from './gridReadings.js';
+import { gridBySources } from './sources/gridBySources.js';
+import { layerDepthM } from './sources/layerDepth.js';
+import { lineNoise } from './sources/lineNoise.js';
+import type { HighSamples } from './sources/placedReadings.js';
+import type { GridResult } from './types.js';
+
+export type GridMethod = 'auto' | 'tension' | 'sources';
+export const GRID_METHODS: readonly GridMethod[] = Object.freeze(['auto', 'tension', 'sources']);
+
+/** Readings in the order in which they were taken, with the sensor's height and the line of each where known. */
+export interface WalkedSamples extends HighSamples {
+  readonly line?: ArrayLike<number>;
+}
+
+export interface MethodOptions extends GridOptions {
+  readonly method?: GridMethod;
+  /** Whether the standard error of each cell is wanted. */
+  readonly error?: boolean;
+  /** Standard deviation of a reading's error, nT; NaN: from the readings themselves. */
+  readonly noiseNt?: number;
+}
+
+export const METHOD_DEFAULTS = Object.freeze({ method: 'tension' as GridMethod, error: false, noiseNt: NaN });
+
+export interface MethodResult {
+  readonly grid: GridResult;
+  /** Standard error of each cell, nT; NaN where the field is not known. Null where it was not asked for. */
+  readonly error: Grid | null;
+  readonly method: Exclude<GridMethod, 'auto'>;
+}
+
+/**
+ * Lines no further apart than this share of the sources' depth show the whole field, and a plate bridges it as well as
+ * cubic triangles do; wider ones leave a choice that the plate makes badly (measured: beyond the depth it may stray from
+ * the field by half as much again as linear triangles, equivalent sources never by more than a twentieth).
+ */
+const RESOLVED_SHARE = 0.8;
+/** Heights that vary by more than this share of the sources' depth (standard deviation) do not count as one level. */
+const LEVEL_SHARE = 0.01;
+
+/**
+ * Grids readings by the method asked for. `tension` is gridReadings and takes no notice of heights. `sources` gives the
+ * field on the readings' median height. `auto` takes tension where the lines are no further apart than 0.8 times the
+ * depth of the likeliest layer of sources and the sensor kept its height, else sources. Frame, reach and cells are the
+ * same for all. The error is that of the grid it comes with: with tension, its distance from the sources' field is added.
+ */
+export function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}): MethodResult {
+  const { method, error, noiseNt: stated, ...plain } = { ...METHOD_DEFAULTS, ...options };
+  if (!GRID_METHODS.includes(method)) {
+    throw new UserError({ code: 'value_invalid', where: 'grid, method', found: JSON.stringify(method), wanted: `one of ${GRID_METHODS.join(', ')}` });
+  }
+  const grid = gridReadings(samples, plain);
+  if (method === 'tension' && !error) return { grid, error: null, method };
+  const { width, height, west, north, cellM, spacingM } = grid;
+  const noiseNT = stated >= 0 ? stated : lineNoise(samples.value, samples.line) || 0;
+  const { heights, levelM, spreadM } = levelled(samples);
+  const depthM = layerDepthM(heights, { spacingM, noiseNT });
+  const used = method === 'auto' ? (spacingM <= RESOLVED_SHARE * depthM && spreadM <= LEVEL_SHARE * depthM ? 'tension' : 'sources') : method;
+  const why = `Sources lie most likely ${short(depthM)} m below the sensor; lines are ${short(spacingM)} m apart.`;
+  if (used === 'tension' && !error) return { grid: { ...grid, notes: [...grid.notes, why] }, error: null, method: used };
+
+  const wanted = Uint8Array.from(grid.values, (value) => (Number.isNaN(value) ? 0 : 1));
+  const sources = gridBySources(heights, { width, height, west, north, cellM }, { spacingM, noiseNT, depthM, wanted, error });
+  const notes = [why];
+  const errorGrid = sources.error && { width, height, west, north, cellM, values: sources.error };
+  if (errorGrid) notes.push(unknownNote(errorGrid.values, wanted));
+  if (used === 'tension') {
+    errorGrid?.values.forEach((sd, k) => { errorGrid.values[k] = Math.hypot(sd, grid.values[k]! - sources.values[k]!); });
+    return { grid: { ...grid, notes: [...grid.notes, ...notes] }, error: errorGrid, method: used };
+  }
+  notes.unshift(
+    `Grid of ${width} × ${height} cells of ${short(cellM)} m, by equivalent sources, on the level of the sensor's median height${samples.up ? ` (${short(levelM)} m)` : ''}; noise of a reading ${short(noiseNT)} nT.`,
+    grid.notes[1]!,
+  );
+  // The plate only lent its frame: how far it had converged is no matter here.
+  return { grid: { ...grid, values: sources.values, iterations: 0, remaining: 0, remainingShare: 0, converged: true, notes, warnings: grid.converged ? grid.warnings : grid.warnings.slice(0, -1) }, error: errorGrid, method: used };
+}
+
+/** Heights above their median; readings without one lie on it. */
+function levelled(samples: WalkedSamples): { heights: HighSamples; levelM: number; spreadM: number } {
+  const { up } = samples;
+  if (!up) return { heights: samples, levelM: NaN, spreadM: 0 };
+  const levelM = median(up);
+  const above = Float64Array.from(up, (each) => (Number.isFinite(each) ? each - levelM : 0));
+  const spreadM = Math.sqrt(above.reduce((sum, each) => sum + each * each, 0) / above.length);
+  return { heights: { ...samples, up: above }, levelM, spreadM };
+}
+
+function unknownNote(error: ArrayLike<number>, wanted: Uint8Array): string {
+  let filled = 0;
+  let unknown = 0;
+  for (let k = 0; k < wanted.length; k++) {
+    filled += wanted[k]!;
+    if (wanted[k] === 1 && Number.isNaN(error[k])) unknown++;
+  }
+  return `In ${short((100 * unknown) / filled)} % of the filled cells the readings leave the field unknown; the error grid is empty there.`;
+}
+
+function short(value: number): string {
+  return String(Number(value.toPrecision(3)));
+}
