@@ -1,5 +1,4 @@
 import { noShapes } from '../density/drawnEllipse.js';
-import { UserError, type ComplaintCode } from '../errors.js';
 import { CALL_DEFAULTS } from '../geodesy/sections/placeFromCalls.js';
 import type { SectionLayer } from '../geodesy/sections/sectionLayer.js';
 import type { Datum, DatumShift } from '../geodesy/types.js';
@@ -7,13 +6,13 @@ import type { Site } from '../site/types.js';
 import { US_SURVEY_FOOT_M } from '../units.js';
 import { apiRemarks } from './apiRemarks.js';
 import { reachOf } from './farFromParcel.js';
-import type { Slip } from './implausible.js';
 import { joinDuplicates } from './joinDuplicates.js';
 import type { LocateContext } from './locateContext.js';
 import type { Fault, RawRecord } from './rawRecord.js';
 import { readRawRecords } from './readRawRecords.js';
 import { decisionOf } from './recordLog.js';
 import { fullSettings, RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
+import { SharedSlip } from './sharedSlip.js';
 import { solveRecord, type Outcome } from './solveRecord.js';
 import type { Decision, JoinedRow, Records, WellRecord } from './types.js';
 
@@ -39,8 +38,6 @@ export type LocateOptions = { readonly [K in keyof typeof LOCATE_DEFAULTS]?: num
 
 /** Rows with the same id closer than this are the same entry twice: below any digit that a permit gives. */
 const SAME_PLACE_M = 0.05;
-/** One row alone may be off by any slip; from two on a slip that they all share is the file's. */
-const SHARED_SLIP_FROM = 2;
 /** Share of a file's rows that name sections within reach from which one beyond the meridian is a slip of side. */
 const MOSTLY_NEAR = 0.9;
 
@@ -149,45 +146,6 @@ function enter(batch: Batch, outcome: Outcome, { raw, source, byId }: { readonly
 
 function emptyBatch(): Batch {
   return { placed: [], raws: [], idNotes: [], unplaced: [], disagreements: [], repairs: [], apiRemarks: [], log: [] };
-}
-
-/** A file in which every row with coordinates has the same slip is described wrongly as a whole. */
-class SharedSlip {
-  #placed = false;
-  #far = 0;
-  readonly #kinds = new Map<Slip['kind'], Slip>();
-
-  count(outcome: Outcome): void {
-    if ('record' in outcome) this.#placed = true;
-    else if (outcome.slip !== null) {
-      this.#far++;
-      this.#kinds.set(outcome.slip.kind, outcome.slip);
-    }
-  }
-
-  refuse(source: RecordSource): void {
-    if (this.#placed || this.#far < SHARED_SLIP_FROM || this.#kinds.size !== 1) return;
-    const [{ kind, words }] = [...this.#kinds.values()] as [Slip];
-    throw sharedSlip(source, { kind, words, rows: this.#far });
-  }
-}
-
-function sharedSlip(source: RecordSource, { kind, words, rows }: Pick<Slip, 'kind' | 'words'> & { rows: number }): UserError {
-  const swapped = kind === 'swapped' || kind === 'swapped_sign';
-  const code: ComplaintCode = swapped ? 'coordinates_swapped' : 'position_invalid';
-  const advice = {
-    swapped: 'exchange the two column names in the survey file',
-    swapped_sign: 'exchange the two column names in the survey file and correct the sign of the longitudes in the file',
-    longitude_sign: 'write west longitudes with a minus sign or a W, or state "west_positive": true for the file',
-    latitude_sign: 'write north latitudes without a minus sign',
-    metres: 'state a CRS whose unit is the metre',
-    feet: 'state a CRS whose unit is the foot',
-    utm_zone: 'state the CRS of the zone that the coordinates are in',
-  }[kind];
-  return new UserError({
-    code, where: source.name, found: `no row within reach of the parcel, though ${rows} would be with ${words}`,
-    wanted: 'positions near the parcel', advice,
-  });
 }
 
 function repeatFault(record: WellRecord, same: readonly Remembered[] | undefined, raw: RawRecord): Fault | null {

@@ -97,6 +97,18 @@ describe('a slip that explains a place out of reach', () => {
     expect([...found.unplaced.map(({ recordId }) => recordId), ...found.placed.filter(({ note }) => note.includes('not used')).map(({ recordId }) => recordId)]).toEqual(['X']);
   });
 
+  it.each<[RepairKind, string]>([
+    ['utm_zone', `UTM zone 16 E ${projected('EPSG:26917')[0]} N ${projected('EPSG:26917')[1]} NAD83`],
+    ['longitude_sign', '39.3000 N 80.2000 E'],
+    ['longitude_sign', '39°18\'00" N, 80°12\'00" E'],
+    ['metres', `State Plane zone 4701 Easting ${projected(FEET.code, -80.2, 39.3, FOOT_M)[0]}, Northing ${projected(FEET.code, -80.2, 39.3, FOOT_M)[1]} US survey feet`],
+  ])('is found in a location in words too: %s in %s', (kind, text) => {
+    const row = `X,,,"${text.replaceAll('"', '""')}"`;
+    expect(locate([`G,${line(GOOD)}`, row], angles).repairs).toMatchObject([{ kind, applied: false, column: 'loc', before: text }]);
+    const { placed, repairs } = locate([`G,${line(GOOD)}`, row], { ...angles, repairs: [kind] });
+    expect(repairs).toMatchObject([{ kind, applied: true }]);
+    expect(Math.hypot(placed[1]!.x - centreX, placed[1]!.y - centreY)).toBeLessThan(1);
+  });
   it('is not mended where two would do', () => {
     // 45 N 45 W: the sign and the order are both good for it.
     const [x, y] = frame.forward(-45, 45);
