@@ -66,7 +66,7 @@ function areaOf(named: Solution): Solution['section'] {
 /** The coordinates of every datum with the same slip taken out; null where one of them cannot have it. */
 function withoutSlip(candidates: readonly Candidate[], slip: Slip, { reach }: LocateContext): Candidate[] | null {
   const mended = candidates.map((candidate): Candidate | null => {
-    const same = likelySlips(candidate.place, reach.centre, { crs: candidate.crs, limitM: Infinity }).find(({ kind, words }) => kind === slip.kind && words === slip.words);
+    const same = likelySlips(candidate.place, reach.centre, { ...candidate, limitM: Infinity }).find(({ kind, words }) => kind === slip.kind && words === slip.words);
     return same ? { ...candidate, place: same.place, crs: same.crs } : null;
   });
   return mended.every((each) => each !== null) ? mended : null;

@@ -42,7 +42,8 @@ export interface FarPlace {
 /** Null where the place is at most `maxDistanceM` from the parcel under its likeliest datum. */
 export function farFromParcel(candidates: readonly Candidate[], text: RawText, reach: Reach): FarPlace | null {
   const { site, maxDistanceM, centre, parcelRadiusM } = reach;
-  const { place, crs, datum } = candidates.reduce((a, b) => (b.weight > a.weight ? b : a));
+  const likeliest = candidates.reduce((a, b) => (b.weight > a.weight ? b : a));
+  const { place, crs, datum } = likeliest;
   const lonLat = place.kind === 'angles' ? [place.lonDeg, place.latDeg] as const : inverseOrNull(crs!, place.eastM, place.northM);
   const onEarth = lonLat !== null && Math.abs(lonLat[0]) <= 180 && Math.abs(lonLat[1]) <= 90;
   const limitM = PROJECTED_LIMIT_M + parcelRadiusM;
@@ -53,7 +54,7 @@ export function farFromParcel(candidates: readonly Candidate[], text: RawText, r
     distanceM = distanceToParcelM(reach, x, y);
   }
   if (distanceM <= maxDistanceM) return null;
-  const slips = likelySlips(place, centre, { crs, limitM: maxDistanceM + parcelRadiusM });
+  const slips = likelySlips(place, centre, { ...likeliest, limitM: maxDistanceM + parcelRadiusM });
   return {
     slips, distanceM,
     fault: {

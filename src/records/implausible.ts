@@ -25,10 +25,11 @@ export function geodesicM(a: readonly [lonDeg: number, latDeg: number], b: reado
 
 /**
  * Slips of the pen that bring a place to within `limitM` of `centre` (longitude, latitude of the parcel's middle, degrees),
- * the nearest first. `crs` is the CRS of projected coordinates.
+ * the nearest first. `crs` is the CRS of projected coordinates, `unitM` the unit that they are written in (metres) where it is not
+ * the CRS's.
  */
-export function likelySlips(place: RawPlace, centre: readonly [number, number], options: { readonly crs: Crs | null; readonly limitM: number }): Slip[] {
-  const tries = place.kind === 'angles' ? angleSlips(place) : projectedSlips(place, options.crs!);
+export function likelySlips(place: RawPlace, centre: readonly [number, number], options: { readonly crs: Crs | null; readonly limitM: number; readonly unitM?: number }): Slip[] {
+  const tries = place.kind === 'angles' ? angleSlips(place) : projectedSlips(place, options.crs!, options.unitM ?? options.crs!.metresPerUnit);
   return tries.flatMap((each): Slip[] => {
     const lonLat = each.place.kind === 'angles' ? [each.place.lonDeg, each.place.latDeg] as const : inverseOrNull(each.crs!, each.place.eastM, each.place.northM);
     if (lonLat === null || !(Math.abs(lonLat[1]) <= 90 && Math.abs(lonLat[0]) <= 180)) return [];
@@ -50,9 +51,9 @@ function angleSlips(place: Extract<RawPlace, { kind: 'angles' }>): Try[] {
   ];
 }
 
-function projectedSlips(place: Extract<RawPlace, { kind: 'projected' }>, crs: Crs): Try[] {
+function projectedSlips(place: Extract<RawPlace, { kind: 'projected' }>, crs: Crs, unitM: number): Try[] {
   const { eastM, northM, eastResolutionM, northResolutionM } = place;
-  const foot = crs.unit === 'metre' ? FOOT_M : crs.metresPerUnit;
+  const foot = unitM === 1 ? FOOT_M : unitM;
   const scaled = (by: number): RawPlace => ({
     kind: 'projected', eastM: eastM * by, northM: northM * by, eastResolutionM: eastResolutionM * by, northResolutionM: northResolutionM * by,
   });
@@ -61,7 +62,7 @@ function projectedSlips(place: Extract<RawPlace, { kind: 'projected' }>, crs: Cr
       kind: 'swapped', words: 'easting and northing swapped', crs,
       place: { kind: 'projected', eastM: northM, northM: eastM, eastResolutionM: northResolutionM, northResolutionM: eastResolutionM },
     },
-    crs.unit === 'metre'
+    unitM === 1
       ? { kind: 'feet', words: 'the numbers read as feet', place: scaled(foot), crs }
       : { kind: 'metres', words: 'the numbers read as metres', place: scaled(1 / foot), crs },
     ...neighbourZones(crs).map(({ zone, crs: other }): Try => ({ kind: 'utm_zone', words: `the numbers read in UTM zone ${zone}`, place, crs: other })),

@@ -20,6 +20,8 @@ export interface Candidate {
   readonly place: RawPlace;
   /** Of projected coordinates; null for angles. */
   readonly crs: Crs | null;
+  /** Metres in the unit that projected coordinates are written in, where it is not the CRS's. */
+  readonly unitM?: number;
 }
 
 /**

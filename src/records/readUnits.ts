@@ -104,6 +104,12 @@ function addSection(units: Units, section: SectionUnit, about: { readonly raw: R
     }
   }
   units.units.push(section.solutions);
+  if (section.near) {
+    // The statement is used, but for what could not be found of it.
+    units.notes.push(...section.faults.map(({ column, value, problem }) => `${column} "${value}" used in part: ${problem}`));
+    units.section = { named: section.named, near: true, mirror: false };
+    return;
+  }
   const [fault, ...others] = section.faults;
   if (fault) units.faults.push(found ? { ...fault, advice: `with ${found.repair.what} ${found.repair.evidence}; correct the row` } : fault, ...others);
   units.section = { named: section.named, near: section.near, mirror: section.named && !section.near && !found && coordinates.length === 0 };

@@ -26,7 +26,7 @@ export function statementCandidates(
     if (statement.kind === 'projected') {
       const { crs, metresPerUnit } = projectedReading(statement, datum, { fileCrs, where });
       return {
-        datum, weight, crs, place: {
+        datum, weight, crs, unitM: metresPerUnit, place: {
           kind: 'projected', eastM: statement.easting * metresPerUnit, northM: statement.northing * metresPerUnit,
           eastResolutionM: statement.eastingResolution * metresPerUnit, northResolutionM: statement.northingResolution * metresPerUnit,
         },

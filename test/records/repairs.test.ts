@@ -99,6 +99,7 @@ describe('a slip that explains a place out of reach', () => {
 
   it.each<[RepairKind, string]>([
     ['utm_zone', `UTM zone 16 E ${projected('EPSG:26917')[0]} N ${projected('EPSG:26917')[1]} NAD83`],
+    ['metres', `UTM zone 17 E ${projected('EPSG:26917')[0]} N ${projected('EPSG:26917')[1]} feet`],
     ['longitude_sign', '39.3000 N 80.2000 E'],
     ['longitude_sign', '39°18\'00" N, 80°12\'00" E'],
     ['metres', `State Plane zone 4701 Easting ${projected(FEET.code, -80.2, 39.3, FOOT_M)[0]}, Northing ${projected(FEET.code, -80.2, 39.3, FOOT_M)[1]} US survey feet`],

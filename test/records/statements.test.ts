@@ -145,6 +145,11 @@ describe('several statements of one record', () => {
     expect(disagreements!.length).toBeGreaterThan(20);
     expect(disagreements!.length).toBeLessThan(60);
   });
+  it('uses of a section what the layer has, and notes the rest', () => {
+    const { placed } = locate('id,loc\nA,Lot 3 Sec 15 T5N R1E\nB,660 FNL 660 FEL Lot 3 Sec 15 T5N R1E\n');
+    expect(placed.map(({ basis }) => basis.slice(0, 8))).toEqual(['anywhere', 'footage ']);
+    for (const { note } of placed) expect(note).toMatch(/used in part: lot 3 of section 15, T5N R1E, looked up in sections\.shp, which has no lots/);
+  });
   it('what cannot be read does not spoil what can', () => {
     const { placed, unplaced } = locate(`id,lat,lon,loc\nA,39.3000,-80.2000,somewhere near the creek\nB,39.3l,-80.2000,${CALLS}\nC,,,somewhere near the creek\nD,,,\nE,39.3,,\n`);
     expect(placed.map(({ recordId, note }) => [recordId, note.includes('not used')])).toEqual([['A', true], ['B', true]]);
