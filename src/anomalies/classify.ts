@@ -39,7 +39,7 @@ const MOST_LOG_SD = 0.7;
 /** Tops are believed above or below the stated range by this share of the reach (one standard deviation). */
 const DEPTH_SOFT_REACHES = 0.12;
 /**
- * No chance of a casing is stated below or above these: models are never that true. On 21 made field days none of 341
+ * No chance of a casing is stated below or above these: models are never that true. On 21 made field days none of 306
  * sources at the lower bound was a casing.
  */
 export const LEAST_CHANCE = 0.002;

@@ -9,6 +9,8 @@ import type { Operation, Schema } from './types.js';
 
 const chance = (fallback: number, description: string): Schema => ({ type: 'number', minimum: 0, maximum: 1, default: fallback, description });
 
+const NO_RECORDS: Records = { placed: [], unplaced: [] };
+
 /** Records and anomalies to findings. */
 export const reconcile: Operation = {
   id: 'reconcile',
@@ -25,7 +27,7 @@ export const reconcile: Operation = {
     others_per_ha: { type: 'number', exclusiveMinimum: 0, description: 'Sources that are no casings, per hectare; unsaid, as many as the anomalies of this survey make likely.' },
   }),
   inputs: {
-    records: { title: 'Records with their positions', form: 'records' },
+    records: { title: 'Records with their positions', form: 'records', optional: true },
     anomalies: { title: 'Anomalies', form: 'anomalies' },
     detection: { title: 'Chance that the stated casing would have been detected', form: 'grid', unit: '1' },
     covered: { title: 'Ground searched (1) or not (0); without it, ground where something could be detected', form: 'grid', unit: '1', optional: true },
@@ -37,8 +39,9 @@ export const reconcile: Operation = {
     'Williams & Lau (2014), IEEE Trans. Aerosp. Electron. Syst. 50(4): belief propagation for large groups',
   ],
   example: 'ironplat reconcile --survey survey.json --out delivery',
-  async run({ parameters, inputs }) {
-    const records = inputs.records as Records;
+  async run({ parameters, inputs, warn }) {
+    const records = (inputs.records as Records | undefined) ?? NO_RECORDS;
+    if (records === NO_RECORDS) warn('there are no records: every casing is one that no record tells of');
     const detection = inputs.detection as Grid;
     const covered = (inputs.covered as Grid | undefined) ?? heardSomewhere(detection);
     if (covered.width !== detection.width || covered.height !== detection.height || covered.cellM !== detection.cellM || covered.west !== detection.west || covered.north !== detection.north) {
