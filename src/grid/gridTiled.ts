@@ -114,9 +114,11 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
       const rows = new Float32Array(count * frame.width);
       for (let j = first; j < first + count;) {
         const r = Math.floor(j / perRow);
-        const values = await rowOfTiles(r);
         for (const done of rowsOfTiles.keys()) if (done < r) rowsOfTiles.delete(done);
+        const begun = rowOfTiles(r);
+        // So that no thread waits for the last tile of a row.
         if ((r + 1) * perRow < frame.height) void rowOfTiles(r + 1);
+        const values = await begun;
         const until = Math.min(first + count, (r + 1) * perRow);
         rows.set(values.subarray((j - r * perRow) * frame.width, (until - r * perRow) * frame.width), (j - first) * frame.width);
         j = until;

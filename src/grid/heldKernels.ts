@@ -81,7 +81,9 @@ export function heldSmooth(level: PlateLevel, z: Float64Array): void {
       const rest = b[k]! - (a0 + self[k]!) * centre - (a1 + east[k]!) * right - (a1 + south[n]!) * north - (a1 + south[k]!) * below
         - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
         - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
-      const value = centre + OMEGA * inverseDiagonal[k]! * (rest - (a1 + east[k - 1]!) * left);
+      // What waits for the node before is kept short.
+      const step = OMEGA * inverseDiagonal[k]!;
+      const value = (centre + step * rest) - (step * (a1 + east[k - 1]!)) * left;
       z[k] = value;
       northLeft = north;
       north = northRight;

@@ -5,8 +5,8 @@ import { plateAtRim, type PlateLevel } from './plateLevel.js';
  * that a node costs seven reads instead of fourteen. Nodes less than two from the rim go through the tables.
  */
 
-/** Over-relaxation of the smoother: damps the short waves of the 13-point operator faster than 1 does (measured). */
-export const OMEGA = 1.4;
+/** Over-relaxation of the smoother: damps the short waves of the 13-point operator faster than 1 does (measured: 1.2 to 1.4 alike, worse beyond). */
+export const OMEGA = 1.3;
 
 /** out = right − A z at free nodes, 0 at pinned ones. */
 export function plateResidual(level: PlateLevel, z: Float64Array, out: Float32Array): void {
@@ -94,8 +94,8 @@ export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest: befo
     // All that does not wait for the node before comes first.
     const known = b[k]! - a0 * centre - a1 * (right + near) - a2 * (nearLeft + nearRight)
       - alpha * (left2 + right2 + z[k + up2]! + z[k + down2]!);
-    const change = step * known - step * a1 * left;
-    const value = centre + change;
+    const value = (centre + step * known) - (step * a1) * left;
+    const change = value - centre;
     z[k] = value;
     if ((change > largest || -change > largest) && (watch === null || watch[k] !== 0)) largest = Math.abs(change);
     nearLeft = near;

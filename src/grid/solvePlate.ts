@@ -45,8 +45,8 @@ const LAST_SWEEPS = 20;
 const SWEEPS = 3;
 const HELD_SWEEPS = 2;
 /** Coarser grids only supply a start: an error below the next grid's own discretisation is enough. */
-const COARSE_TOLERANCE = 1e-3;
-const COARSE_CYCLES = 5;
+const COARSE_TOLERANCE = 1e-2;
+const COARSE_CYCLES = 2;
 /** Bounds within which the rate of convergence is believed. */
 const BEST_RATE = 0.15;
 const WORST_RATE = 0.95;

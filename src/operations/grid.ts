@@ -1,5 +1,6 @@
 import { estimateLineSpacing } from '../grid/estimateLineSpacing.js';
-import { GRID_DEFAULTS, gridReadings, type GridOptions } from '../grid/gridReadings.js';
+import { GRID_METHODS, gridByMethod, METHOD_DEFAULTS, type MethodOptions } from '../grid/gridByMethod.js';
+import { GRID_DEFAULTS } from '../grid/gridReadings.js';
 import type { Readings } from '../readings/types.js';
 import { camelKeys } from './camelKeys.js';
 import { objectSchema, quantitySchema } from './schema.js';
@@ -8,10 +9,13 @@ import type { Operation } from './types.js';
 /** Reduced readings to a grid of the residual. */
 export const grid: Operation = {
   id: 'grid',
-  version: '1.0.0',
+  version: '1.1.0',
   title: 'Readings to a residual grid',
-  summary: 'Lays a surface of minimum curvature in tension through the reduced readings; cells beyond a stated reach from readings stay empty.',
+  summary: 'Lays a surface of minimum curvature in tension through the reduced readings, or explains them by a layer of sources below; cells beyond a stated reach from readings stay empty. On request each cell has its standard error.',
   parameters: objectSchema({
+    method: { type: 'string', enum: [...GRID_METHODS], default: METHOD_DEFAULTS.method, description: '"tension" is quickest and takes no notice of the sensor\'s height; "sources" allows for it and keeps nearer to the field between lines further apart than the sources are deep; "auto" takes tension only where lines are closer than 0.8 times that depth and the sensor kept its height.' },
+    error: { type: 'boolean', default: METHOD_DEFAULTS.error, description: 'Also write a grid of the standard error of each cell, empty where the readings leave the field unknown.' },
+    noise_nt: quantitySchema('nT', { minimum: 0, description: 'Standard deviation of the error of a reading, for sources and error; unsaid, it is taken from the readings.' }),
     cell_m: quantitySchema('m', { exclusiveMinimum: 0, description: 'Side of a cell; unsaid, a fifth of the line spacing, rounded.', examples: [1, '2 ft'] }),
     spacing_m: quantitySchema('m', { exclusiveMinimum: 0, description: 'Distance between lines; unsaid, it is estimated from the readings.' }),
     tension: { type: 'number', minimum: 0, maximum: 1, default: GRID_DEFAULTS.tension, description: '0 is minimum curvature, 1 a membrane; it works over lengths that the line spacing sets.' },
@@ -24,22 +28,26 @@ export const grid: Operation = {
   },
   outputs: {
     residual: { title: 'Residual grid', form: 'grid', unit: 'nT' },
+    residual_error: { title: 'Standard error of the residual grid', form: 'grid', unit: 'nT', optional: true },
   },
   sources: [
     'Briggs (1974), Machine contouring using minimum curvature, Geophysics 39, 39-48',
     'Smith & Wessel (1990), Gridding with continuous curvature splines in tension, Geophysics 55, 293-305',
+    'Dampney (1969), The equivalent source technique, Geophysics 34, 39-53',
+    'Moritz (1980), Advanced Physical Geodesy, ch. 11 (least norm and collocation)',
+    'Mardia & Marshall (1984), Maximum likelihood estimation of models for residual covariance in spatial regression, Biometrika 71, 135-146',
     'Trottenberg, Oosterlee & Schüller (2001), Multigrid, Academic Press',
     'Felzenszwalb & Huttenlocher (2012), Distance transforms of sampled functions, Theory of Computing 8, 415-428',
   ],
   example: 'ironplat grid --survey survey.json --cell-m 1 --out delivery',
   async run({ parameters, inputs, progress, warn }) {
-    const options = camelKeys<GridOptions>(parameters);
-    const { x, y, line, flag, residual } = inputs.readings as Readings;
+    const options = camelKeys<MethodOptions>(parameters);
+    const { x, y, heightM, line, flag, residual } = inputs.readings as Readings;
     const value = residual.map((nT, n) => (flag[n] === 0 ? nT : NaN));
     const spacingM = options.spacingM ?? estimateLineSpacing({ x, y, line, flag });
-    const result = gridReadings({ x, y, value }, { ...options, spacingM });
+    const { grid: result, error } = gridByMethod({ x, y, up: heightM, line, value }, { ...options, spacingM });
     for (const note of result.notes) progress(note);
     for (const warning of result.warnings) warn(warning);
-    return { residual: result };
+    return error ? { residual: result, residual_error: error } : { residual: result };
   },
 };

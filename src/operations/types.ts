@@ -39,7 +39,7 @@ export interface Slot {
   readonly title: string;
   /** Type of the value: a stage's record type, a Grid, a Layer, an HTML text, or any JSON value. */
   readonly form: 'records' | 'plan' | 'readings' | 'grid' | 'layer' | 'anomalies' | 'findings' | 'html' | 'json';
-  /** An input that the operation can do without. */
+  /** An input that the operation can do without; an output that it makes only when asked. */
   readonly optional?: boolean;
   /** Unit of a grid's values, for the raster's metadata. */
   readonly unit?: string;

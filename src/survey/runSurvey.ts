@@ -62,7 +62,8 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
       progress: (message) => host.progress(`${operation.id}: ${message}`),
       warn: (message) => warn(`${operation.id}: ${message}`),
     });
-    for (const role of Object.keys(operation.outputs)) {
+    for (const [role, slot] of Object.entries(operation.outputs)) {
+      if (outputs[role] === undefined && slot.optional) continue;
       if (outputs[role] === undefined) throw new UserError({ code: 'operation_invalid', where: `operation "${operation.id}"`, found: `no output "${role}"`, wanted: 'every output that the operation declares' });
       values.set(role, outputs[role]);
     }

@@ -10,7 +10,7 @@ const NOISE_NT = 0.5;
 /** Line spacing over the depth of the shallowest sources below the sensor. */
 const CLOSE = [0.5, 0.75, 1];
 const WIDE = [1.5, 2, 3, 4];
-const SURVEYS_EACH = 5;
+const SURVEYS_EACH = 8;
 const SCIPY = hasPythonModule('scipy.interpolate');
 
 interface Case {
@@ -76,7 +76,7 @@ function compare(): readonly Squares[] {
   return JSON.parse(run.stdout) as Squares[];
 }
 
-describe('between the lines, over 35 made surveys', () => {
+describe('between the lines, over 56 made surveys', () => {
   const squares = compare().map((each, c) => ({ ...each, ratio: CASES[c]!.ratio }));
   const pooled = (ratios: readonly number[], against: 'linear' | 'cubic'): number => {
     const chosen = squares.filter(({ ratio }) => ratios.includes(ratio));
@@ -101,5 +101,41 @@ describe('between the lines, over 35 made surveys', () => {
       if (ratio === 0.5) expect(result.method).toBe('tension');
       if (ratio > 1) expect(result.method).toBe('sources');
     }
+  });
+});
+
+describe('the error grid, over the same surveys', () => {
+  /** Classes of distance from the nearest reading, in line spacings. */
+  const CLASSES = [[0, 1 / 6], [1 / 6, 1 / 3], [1 / 3, Infinity]] as const;
+  const scores: Array<{ readonly score: number; readonly distance: number; readonly ratio: number }> = [];
+  let filled = 0;
+  for (const { ratio, survey, result, cells } of CASES) {
+    for (const { k, x, y, field } of cells) {
+      filled++;
+      const score = (field - result.grid.values[k]!) / result.error!.values[k]!;
+      if (Number.isNaN(score)) continue;
+      let nearest = Infinity;
+      for (let n = 0; n < survey.x.length; n++) nearest = Math.min(nearest, (survey.x[n]! - x) ** 2 + (survey.y[n]! - y) ** 2);
+      scores.push({ score, distance: Math.sqrt(nearest) / SPACING_M, ratio });
+    }
+  }
+  const share = (of: typeof scores, within: number): number => of.filter(({ score }) => Math.abs(score) < within).length / of.length;
+
+  it.each(CLASSES)('holds 68 ± 5 %% of the cells within one error and 95 ± 2 %% within two, from %f to %f spacings away', (from, to) => {
+    const chosen = scores.filter(({ distance }) => distance >= from && distance < to);
+    expect(chosen.length).toBeGreaterThan(20_000);
+    expect(share(chosen, 1)).toBeGreaterThan(0.63);
+    expect(share(chosen, 1)).toBeLessThan(0.73);
+    expect(share(chosen, 2)).toBeGreaterThan(0.93);
+    expect(share(chosen, 2)).toBeLessThan(0.97);
+  });
+
+  it('says that the field is unknown between lines too far apart, and nowhere else', () => {
+    expect(scores.length / filled).toBeGreaterThan(0.8);
+    const known = (ratio: number): number => scores.filter((each) => each.ratio === ratio).length / CASES.filter((each) => each.ratio === ratio).reduce((sum, { cells }) => sum + cells.length, 0);
+    for (const ratio of CLOSE) expect(known(ratio)).toBeGreaterThan(0.99);
+    expect(known(4)).toBeLessThan(0.8);
+    // What is far off and known is between lines that bear on it; in the middle of the widest lines nothing is.
+    expect(scores.filter(({ ratio, distance }) => ratio === 4 && distance > 0.45).length).toBeLessThan(0.5 * scores.filter(({ ratio, distance }) => ratio === 1 && distance > 0.45).length);
   });
 });

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { grid } from '../../src/operations/grid.js';
 import type { GridResult } from '../../src/grid/types.js';
+import type { Grid } from '../../src/raster/types.js';
 import type { Task } from '../../src/operations/types.js';
 import type { Readings } from '../../src/readings/types.js';
 
@@ -16,14 +17,14 @@ function readings(): Readings {
       residual.push(k % 10 === 5 ? 1e6 : 10 + x.at(-1)!);
     }
   }
-  return { count: x.length, x: Float64Array.from(x), y: Float64Array.from(y), line: Int32Array.from(line), flag: Uint8Array.from(flag), residual: Float64Array.from(residual) } as unknown as Readings;
+  return { count: x.length, x: Float64Array.from(x), y: Float64Array.from(y), heightM: new Float64Array(x.length).fill(2), line: Int32Array.from(line), flag: Uint8Array.from(flag), residual: Float64Array.from(residual) } as unknown as Readings;
 }
 
-async function run(parameters: Record<string, unknown>): Promise<{ residual: GridResult; warnings: string[]; notes: string[] }> {
+async function run(parameters: Record<string, unknown>): Promise<{ residual: GridResult; error: Grid | undefined; warnings: string[]; notes: string[] }> {
   const warnings: string[] = [], notes: string[] = [];
   const task = { parameters, inputs: { readings: readings() }, warn: (m: string) => warnings.push(m), progress: (m: string) => notes.push(m) } as unknown as Task;
-  const { residual } = await grid.run(task);
-  return { residual: residual as GridResult, warnings, notes };
+  const { residual, residual_error: error } = await grid.run(task);
+  return { residual: residual as GridResult, error: error as Grid | undefined, warnings, notes };
 }
 
 describe('the grid operation', () => {
@@ -42,6 +43,16 @@ describe('the grid operation', () => {
       if (Number.isNaN(value)) continue;
       expect(value).toBeCloseTo(10 + residual.west + (k % residual.width) + 0.5, 3);
     }
+  });
+
+  it('leaves the error out unless it is asked for, and tells of the sources where it is', async () => {
+    const plain = await run(defaults);
+    expect(plain.error).toBeUndefined();
+    const { residual, error, notes } = await run({ ...defaults, method: 'auto', error: true, noise_nt: 0.3 });
+    expect(error!.values.length).toBe(residual.values.length);
+    expect(notes.join(' ')).toMatch(/noise of a reading 0.3 nT|in tension/);
+    expect(notes.join(' ')).toMatch(/below the sensor/);
+    for (let k = 0; k < residual.values.length; k++) if (Number.isNaN(residual.values[k]!)) expect(error!.values[k]).toBeNaN();
   });
 
   it('takes what it is told', async () => {

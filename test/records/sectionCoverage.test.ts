@@ -1,3 +1,4 @@
+import geographiclib from 'geographiclib-geodesic';
 import { describe, expect, it } from 'vitest';
 import { pointInArea } from '../../src/density/area.js';
 import { region95, type Region95 } from '../../src/density/region95.js';
@@ -70,7 +71,7 @@ function locate(rows: readonly string[], layer: SectionLayer): readonly WellReco
 
 const share = (count: number, of: number): number => (100 * count) / of;
 
-describe('of 10,000 wells on moved section lines 95 ± 1 % lie in the 95 % region', () => {
+describe('of 10,000 wells 95 ± 1 % lie in the 95 % region of what records say in words', () => {
   it('by footage calls', { timeout: 60_000 }, () => {
     const random = new Random(5);
     let [inside, wells] = [0, 0];
@@ -127,5 +128,30 @@ describe('of 10,000 wells on moved section lines 95 ± 1 % lie in the 95 % regio
     }
     expect(wells).toBe(10_080);
     expect(Math.abs(share(inside, wells) - 95)).toBeLessThan(1);
+  });
+
+  it('by distances from the corner of a map, on the datum of the map', () => {
+    const random = new Random(8);
+    // The corner stands at 39°17'30" N 80°12'30" W of NAD27; what the test site does to NAD27 is undone by hand.
+    const [cornerLat, cornerLon] = [39 + 17.5 / 60, -(80 + 12.5 / 60)];
+    const earth = new geographiclib.Geodesic.Geodesic(6378206.4, 1 - 6356583.8 / 6378206.4);
+    const places: Array<readonly [number, number]> = [];
+    const rows = Array.from({ length: 10_000 }, () => {
+      // All of them north and east of the corner.
+      const place = [centreX + 1200 * (random.uniform() - 0.5), centreY + 1200 * (random.uniform() - 0.5)] as const;
+      places.push(place);
+      const slip = mapSlip(random);
+      const [lon, lat] = frame.inverse(place[0] + slip[0] * toStandard, place[1] + slip[1] * toStandard);
+      const [onMapLon, onMapLat] = [lon - 0.00019, lat - 0.00009];
+      const north = earth.Inverse(cornerLat, cornerLon, onMapLat, cornerLon).s12!;
+      const east = earth.Inverse(onMapLat, cornerLon, onMapLat, onMapLon).s12!;
+      const feet = (m: number): string => `${Math.round(m / FOOT_M / 10) * 10}'`;
+      return `${feet(north)} N of 39°17'30", ${feet(east)} E of 80°12'30"`;
+    });
+    const table = { source: 'p.csv', names: ['loc'], rows: rows.length, columns: new Map([['loc', rows]]) };
+    const { placed } = locateRecords([{ kind: 'table', name: 'p.csv', table, settings: { columns: { location: 'loc' }, datum: 'NAD27', source: 'map', mapScale: 24_000 } }], testSite());
+    expect(placed).toHaveLength(10_000);
+    const inside = placed.filter(({ density }, i) => region95(density).contains(...places[i]!)).length;
+    expect(Math.abs(share(inside, 10_000) - 95)).toBeLessThan(1);
   });
 });

@@ -4,7 +4,7 @@ import { DEEP_SPACINGS } from './layer.js';
 import { layerDepthM } from './layerDepth.js';
 import { fieldError, type OpennessMaps } from './fieldError.js';
 import { patchOpenness, patchValue, solvePatch, type Openness, type Patch } from './patch.js';
-import { placeReadings, readingsWithin, type HighSamples } from './placedReadings.js';
+import { placeReadings, readingsWithin, type HighSamples, type PlacedReadings } from './placedReadings.js';
 
 export interface SourcesOptions {
   /** Distance between lines, metres. */
@@ -62,7 +62,9 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
 
   const sum = new Float64Array(width * height);
   const share = new Float64Array(width * height);
-  const maps: OpennessMaps | null = error ? { variance: new Float32Array(sum.length).fill(NaN), strength: new Float32Array(sum.length), expected: new Float32Array(sum.length) } : null;
+  const maps: OpennessMaps | null = error ? {
+    variance: new Float32Array(sum.length).fill(NaN), strength: new Float32Array(sum.length), expected: new Float32Array(sum.length), occupied: occupiedCells(readings, frame),
+  } : null;
   const is = (k: number): boolean => wanted === null || wanted[k] === 1;
   for (let bj = 0; (bj - 1) * side < height; bj++) {
     for (let bi = 0; (bi - 1) * side < width; bi++) {
@@ -78,7 +80,18 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
     }
   }
   const values = Float32Array.from(sum, (s, k) => (share[k]! > 0 ? s / share[k]! : NaN));
-  return { values, error: maps && fieldError(maps, { width, height, spacingCells: spacingM / cellM }), depthM };
+  return { values, error: maps && fieldError(maps, { width, height, spacing: spacingM / cellM, depth: depthM / cellM, noiseNT }), depthM };
+}
+
+/** 1 at cells that hold readings. */
+function occupiedCells({ x, y }: PlacedReadings, { width, height, west, north, cellM }: GridFrame): Float32Array {
+  const occupied = new Float32Array(width * height);
+  for (let n = 0; n < x.length; n++) {
+    const i = Math.floor((x[n]! - west) / cellM);
+    const j = Math.floor((north - y[n]!) / cellM);
+    if (i >= 0 && i < width && j >= 0 && j < height) occupied[j * width + i] = 1;
+  }
+  return occupied;
 }
 
 /** A block's middle, at a corner of cells, and the number of cells to the next block's. */
