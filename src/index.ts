@@ -29,10 +29,14 @@ export { readVector } from './vector/readVector.js';
 export type { Feature, Field, FieldType, FieldValue, Layer, VectorInput } from './vector/types.js';
 
 export { encodeCog, COG_DEFAULTS, type CogOptions, type Deflate } from './raster/encodeCog.js';
+export { writeCog } from './raster/writeCog.js';
+export { openGeoTiff } from './raster/openGeoTiff.js';
+export { httpSource } from './raster/httpSource.js';
+export { memoryScratch, memorySink, memorySource, type ByteScratch, type ByteSink, type ByteSource } from './raster/byteStores.js';
 export { checkCog } from './raster/checkCog.js';
 export { readGeoTiff } from './raster/readGeoTiff.js';
 export { sldStyle } from './raster/sldStyle.js';
-export type { Grid } from './raster/types.js';
+export type { Grid, GridPlace, RowSource } from './raster/types.js';
 
 export { mainFieldAt, mainFieldInFrame, MAIN_FIELD_YEARS } from './field/mainField.js';
 export { casingSteel, listedCasings, poleFromCasing } from './field/casing.js';
@@ -40,6 +44,7 @@ export type { MainField } from './field/types.js';
 
 export { ellipse95, ellipseRing } from './density/ellipse.js';
 export { expectation } from './density/expectation.js';
+export { region95 } from './density/region95.js';
 export { massIn } from './density/massIn.js';
 export type { Area, Covariance, Density, DensityPart, Ellipse, Rings } from './density/types.js';
 
@@ -51,6 +56,8 @@ export { makeSite, SITE_DEFAULTS, type SiteSettings } from './site/makeSite.js';
 export { clipAreas } from './site/clipAreas.js';
 export type { Site } from './site/types.js';
 
+export { parseApiNumber } from './records/apiNumber.js';
+export { parseLocation } from './records/locationText/parseLocation.js';
 export { locateRecords, LOCATE_DEFAULTS } from './records/locateRecords.js';
 export type { Records, UnplacedRecord, WellRecord } from './records/types.js';
 export { planSurvey, PLAN_DEFAULTS } from './plan/planSurvey.js';

@@ -1,6 +1,7 @@
 import { NONE, number } from './format.js';
 import { html, type Html } from './html.js';
 import { framePlace } from './places.js';
+import { recordRemarks } from './recordRemarks.js';
 import { table } from './table.js';
 import type { ReportContent } from './types.js';
 
@@ -8,6 +9,7 @@ import type { ReportContent } from './types.js';
 export function recordsSection({ records, site }: ReportContent): Html | null {
   if (!records) return null;
   const { symbol } = framePlace(site, 0, 0);
+  const remarks = recordRemarks(records).filter(({ kind }) => kind !== 'not placed');
   return html`
 <section id="records">
 <h2>Records</h2>
@@ -32,6 +34,12 @@ ${records.unplaced.length > 0 && table(records.unplaced, [
     { head: 'What is wrong', cell: ({ problem }) => problem },
     { head: 'What to do', cell: ({ advice }) => advice },
   ], { caption: 'Records that could not be placed. They take no part in any result until they are mended.', none: '' })}
+${remarks.length > 0 && table(remarks, [
+    { head: 'Record', names: true, cell: ({ recordId, row }) => html`<span class="word">${recordId || `row ${row}`}</span>` },
+    { head: 'File and row', cell: ({ source, row }) => `${source}, row ${row}` },
+    { head: 'Kind', cell: ({ kind }) => kind },
+    { head: 'Remark', cell: ({ text }) => text },
+  ], { caption: 'Records to look at: statements that disagree, repairs, rows joined, API numbers.', none: '' })}
 </section>`;
 }
 

@@ -11,6 +11,7 @@ const FILES: ReadonlyArray<ReportFile & { readonly part: Told }> = [
   { part: 'anomalies', name: 'anomalies_outlines.geojson, anomalies_outlines.fgb', format: BOTH, title: 'Outlines of the anomalies' },
   { part: 'records', name: 'records.geojson, records.fgb', format: BOTH, title: 'Best places of the records' },
   { part: 'records', name: 'records_ellipses.geojson, records_ellipses.fgb', format: BOTH, title: '95 % ellipses of the records' },
+  { part: 'records', name: 'records_log.csv, records_remarks.csv', format: 'CSV', title: 'How each row became a place; what to look at' },
   { part: 'plan', name: 'plan.geojson, plan.fgb', format: BOTH, title: 'Lines in walking order' },
   { part: 'plan', name: 'search_area.geojson, search_area.fgb', format: BOTH, title: 'Ground to be searched' },
   { part: 'plan', name: 'plan.gpx', format: 'GPX 1.1', title: 'Lines for a receiver' },

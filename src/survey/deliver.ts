@@ -16,6 +16,7 @@ import { planLayers } from './layers/planLayers.js';
 import { recordLayers } from './layers/recordLayers.js';
 import { layerFiles, type VectorFormat } from './layerFiles.js';
 import { planGpx } from './planGpx.js';
+import { recordTables } from './recordTables.js';
 import type { AssetTrace } from './stacItem.js';
 import { encodeReadings } from './readingsCsv.js';
 import { encodeValue } from './valueJson.js';
@@ -37,7 +38,7 @@ export async function deliverRole(role: string, value: unknown, options: {
   const { slot, site, host, formats } = options;
   const layers = (made: readonly Layer[]): Promise<Delivered[]> => layerFiles(made, { role, site, host, formats });
   switch (slot.form) {
-    case 'records': return [...await layers(recordLayers(value as Records, site)), stageFile(role, slot, value)];
+    case 'records': return [...await layers(recordLayers(value as Records, site)), ...recordTables(role, value as Records), stageFile(role, slot, value)];
     case 'plan': return [...await layers(planLayers(value as SurveyPlan, site)), planGpx(value as SurveyPlan, site), stageFile(role, slot, value)];
     case 'anomalies': return [...await layers(anomalyLayers(value as Anomalies, site)), stageFile(role, slot, value)];
     case 'findings': return [...await layers(findingLayers(value as Findings, site)), stageFile(role, slot, value)];

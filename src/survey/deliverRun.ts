@@ -21,6 +21,7 @@ export async function deliverRun(result: RunResult, options: {
   const delivered: Delivered[] = [];
   for (const { operation } of result.steps) {
     for (const [role, slot] of Object.entries(operation.outputs)) {
+      if (!result.values.has(role)) continue;
       // An optional output that nobody asked for.
       if (slot.optional && !result.values.has(role)) continue;
       delivered.push(...await deliverRole(role, result.values.get(role), { slot, operation, site: result.site, host, formats }));

@@ -27,7 +27,7 @@ const STRENGTH_RADIUS = 0.35;
  * none there seldom is one. The numbers are measured on made surveys over casings, compact iron and geology, lines half
  * to four times as far apart as the sources are deep.
  */
-const OWN = 0.95;
+const OWN = 0.91;
 const DULLED = 0.93;
 const FEW = 0.1;
 /** Distance from a place to the mean of the readings around it (Gaussian weights of half a spacing), over half a spacing: up to the first they lie on all sides, from the second on one. */
