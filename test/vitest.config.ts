@@ -10,6 +10,7 @@ class LongestFirst extends BaseSequencer {
       const at = LONG.findIndex((part) => moduleId.includes(`/test/${part}`));
       return at < 0 ? LONG.length : at;
     };
+    // oxlint-disable-next-line unicorn/no-array-sort -- the sequencer's own method, no array's
     return (await super.sort(files)).toSorted((a, b) => rank(a) - rank(b));
   }
 }

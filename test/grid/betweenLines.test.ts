@@ -121,7 +121,7 @@ describe('the error grid, over the same surveys', () => {
   }
   const share = (of: typeof scores, within: number): number => of.filter(({ score }) => Math.abs(score) < within).length / of.length;
 
-  it.each(CLASSES)('holds 68 ± 5 %% of the cells within one error and 95 ± 2 %% within two, from %f to %f spacings away', (from, to) => {
+  it.each(CLASSES.map((each) => ({ from: each[0], to: each[1], title: each.map((spacings) => spacings.toFixed(2)).join(' to ') })))('is met once by 68 ± 5 in a hundred cells and twice by 95 ± 2, at $title spacings from readings', ({ from, to }) => {
     const chosen = scores.filter(({ distance }) => distance >= from && distance < to);
     expect(chosen.length).toBeGreaterThan(20_000);
     expect(share(chosen, 1)).toBeGreaterThan(0.63);

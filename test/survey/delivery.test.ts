@@ -61,7 +61,7 @@ describe('the delivered demo', () => {
     expect(raster!.stac!['proj:epsg']).toBe(2272);
     const asset = json('item.json').assets[name];
     expect(files.get(`${name}.sld`)!.toString('utf8')).toContain('<RasterSymbolizer>');
-    expect(raster!.size).toEqual([...asset['proj:shape']].reverse());
+    expect(raster!.size).toEqual((asset['proj:shape'] as number[]).toReversed());
     raster!.geoTransform.forEach((value, i) => expect(value).toBeCloseTo([asset['proj:transform'][2], asset['proj:transform'][0], 0, asset['proj:transform'][5], 0, asset['proj:transform'][4]][i], 6));
   });
 
