@@ -3,7 +3,7 @@ import { distanceToAreaM } from './distanceToArea.js';
 import { farAdvice, farFromParcel } from './farFromParcel.js';
 import { likelySlips, type Slip } from './implausible.js';
 import type { LocateContext, RowRepair } from './locateContext.js';
-import { placeCoordinates, type Candidate } from './placeRecord.js';
+import { placeCoordinates, type Candidate } from './placeCoordinates.js';
 import type { Fault, RawPlace, RawText } from './rawRecord.js';
 import type { Solution } from './solution.js';
 import { metres, type SourceError } from './sourceError.js';

@@ -4,7 +4,7 @@ import type { Site } from '../site/types.js';
 import { distanceToAreaM } from './distanceToArea.js';
 import { framePlace } from './framePlace.js';
 import { geodesicM, inverseOrNull, likelySlips, type Slip } from './implausible.js';
-import type { Candidate } from './placeRecord.js';
+import type { Candidate } from './placeCoordinates.js';
 import type { Fault, RawText } from './rawRecord.js';
 import type { Solution } from './solution.js';
 

@@ -10,7 +10,7 @@ import { joinDuplicates } from './joinDuplicates.js';
 import type { LocateContext } from './locateContext.js';
 import type { Fault, RawRecord } from './rawRecord.js';
 import { readRawRecords } from './readRawRecords.js';
-import { decisionOf } from './recordLog.js';
+import { decisionOf } from './decisionOf.js';
 import { fullSettings, RECORD_FILE_DEFAULTS, type RecordSource } from './recordSource.js';
 import { SharedSlip } from './sharedSlip.js';
 import { solveRecord, type Outcome } from './solveRecord.js';

@@ -2,7 +2,7 @@ import { drawnEllipse } from '../density/drawnEllipse.js';
 import type { DensityPart } from '../density/types.js';
 import type { Slip } from './implausible.js';
 import type { LocateContext, RowRepair } from './locateContext.js';
-import { percent } from './placeRecord.js';
+import { percent } from './placeCoordinates.js';
 import type { Fault, RawRecord } from './rawRecord.js';
 import { readUnits, type Units } from './readUnits.js';
 import { groupColumns } from './recordHead.js';

@@ -11,9 +11,9 @@ import type { Crs } from '../geodesy/types.js';
 import { faultOf } from './faultOf.js';
 import { aliquot, formatLocation } from './locationText/formatLocation.js';
 import type { MeasuredFrom, SectionStatement } from './locationText/types.js';
-import { groupWords } from './placeRecord.js';
+import { groupWords } from './placeCoordinates.js';
 import type { Fault, RawText } from './rawRecord.js';
-import { tieAsCalls } from './sectionTies.js';
+import { tieAsCalls } from './tieAsCalls.js';
 import type { Solution, StatementKind } from './solution.js';
 import { metres } from './sourceError.js';
 

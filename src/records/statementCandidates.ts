@@ -2,7 +2,7 @@ import { ELLIPSOIDS, metresPerDegree } from '../geodesy/ellipsoid.js';
 import { placeFromMapCorner } from '../geodesy/sections/placeFromMapCorner.js';
 import type { Crs } from '../geodesy/types.js';
 import type { GeographicStatement, MapCornerStatement, ProjectedStatement } from './locationText/types.js';
-import type { Candidate } from './placeRecord.js';
+import type { Candidate } from './placeCoordinates.js';
 import { projectedReading } from './projectedCrs.js';
 import type { DatumWeights } from './recordDatum.js';
 
