@@ -47,6 +47,13 @@ const HELD_SWEEPS = 2;
 /** Coarser grids only supply a start: an error below the next grid's own discretisation is enough. */
 const COARSE_TOLERANCE = 1e-2;
 const COARSE_CYCLES = 2;
+/**
+ * Share of a correction that is taken: the hold lets corrections grow a little too large near pins. Where cycles leave more
+ * than the slow rate, the share is found anew in each, which costs a quarter of a cycle and pays where pins are sparse
+ * (measured).
+ */
+const SHARE = 0.7;
+const SLOW_RATE = 0.3;
 /** Bounds within which the rate of convergence is believed. */
 const BEST_RATE = 0.15;
 const WORST_RATE = 0.95;
@@ -113,7 +120,7 @@ interface Work {
 function solveOnGrid(grids: Grids, { l, z, watch }: Work, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
   layHolds(grids, l);
   grids.levels[l]!.right.fill(0);
-  const path = { step: new Float32Array(z.length), image: new Float32Array(z.length) };
+  let path: Path | null = null;
   let before = NaN;
   let remaining = Infinity;
   for (let step = 1; step <= maxSteps; step++) {
@@ -122,6 +129,7 @@ function solveOnGrid(grids: Grids, { l, z, watch }: Work, { tolerance, maxSteps 
     // The changes fall about geometrically: what is still to come is their sum.
     remaining = (size * rate) / (1 - rate);
     if (remaining <= tolerance) return { iterations: step, remaining, converged: true };
+    if (size > SLOW_RATE * before) path ??= { step: new Float32Array(z.length), image: new Float32Array(z.length) };
     before = size;
   }
   return { iterations: maxSteps, remaining, converged: false };
@@ -148,8 +156,8 @@ function layHolds({ levels, pins }: Grids, start: number): void {
   }
 }
 
-/** One V-cycle on the surface itself; returns the size of the largest change. */
-function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: Path): number {
+/** One V-cycle on the surface itself, by a fixed share where `path` is null; returns the size of the largest change. */
+function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: Path | null): number {
   const level = levels[l]!;
   const last = l === levels.length - 1;
   let size = sweep(level, pins[l]!, { z, watch });
@@ -162,10 +170,15 @@ function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: 
   correct({ levels, transfers }, l + 1);
   const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: null, watch });
   pinCorrection(correction, pins[l]!.pins, level);
-  const length = advance(level, z, path);
+  const length = path ? advance(level, z, path) : add(z, correction);
   size = Math.max(size, length * most);
   for (let n = 0; n < SWEEPS; n++) sweep(level, pins[l]!, { z, watch });
   return size;
+}
+
+function add(z: Float64Array, correction: Float64Array): number {
+  for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
+  return SHARE;
 }
 
 /** The last coarse step and what the operator makes of it; zero before the first. */
