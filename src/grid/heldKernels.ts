@@ -5,97 +5,97 @@ import { plateAtRim, type PlateLevel } from './plateLevel.js';
 
 /** out = right − (A + H) z. */
 export function heldResidual(level: PlateLevel, z: Float64Array, out: Float32Array): void {
+  for (let j = 0; j < level.height; j++) heldResidualRow(level, z, { out, j });
+}
+
+export function heldResidualRow(level: PlateLevel, z: Float64Array, { out, j }: { out: Float32Array; j: number }): void {
   const { width, height, alpha, tau, hold, right: b } = level;
   const { self, east, south, southEast, southWest } = hold;
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  for (let j = 0; j < height; j++) {
-    const start = j * width;
-    if (j < 2 || j >= height - 2 || width < 5) {
-      for (let k = start; k < start + width; k++) out[k] = b[k]! - heldAtRim(level, z, k);
-      continue;
-    }
-    for (let k = start; k < start + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
-    const end = start + width - 2;
-    let n = start + 2 - width;
-    let s = start + 2 + width;
-    let northLeft = z[n - 1]!;
-    let north = z[n]!;
-    let southLeft = z[s - 1]!;
-    let below = z[s]!;
-    let left2 = z[start]!;
-    let left = z[start + 1]!;
-    let centre = z[start + 2]!;
-    let right = z[start + 3]!;
-    for (let k = start + 2; k < end; k++, n++, s++) {
-      const northRight = z[n + 1]!;
-      const southRight = z[s + 1]!;
-      const right2 = z[k + 2]!;
-      const rest = b[k]! - (a0 + self[k]!) * centre - (a1 + east[k]!) * right - (a1 + south[n]!) * north - (a1 + south[k]!) * below
-        - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
-        - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
-      out[k] = rest - (a1 + east[k - 1]!) * left;
-      northLeft = north;
-      north = northRight;
-      southLeft = below;
-      below = southRight;
-      left2 = left;
-      left = centre;
-      centre = right;
-      right = right2;
-    }
-    for (let k = end; k < end + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
+  const start = j * width;
+  if (j < 2 || j >= height - 2 || width < 5) {
+    for (let k = start; k < start + width; k++) out[k] = b[k]! - heldAtRim(level, z, k);
+    return;
   }
+  for (let k = start; k < start + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
+  const end = start + width - 2;
+  let n = start + 2 - width;
+  let s = start + 2 + width;
+  let northLeft = z[n - 1]!;
+  let north = z[n]!;
+  let southLeft = z[s - 1]!;
+  let below = z[s]!;
+  let left2 = z[start]!;
+  let left = z[start + 1]!;
+  let centre = z[start + 2]!;
+  let right = z[start + 3]!;
+  for (let k = start + 2; k < end; k++, n++, s++) {
+    const northRight = z[n + 1]!;
+    const southRight = z[s + 1]!;
+    const right2 = z[k + 2]!;
+    const rest = b[k]! - (a0 + self[k]!) * centre - (a1 + east[k]!) * right - (a1 + south[n]!) * north - (a1 + south[k]!) * below
+      - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
+      - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
+    out[k] = rest - (a1 + east[k - 1]!) * left;
+    northLeft = north;
+    north = northRight;
+    southLeft = below;
+    below = southRight;
+    left2 = left;
+    left = centre;
+    centre = right;
+    right = right2;
+  }
+  for (let k = end; k < end + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
 }
 
-/** One Gauss–Seidel sweep on (A + H) z = right. */
-export function heldSmooth(level: PlateLevel, z: Float64Array): void {
+/** One Gauss–Seidel sweep of row `j` on (A + H) z = right. */
+export function heldSmoothRow(level: PlateLevel, z: Float64Array, j: number): void {
   const { width, height, alpha, tau, hold, inverseDiagonal, right: b } = level;
   const { self, east, south, southEast, southWest } = hold;
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  for (let j = 0; j < height; j++) {
-    const start = j * width;
-    if (j < 2 || j >= height - 2 || width < 5) {
-      for (let k = start; k < start + width; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
-      continue;
-    }
-    for (let k = start; k < start + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
-    const end = start + width - 2;
-    let n = start + 2 - width;
-    let s = start + 2 + width;
-    let northLeft = z[n - 1]!;
-    let north = z[n]!;
-    let southLeft = z[s - 1]!;
-    let below = z[s]!;
-    let left2 = z[start]!;
-    let left = z[start + 1]!;
-    let centre = z[start + 2]!;
-    let right = z[start + 3]!;
-    for (let k = start + 2; k < end; k++, n++, s++) {
-      const northRight = z[n + 1]!;
-      const southRight = z[s + 1]!;
-      const right2 = z[k + 2]!;
-      const rest = b[k]! - (a0 + self[k]!) * centre - (a1 + east[k]!) * right - (a1 + south[n]!) * north - (a1 + south[k]!) * below
-        - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
-        - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
-      // What waits for the node before is kept short.
-      const step = OMEGA * inverseDiagonal[k]!;
-      const value = (centre + step * rest) - (step * (a1 + east[k - 1]!)) * left;
-      z[k] = value;
-      northLeft = north;
-      north = northRight;
-      southLeft = below;
-      below = southRight;
-      left2 = left;
-      left = value;
-      centre = right;
-      right = right2;
-    }
-    for (let k = end; k < end + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
+  const start = j * width;
+  if (j < 2 || j >= height - 2 || width < 5) {
+    for (let k = start; k < start + width; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
+    return;
   }
+  for (let k = start; k < start + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
+  const end = start + width - 2;
+  let n = start + 2 - width;
+  let s = start + 2 + width;
+  let northLeft = z[n - 1]!;
+  let north = z[n]!;
+  let southLeft = z[s - 1]!;
+  let below = z[s]!;
+  let left2 = z[start]!;
+  let left = z[start + 1]!;
+  let centre = z[start + 2]!;
+  let right = z[start + 3]!;
+  for (let k = start + 2; k < end; k++, n++, s++) {
+    const northRight = z[n + 1]!;
+    const southRight = z[s + 1]!;
+    const right2 = z[k + 2]!;
+    const rest = b[k]! - (a0 + self[k]!) * centre - (a1 + east[k]!) * right - (a1 + south[n]!) * north - (a1 + south[k]!) * below
+      - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
+      - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
+    // What waits for the node before is kept short.
+    const step = OMEGA * inverseDiagonal[k]!;
+    const value = (centre + step * rest) - (step * (a1 + east[k - 1]!)) * left;
+    z[k] = value;
+    northLeft = north;
+    north = northRight;
+    southLeft = below;
+    below = southRight;
+    left2 = left;
+    left = value;
+    centre = right;
+    right = right2;
+  }
+  for (let k = end; k < end + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
 }
 
 function heldAtRim(level: PlateLevel, z: Float64Array, k: number): number {

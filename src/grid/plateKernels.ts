@@ -10,42 +10,44 @@ export const OMEGA = 1.3;
 
 /** out = right − A z at free nodes, 0 at pinned ones. */
 export function plateResidual(level: PlateLevel, z: Float64Array, out: Float32Array): void {
+  for (let j = 0; j < level.height; j++) plateResidualRow(level, z, { out, j });
+}
+
+export function plateResidualRow(level: PlateLevel, z: Float64Array, { out, j }: { out: Float32Array; j: number }): void {
   const { width, height, alpha, tau, inverseDiagonal, right: b } = level;
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  for (let j = 0; j < height; j++) {
-    const start = j * width;
-    const rimRow = j < 2 || j >= height - 2 || width < 5;
-    const first = rimRow ? width : 2;
-    for (let i = 0; i < first; i++) residualAtRim(level, z, out, start + i);
-    if (rimRow) continue;
-    const end = start + width - 2;
-    let k = start + 2;
-    const up = -width;
-    const up2 = -2 * width;
-    const down2 = 2 * width;
-    let nearLeft = z[k + up - 1]! + z[k + width - 1]!;
-    let near = z[k + up]! + z[k + width]!;
-    let left2 = z[k - 2]!;
-    let left = z[k - 1]!;
-    let centre = z[k]!;
-    let right = z[k + 1]!;
-    for (; k < end; k++) {
-      const right2 = z[k + 2]!;
-      const nearRight = z[k + up + 1]! + z[k + width + 1]!;
-      const sum = a0 * centre + a1 * (left + right + near) + a2 * (nearLeft + nearRight)
-        + alpha * (left2 + right2 + z[k + up2]! + z[k + down2]!);
-      out[k] = inverseDiagonal[k] === 0 ? 0 : b[k]! - sum;
-      nearLeft = near;
-      near = nearRight;
-      left2 = left;
-      left = centre;
-      centre = right;
-      right = right2;
-    }
-    for (k = end; k < end + 2; k++) residualAtRim(level, z, out, k);
+  const start = j * width;
+  const rimRow = j < 2 || j >= height - 2 || width < 5;
+  const first = rimRow ? width : 2;
+  for (let i = 0; i < first; i++) residualAtRim(level, z, out, start + i);
+  if (rimRow) return;
+  const end = start + width - 2;
+  let k = start + 2;
+  const up = -width;
+  const up2 = -2 * width;
+  const down2 = 2 * width;
+  let nearLeft = z[k + up - 1]! + z[k + width - 1]!;
+  let near = z[k + up]! + z[k + width]!;
+  let left2 = z[k - 2]!;
+  let left = z[k - 1]!;
+  let centre = z[k]!;
+  let right = z[k + 1]!;
+  for (; k < end; k++) {
+    const right2 = z[k + 2]!;
+    const nearRight = z[k + up + 1]! + z[k + width + 1]!;
+    const sum = a0 * centre + a1 * (left + right + near) + a2 * (nearLeft + nearRight)
+      + alpha * (left2 + right2 + z[k + up2]! + z[k + down2]!);
+    out[k] = inverseDiagonal[k] === 0 ? 0 : b[k]! - sum;
+    nearLeft = near;
+    near = nearRight;
+    left2 = left;
+    left = centre;
+    centre = right;
+    right = right2;
   }
+  for (k = end; k < end + 2; k++) residualAtRim(level, z, out, k);
 }
 
 function residualAtRim(level: PlateLevel, z: Float64Array, out: Float32Array, k: number): void {

@@ -85,14 +85,15 @@ export function plateAtRim(level: PlateLevel, z: Float64Array, k: number): numbe
   return sum;
 }
 
-export function plateLevel(size: { width: number; height: number; alpha: number; tau: number }): PlateLevel {
+/** `finest`: no finer grid's pins will ever be held here. */
+export function plateLevel(size: { width: number; height: number; alpha: number; tau: number }, { finest = false } = {}): PlateLevel {
   const count = size.width * size.height;
   return {
     ...size,
     xAxis: axisTables(size.width),
     yAxis: axisTables(size.height),
     inverseDiagonal: new Float32Array(count),
-    hold: emptyHold(count),
+    hold: emptyHold(finest ? 0 : count),
     correction: new Float64Array(count),
     right: new Float32Array(count),
     scratch: new Float32Array(count),

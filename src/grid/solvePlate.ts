@@ -1,10 +1,11 @@
 import { clearHold, coarsenHold, holdPins } from './hold.js';
-import { heldResidual, heldSmooth } from './heldKernels.js';
+import { heldResidualRow, heldSmoothRow } from './heldKernels.js';
 import { coarsenPins, movePinsOfRow, pinCorrection, pinRows, type PinRows, type Pins } from './pins.js';
-import { plateResidual, smoothRow } from './plateKernels.js';
+import { plateResidual, plateResidualRow, smoothRow } from './plateKernels.js';
 import { fillDiagonal, plateLevel, type PlateLevel } from './plateLevel.js';
 import { spikeWeights } from './spikeWeights.js';
 import { prolong, restrict, transfer, type Transfer } from './transfer.js';
+import { wavefront } from './wavefront.js';
 
 /**
  * The surface of least energy through the pins, by full multigrid: each grid starts from the solution on the next coarser
@@ -95,7 +96,7 @@ function spread(values: Float64Array): number {
 }
 
 function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
-  const levels = [plateLevel({ width, height, alpha, tau })];
+  const levels = [plateLevel({ width, height, alpha, tau }, { finest: true })];
   const pinsOf = [pins];
   const transfers: Transfer[] = [];
   for (;;) {
@@ -160,19 +161,17 @@ function layHolds({ levels, pins }: Grids, start: number): void {
 function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: Path | null): number {
   const level = levels[l]!;
   const last = l === levels.length - 1;
-  let size = sweep(level, pins[l]!, { z, watch });
-  for (let n = 1; n < (last ? LAST_SWEEPS : SWEEPS); n++) sweep(level, pins[l]!, { z, watch });
+  let size = sweeps(level, pins[l]!, { z, watch, count: last ? LAST_SWEEPS : SWEEPS, residual: !last });
   if (last) return size;
   const coarse = levels[l + 1]!;
   const { correction, scratch } = level;
-  plateResidual(level, z, scratch);
   restrict(transfers[l]!, [scratch, coarse.right]);
   correct({ levels, transfers }, l + 1);
   const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: null, watch });
   pinCorrection(correction, pins[l]!.pins, level);
   const length = path ? advance(level, z, path) : add(z, correction);
   size = Math.max(size, length * most);
-  for (let n = 0; n < SWEEPS; n++) sweep(level, pins[l]!, { z, watch });
+  sweeps(level, pins[l]!, { z, watch, count: SWEEPS, residual: false });
   return size;
 }
 
@@ -228,14 +227,29 @@ function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): num
 /** Relative determinant below which two directions are taken for one: rounding of 32-bit work space. */
 const PARALLEL = 1e-5;
 
-function sweep(level: PlateLevel, pins: PinRows, { z, watch }: Pick<Work, 'z' | 'watch'>): number {
-  const { width, height } = level;
-  let largest = 0;
-  for (let j = 0; j < height; j++) {
-    largest = movePinsOfRow(z, pins, { width, height, j, largest });
-    largest = smoothRow(level, z, { j, largest, watch });
-  }
-  return largest;
+interface Sweeps {
+  readonly z: Float64Array;
+  readonly watch: Uint8Array | null;
+  readonly count: number;
+  /** Leaves the residual in level.scratch. */
+  readonly residual: boolean;
+}
+
+/** Sweeps over the surface; returns the size of the largest change in the first. */
+function sweeps(level: PlateLevel, pins: PinRows, { z, watch, count, residual }: Sweeps): number {
+  const { width, height, scratch } = level;
+  let first = 0;
+  wavefront(height, count + (residual ? 1 : 0), (pass, j) => {
+    if (pass === count) {
+      plateResidualRow(level, z, { out: scratch, j });
+      return;
+    }
+    const before = pass === 0 ? first : 0;
+    const moved = movePinsOfRow(z, pins, { width, height, j, largest: before });
+    const largest = smoothRow(level, z, { j, largest: moved, watch });
+    if (pass === 0) first = largest;
+  });
+  return first;
 }
 
 /** One V-cycle from zero on a correction: level.correction ≈ (A + H)⁻¹ level.right. */
@@ -244,11 +258,18 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   const { correction, scratch } = level;
   correction.fill(0);
   const last = l === levels.length - 1;
-  for (let n = 0; n < (last ? LAST_SWEEPS : HELD_SWEEPS); n++) heldSmooth(level, correction);
+  heldSweeps(level, { count: last ? LAST_SWEEPS : HELD_SWEEPS, residual: !last });
   if (last) return;
-  heldResidual(level, correction, scratch);
   restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
   correct({ levels, transfers }, l + 1);
   prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null, watch: null });
-  for (let n = 0; n < HELD_SWEEPS; n++) heldSmooth(level, correction);
+  heldSweeps(level, { count: HELD_SWEEPS, residual: false });
+}
+
+function heldSweeps(level: PlateLevel, { count, residual }: Pick<Sweeps, 'count' | 'residual'>): void {
+  const { height, correction, scratch } = level;
+  wavefront(height, count + (residual ? 1 : 0), (pass, j) => {
+    if (pass === count) heldResidualRow(level, correction, { out: scratch, j });
+    else heldSmoothRow(level, correction, j);
+  });
 }

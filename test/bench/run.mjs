@@ -1,5 +1,5 @@
-// What `npm run bench` shows: gridding, COG writing and Fourier transforms beside GDAL and SciPy where they are installed.
-// Build first (npm run bench does). Usage: node test/bench/run.mjs [largest number of readings, default 5 million]
+// What `npm run bench` shows: gridding and COG writing beside GDAL where it is installed. Build first (npm run
+// bench does). Usage: node test/bench/run.mjs [largest number of readings, default 5 million]
 import { benchCog } from './cog.mjs';
 import { benchGrid } from './grid.mjs';
 
