@@ -10,7 +10,7 @@ const NOISE_NT = 0.5;
 /** Line spacing over the depth of the shallowest sources below the sensor. */
 const CLOSE = [0.5, 0.75, 1];
 const WIDE = [1.5, 2, 3, 4];
-const SURVEYS_EACH = 8;
+const SURVEYS_EACH = 6;
 const SCIPY = hasPythonModule('scipy.interpolate');
 
 interface Case {
@@ -76,7 +76,7 @@ function compare(): readonly Squares[] {
   return JSON.parse(run.stdout) as Squares[];
 }
 
-describe('between the lines, over 56 made surveys', () => {
+describe('between the lines, over 42 made surveys', () => {
   const squares = compare().map((each, c) => ({ ...each, ratio: CASES[c]!.ratio }));
   const pooled = (ratios: readonly number[], against: 'linear' | 'cubic'): number => {
     const chosen = squares.filter(({ ratio }) => ratios.includes(ratio));
@@ -123,7 +123,7 @@ describe('the error grid, over the same surveys', () => {
 
   it.each(CLASSES.map((each) => ({ from: each[0], to: each[1], title: each.map((spacings) => spacings.toFixed(2)).join(' to ') })))('is met once by 68 ± 5 in a hundred cells and twice by 95 ± 2, at $title spacings from readings', ({ from, to }) => {
     const chosen = scores.filter(({ distance }) => distance >= from && distance < to);
-    expect(chosen.length).toBeGreaterThan(20_000);
+    expect(chosen.length).toBeGreaterThan(15_000);
     expect(share(chosen, 1)).toBeGreaterThan(0.63);
     expect(share(chosen, 1)).toBeLessThan(0.73);
     expect(share(chosen, 2)).toBeGreaterThan(0.93);
