@@ -11,6 +11,8 @@ const WINDOW_SPACINGS = 4;
 /** Squares to a spacing within which readings are averaged, and the readings that a window keeps at most. */
 const SQUARES_PER_SPACING = 7;
 const MOST = 150;
+/** Depths are tried in steps of so many first: the misfit has one minimum as a rule. */
+const COARSE = 3;
 /** A window with fewer readings says nothing. */
 const LEAST = 20;
 
@@ -28,22 +30,33 @@ export function layerDepthM(samples: HighSamples, { spacingM, noiseNT }: { reado
   const readings = placeReadings(samples, bounds, spacingM / SQUARES_PER_SPACING);
   const lowest = readings.up.reduce((least, up) => Math.min(least, up), 0);
   const depths = DEPTHS.map((share) => share * spacingM).filter((depth) => depth > -lowest + DEPTHS[0]! * spacingM * (lowest < 0 ? 1 : 0.99));
-  const misfit = depths.map(() => 0);
   const windowM = WINDOW_SPACINGS * spacingM;
   const across = Math.max(1, Math.round((bounds.east - bounds.west) / windowM));
   const down = Math.max(1, Math.round((bounds.north - bounds.south) / windowM));
   const stride = Math.max(1, (across * down) / WINDOWS);
+  const windows: Int32Array[] = [];
   for (let pick = 0; Math.floor(pick) < across * down; pick += stride) {
     const i = Math.floor(pick) % across;
     const j = Math.floor(Math.floor(pick) / across);
     const west = bounds.west + ((bounds.east - bounds.west) * (i + 0.5)) / across - windowM / 2;
     const south = bounds.south + ((bounds.north - bounds.south) * (j + 0.5)) / down - windowM / 2;
     const chosen = readingsWithin(readings, { west, south, east: west + windowM, north: south + windowM }, MOST);
-    if (chosen.length < LEAST) continue;
-    depths.forEach((depthM, d) => {
-      misfit[d]! += solvePatch(readings, chosen, { layer: { depthM, deepM: DEEP_SPACINGS * spacingM }, noiseNT }).misfit;
-    });
+    if (chosen.length >= LEAST) windows.push(chosen);
   }
-  const best = Math.min(...misfit);
-  return misfit.every((each) => each === best) ? Math.max(spacingM / 2, 2 * -lowest) : depths[misfit.indexOf(best)]!;
+  if (windows.length === 0 || depths.length === 0) return Math.max(spacingM / 2, 2 * -lowest);
+  const misfit = new Map<number, number>();
+  const misfitOf = (d: number): number => {
+    const known = misfit.get(d);
+    if (known !== undefined) return known;
+    const layer = { depthM: depths[d]!, deepM: DEEP_SPACINGS * spacingM };
+    const sum = windows.reduce((total, chosen) => total + solvePatch(readings, chosen, { layer, noiseNT }).misfit, 0);
+    misfit.set(d, sum);
+    return sum;
+  };
+  // Every third depth first, then those around the best of them.
+  let best = 0;
+  for (let d = 0; d < depths.length; d += COARSE) if (misfitOf(d) < misfitOf(best)) best = d;
+  const middle = best;
+  for (let d = Math.max(0, middle - COARSE + 1); d < Math.min(depths.length, middle + COARSE); d++) if (misfitOf(d) < misfitOf(best)) best = d;
+  return depths[best]!;
 }
