@@ -58,7 +58,7 @@ export type { Site } from './site/types.js';
 
 export { parseApiNumber } from './records/apiNumber.js';
 export { parseLocation } from './records/locationText/parseLocation.js';
-export { locateRecords, LOCATE_DEFAULTS } from './records/locateRecords.js';
+export { locateInBatches, locateRecords, LOCATE_DEFAULTS } from './records/locateRecords.js';
 export type { Records, UnplacedRecord, WellRecord } from './records/types.js';
 export { planSurvey, PLAN_DEFAULTS } from './plan/planSurvey.js';
 export type { PlanLine, SurveyPlan } from './plan/types.js';

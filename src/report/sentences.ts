@@ -9,16 +9,20 @@ import type { ReportContent } from './types.js';
 /** A pairing less likely than this is left to the table of the layer. */
 const WORTH_NAMING = 0.02;
 
+/** Parts of a note that the sentence tells in words of its own. */
+const NAMED_ALREADY = /^(weak )?candidates? /;
+
 /** What one finding means, in plain words. */
 export function findingSentence(finding: Finding, content: ReportContent): Html {
-  const note = finding.note ? html` ${sentence(finding.note)}` : '';
+  const rest = finding.note.split('; ').filter((part) => !NAMED_ALREADY.test(part)).join('; ');
+  const note = rest ? html` ${sentence(rest)}` : '';
   return html`${WORDS[finding.finding](finding, content)}${note}`;
 }
 
 const WORDS: Readonly<Record<Finding['finding'], (finding: Finding, content: ReportContent) => Html>> = {
   located: (finding, content) => html`Its casing stands at ${where(finding, content)}${distance(finding, content)}${anomalyWords(finding, content)}. The chance that this casing is the recorded well is ${chanceWords(finding.pMatch)}.`,
   ambiguous: (finding, content) => html`${candidates(finding, content)}${hasPlace(finding) ? html` The place given here is ${where(finding, content)}.` : ''} ${remains(finding)}`,
-  not_found: (finding) => html`No anomaly is likely to be its casing. The chance that the well lies in ground searched is ${chanceWords(finding.pCovered)}, and that it lies there and a casing as stated would have been detected, ${chanceWords(finding.pDetect)}. ${remains(finding)}`,
+  not_found: (finding, content) => html`${doubtful(finding, content)} The chance that the well lies in ground searched is ${chanceWords(finding.pCovered)}, and that it lies there and a casing as stated would have been detected, ${chanceWords(finding.pDetect)}. ${remains(finding)}`,
   not_searched: (finding) => html`The ground where it may lie was hardly searched: the chance that it lies in ground searched is ${chanceWords(finding.pCovered)}. The search therefore says next to nothing about it. ${remains(finding)}`,
   unrecorded: (finding, content) => html`A casing that no record tells of stands at ${where(finding, content)}${anomalyWords(finding, content)}. The chance that none of the records is this casing is ${chanceWords(finding.pMatch)}.`,
 };
@@ -52,6 +56,11 @@ function candidates({ recordId, anomalyId, pMatch }: Finding, { findings }: Repo
   const none = 1 - pairs.reduce((sum, { p }) => sum + p, 0);
   const named = pairs.map((pair) => `anomaly ${pair.anomalyId} (${chanceWords(pair.p)})`);
   return `The search does not settle which casing it is: ${listed([...named, ...(none >= WORTH_NAMING ? [`none of ${pairs.length === 1 ? 'the anomalies' : 'these'} (${chanceWords(none)})`] : [])], 'or')}.`;
+}
+
+function doubtful(finding: Finding, content: ReportContent): string {
+  const named = candidates(finding, content);
+  return named ? `No anomaly reaches an even chance of being its casing; the nearest to it: ${named.charAt(0).toLowerCase()}${named.slice(1)}` : 'No anomaly is likely to be its casing.';
 }
 
 function remains({ pRemains }: Finding): string {

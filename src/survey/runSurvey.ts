@@ -22,8 +22,8 @@ export interface RunResult {
   readonly values: ReadonlyMap<string, unknown>;
   readonly steps: readonly StepTrace[];
   readonly warnings: readonly string[];
-  /** Operations that did not run, with the reason. */
-  readonly skipped: readonly { readonly id: string; readonly why: string }[];
+  /** Operations that did not run, with the reason; `chosen` where the survey file left them out or did not ask for them. */
+  readonly skipped: readonly { readonly id: string; readonly why: string; readonly chosen: boolean }[];
 }
 
 export interface RunOptions {
@@ -42,15 +42,15 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
     if (!warnings.includes(message)) warnings.push(message);
   };
   const steps: StepTrace[] = [];
-  const skipped: { id: string; why: string }[] = [];
+  const skipped: { id: string; why: string; chosen: boolean }[] = [];
   host.progress('site');
   const site = await makeSite(camelKeys<SiteSettings>(survey.common), { files: host.files, where: survey.where, warn });
   const values = new Map(await given?.(site));
   for (const operation of orderOperations(operations)) {
     const why = whyNot(operation, survey, values);
     if (why !== null) {
-      if (strict) throw new UserError({ code: 'input_missing', where: `ironplat ${operation.id}`, found: why, wanted: 'everything that the operation needs' });
-      skipped.push({ id: operation.id, why });
+      if (strict) throw new UserError({ code: 'input_missing', where: `ironplat ${operation.id}`, found: why.reason, wanted: 'everything that the operation needs' });
+      skipped.push({ id: operation.id, why: why.reason, chosen: why.chosen });
       continue;
     }
     host.progress(operation.id);
@@ -72,11 +72,11 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
   return { survey, site, values, steps, warnings, skipped };
 }
 
-function whyNot(operation: Operation, survey: Survey, values: ReadonlyMap<string, unknown>): string | null {
+function whyNot(operation: Operation, survey: Survey, values: ReadonlyMap<string, unknown>): { reason: string; chosen: boolean } | null {
   const section = survey.sections[operation.id];
-  if (section === false) return 'the survey file leaves it out';
-  const keys = (operation.parameters.required ?? []).filter((key) => (section as Record<string, unknown> | undefined)?.[key] === undefined);
-  if (section === undefined && keys.length > 0) return `no section "${operation.id}" with ${keys.join(', ')}`;
+  if (section === false) return { reason: 'the survey file leaves it out', chosen: true };
+  const keys = operation.parameters.required ?? [];
+  if (section === undefined && keys.length > 0) return { reason: `no section "${operation.id}" with ${keys.join(', ')}`, chosen: true };
   const missing = Object.entries(operation.inputs).filter(([role, slot]) => !slot.optional && !values.has(role)).map(([role]) => role);
-  return missing.length > 0 ? `no ${missing.join(', ')} to work on` : null;
+  return missing.length > 0 ? { reason: `no ${missing.join(', ')} to work on`, chosen: false } : null;
 }

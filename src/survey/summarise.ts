@@ -28,7 +28,7 @@ export function summarise({ site, values, warnings, skipped }: RunResult): RunSu
   const content: ReportContent = { site, ...(records ? { records } : {}), ...(findings ? { findings } : {}), ...(anomalies ? { anomalies } : {}) };
   const unplaced = records?.unplaced ?? [];
   const toDig = findings?.list.some(({ digOrder }) => digOrder > 0) ?? false;
-  const missing = skipped.filter(({ id }) => id !== 'plan' || !plan).map(({ id, why }) => `Not run: ${id} (${why}).`);
+  const missing = skipped.filter(({ chosen }) => !chosen).map(({ id, why }) => `Not run: ${id} (${why}).`);
   return {
     sentences: [
       site.title,

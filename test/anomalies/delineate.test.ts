@@ -87,7 +87,7 @@ describe('delineate on made surveys with collars, scrap, a pipe and wandering po
         expect(anomaly.areaM2).toBeGreaterThan(0);
         expect(anomaly.outline.length).toBeGreaterThan(0);
         expect(anomaly.semiMinM).toBeGreaterThan(0);
-        expect(anomaly.pCasing).toBeGreaterThanOrEqual(0.01);
+        expect(anomaly.pCasing).toBeGreaterThanOrEqual(0.002);
         expect(anomaly.pCasing).toBeLessThanOrEqual(0.99);
       }
     }

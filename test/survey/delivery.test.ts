@@ -1,4 +1,4 @@
-import { cpSync, rmSync } from 'node:fs';
+import { cpSync, readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { DEMO_SEED, demoFiles } from '../../fixtures/demo/generate.js';
@@ -28,6 +28,14 @@ describe('the delivered demo', () => {
   it('says in plain words what was found, what was not, and where the files are', () => {
     for (const part of ['located:', 'not found:', 'unrecorded:', 'not placed: permits.csv, row', 'correct the row', 'delivery', 'report.html', 'one-call']) expect(said).toContain(part);
     expect(said).not.toMatch(/<|&[a-z#]|NaN|undefined/);
+  });
+
+  it('says what the README shows', () => {
+    const readme = readFileSync(join(DEMO_FOLDER, '../../README.md'), 'utf8');
+    const lines = said.trimEnd().split('\n');
+    expect(lines.length).toBeGreaterThan(8);
+    // The last line names the folder, which is another one here.
+    for (const line of lines.slice(0, -1)) expect(readme).toContain(line);
   });
 
   it('is the same to the byte when the truth is gone and it runs again', async () => {

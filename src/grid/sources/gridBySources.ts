@@ -11,7 +11,7 @@ export interface SourcesOptions {
   readonly spacingM: number;
   /** Standard deviation of a reading's error. */
   readonly noiseNT: number;
-  /** Depth of the layer below the level of the readings' heights; NaN: as the readings are likeliest. */
+  /** Likeliest depth of the layer below the level of the readings' heights; NaN: from the readings. */
   readonly depthM?: number;
   /** 1 at cells whose value is wanted; null for all. */
   readonly wanted?: ArrayLike<number> | null;
@@ -26,6 +26,7 @@ export interface SourcesGrid {
   readonly values: Float32Array;
   /** Standard error of the field, nT; NaN where the readings leave it unknown. Null where it was not asked for. */
   readonly error: Float32Array | null;
+  /** Likeliest depth of the layer. */
   readonly depthM: number;
 }
 
@@ -36,6 +37,14 @@ const SQUARE_PER_DEPTH = 0.5;
 /** … and of the spacing, and no smaller than that, since the work grows with the cube of their number. */
 const LARGEST_SQUARE = 1 / 5;
 const SMALLEST_SQUARE = 1 / 10;
+/**
+ * Depth of the layer that the field is taken from, over the likeliest: too deep a layer bridges lines with more than is
+ * there, one too shallow costs little. Measured: the worst of 40 surveys is 1.10 times as wrong as linear triangles instead
+ * of 1.23, all together are as good. What is left open is judged by the likeliest.
+ */
+const FIELD_DEPTH = 0.8;
+/** The layer keeps this far below the lowest sensor, in spacings, where the likeliest does. */
+const BELOW_SPACINGS = 0.1;
 /** Readings in a window at most, where they are crowded. */
 const MOST = 220;
 /** A lone reading has no neighbours to tell a field from. */
@@ -54,9 +63,11 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
   const { spacingM, noiseNT, wanted, error, depthM: stated } = { ...SOURCES_DEFAULTS, ...options };
   const { width, height, west, north, cellM } = frame;
   const depthM = stated > 0 ? stated : layerDepthM(samples, { spacingM, noiseNT });
-  const layer = { depthM, deepM: DEEP_SPACINGS * spacingM };
   const squareM = Math.min(LARGEST_SQUARE * spacingM, Math.max(SMALLEST_SQUARE * spacingM, SQUARE_PER_DEPTH * depthM));
   const readings = placeReadings(samples, samplesBounds(samples), squareM);
+  const lowestM = readings.up.reduce((least, up) => Math.min(least, up), 0);
+  const likeliest = { depthM, deepM: DEEP_SPACINGS * spacingM };
+  const layer = { ...likeliest, depthM: Math.max(FIELD_DEPTH * depthM, Math.min(depthM, BELOW_SPACINGS * spacingM - lowestM)) };
   const side = Math.max(2, Math.round(spacingM / cellM));
   const reachM = side * cellM + MARGIN_SPACINGS * spacingM;
 
@@ -76,7 +87,7 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
       if (chosen.length < LEAST) continue;
       const patch = solvePatch(readings, chosen, { layer, noiseNT });
       addBlock(patch, { frame, block, is }, { sum, share });
-      if (maps) mapBlock(patch, { frame, block, is }, maps);
+      if (maps) mapBlock(solvePatch(readings, chosen, { layer: likeliest, noiseNT }), { frame, block, is }, maps);
     }
   }
   const values = Float32Array.from(sum, (s, k) => (share[k]! > 0 ? s / share[k]! : NaN));
