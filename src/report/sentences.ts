@@ -21,7 +21,7 @@ export function findingSentence(finding: Finding, content: ReportContent): Html 
 
 const WORDS: Readonly<Record<Finding['finding'], (finding: Finding, content: ReportContent) => Html>> = {
   located: (finding, content) => html`Its casing stands at ${where(finding, content)}${distance(finding, content)}${anomalyWords(finding, content)}. The chance that this casing is the recorded well is ${chanceWords(finding.pMatch)}.`,
-  ambiguous: (finding, content) => html`${candidates(finding, content)}${hasPlace(finding) ? html` The place given here is ${where(finding, content)}.` : ''} ${remains(finding)}`,
+  ambiguous: (finding, content) => html`${unsettled(finding, content)}${hasPlace(finding) ? html` The place given here is ${where(finding, content)}.` : ''} ${remains(finding)}`,
   not_found: (finding, content) => html`${doubtful(finding, content)} The chance that the well lies in ground searched is ${chanceWords(finding.pCovered)}, and that it lies there and a casing as stated would have been detected, ${chanceWords(finding.pDetect)}. ${remains(finding)}`,
   not_searched: (finding) => html`The ground where it may lie was hardly searched: the chance that it lies in ground searched is ${chanceWords(finding.pCovered)}. The search therefore says next to nothing about it. ${remains(finding)}`,
   unrecorded: (finding, content) => html`A casing that no record tells of stands at ${where(finding, content)}${anomalyWords(finding, content)}. The chance that none of the records is this casing is ${chanceWords(finding.pMatch)}.`,
@@ -48,19 +48,24 @@ function anomalyWords(finding: Finding, content: ReportContent): Html | string {
   return html` (anomaly ${finding.anomalyId}${depth})`;
 }
 
-/** The casings that it may be, and that it may be none of them. */
+/** The casings that it may be, and that it may be none of them: `anomaly A1 (60 %), anomaly A2 (30 %) or none of these (10 %)`; empty where no casing is worth naming. */
 function candidates({ recordId, anomalyId, pMatch }: Finding, { findings }: ReportContent): string {
   const told = (findings?.pairs ?? []).filter((pair) => pair.recordId === recordId && pair.p >= WORTH_NAMING).toSorted((a, b) => b.p - a.p || (a.anomalyId < b.anomalyId ? -1 : 1));
   const pairs = told.length > 0 ? told : anomalyId ? [{ recordId, anomalyId, p: pMatch }] : [];
-  if (pairs.length === 0) return 'The search does not settle which casing it is.';
+  if (pairs.length === 0) return '';
   const none = 1 - pairs.reduce((sum, { p }) => sum + p, 0);
   const named = pairs.map((pair) => `anomaly ${pair.anomalyId} (${chanceWords(pair.p)})`);
-  return `The search does not settle which casing it is: ${listed([...named, ...(none >= WORTH_NAMING ? [`none of ${pairs.length === 1 ? 'the anomalies' : 'these'} (${chanceWords(none)})`] : [])], 'or')}.`;
+  return listed([...named, ...(none >= WORTH_NAMING ? [`none of ${pairs.length === 1 ? 'the anomalies' : 'these'} (${chanceWords(none)})`] : [])], 'or');
+}
+
+function unsettled(finding: Finding, content: ReportContent): string {
+  const named = candidates(finding, content);
+  return `The search does not settle which casing it is${named && `: ${named}`}.`;
 }
 
 function doubtful(finding: Finding, content: ReportContent): string {
   const named = candidates(finding, content);
-  return named ? `No anomaly reaches an even chance of being its casing; the nearest to it: ${named.charAt(0).toLowerCase()}${named.slice(1)}` : 'No anomaly is likely to be its casing.';
+  return named ? `No anomaly is likely enough to be its casing: ${named}.` : 'No anomaly is likely to be its casing.';
 }
 
 function remains({ pRemains }: Finding): string {
