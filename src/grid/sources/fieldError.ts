@@ -21,15 +21,16 @@ export const UNKNOWN_SHARE = 1 / 3;
 /** Radius (standard deviation) over which the layer's strength is judged, in roots of depth × spacing. Measured: 0.3 to 0.4 differ little. */
 const STRENGTH_RADIUS = 0.35;
 /**
- * Error variance in units of the layer's, with v the share left open: OWN v^DULLED / (1 + v / FEW) between lines, without
- * the division beyond the outermost. The layer's depth is itself an estimate and readings are averaged over squares, so close to
- * readings the error is more than the layer says; and sources are few, not everywhere, so between two lines that show
- * none there seldom is one. The numbers are measured on made surveys over casings, compact iron and geology, lines half
- * to four times as far apart as the sources are deep.
+ * Error variance in units of the layer's, with v the share left open: OWN v^DULLED / (1 + v / FEW) between lines, and
+ * OUTSIDE OWN v^DULLED beyond the outermost, since a layer of poles does not carry a slope on. The layer's depth is itself
+ * an estimate and readings are averaged over squares, so close to readings the error is more than the layer says; and
+ * sources are few, not everywhere, so between two lines that show none there seldom is one. The numbers are measured on
+ * made surveys over casings, compact iron and geology, lines half to four times as far apart as the sources are deep.
  */
-const OWN = 0.91;
+const OWN = 0.84;
 const DULLED = 0.93;
-const FEW = 0.1;
+const FEW = 0.09;
+const OUTSIDE = 1.3;
 /** Distance from a place to the mean of the readings around it (Gaussian weights of half a spacing), over half a spacing: up to the first they lie on all sides, from the second on one. */
 const AROUND_SPACINGS = 0.5;
 const AROUND = 0.4;
@@ -60,7 +61,7 @@ export function fieldError({ variance, strength, expected, occupied }: OpennessM
     const south = k >= width && k < width * (height - 1) ? (readings[k + width]! - readings[k - width]!) / 2 : 0;
     const aside = (Math.hypot(east, south) / readings[k]!) * around;
     const between = Math.min(1, Math.max(0, (ONE_SIDE - aside) / (ONE_SIDE - AROUND)));
-    return Math.sqrt(((OWN * open ** DULLED) / (1 + (between * open) / FEW)) * (shown[k]! / unit[k]!) + least);
+    return Math.sqrt(((OWN * (between + OUTSIDE * (1 - between)) * open ** DULLED) / (1 + (between * open) / FEW)) * (shown[k]! / unit[k]!) + least);
   });
 }
 
