@@ -43,7 +43,7 @@ const LAST_SWEEPS = 20;
  * lines make sweeps the cheapest part, and with these numbers a cycle leaves about a sixth of the error between lines 4
  * to 8 cells apart, half between lines 20 apart (measured).
  */
-const SWEEPS = 4;
+const SWEEPS = 3;
 const HELD_SWEEPS = 2;
 /** Coarser grids only supply a start: an error below the next grid's own discretisation is enough. */
 const COARSE_TOLERANCE = 1e-2;
@@ -53,7 +53,7 @@ const COARSE_CYCLES = 1;
  * than the slow rate, the share is found anew in each, which costs a quarter of a cycle and pays where pins are sparse
  * (measured).
  */
-const SHARE = 0.8;
+const SHARE = 0.7;
 const SLOW_RATE = 0.3;
 /** Bounds within which the rate of convergence is believed. */
 const BEST_RATE = 0.15;

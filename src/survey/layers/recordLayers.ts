@@ -1,4 +1,4 @@
-import { ellipseRing } from '../../density/ellipse.js';
+import { ELLIPSE_MASS, ellipseRing } from '../../density/ellipse.js';
 import type { WellRecord, Records } from '../../records/types.js';
 import type { Site } from '../../site/types.js';
 import type { Field, FieldValue, Layer } from '../../vector/types.js';
@@ -14,6 +14,7 @@ const FIELDS: readonly Field[] = [
   { name: 'semi_maj_m', type: 'real', title: 'Half major axis of the 95 % ellipse, blunders left out, m', decimals: 2 },
   { name: 'semi_min_m', type: 'real', title: 'Half minor axis of the 95 % ellipse, blunders left out, m', decimals: 2 },
   { name: 'azim_deg', type: 'real', title: 'Azimuth of the major axis, degrees clockwise from grid north', decimals: 1 },
+  { name: 'ell_holds', type: 'real', title: 'Share of the position, blunders left out, that the drawn ellipse holds: it encloses the 95 % region', decimals: 3 },
   { name: 'basis', type: 'text', title: 'What the position rests on' },
   { name: 'note', type: 'text', title: 'What else has to be known' },
 ];
@@ -35,6 +36,6 @@ export function recordLayers({ placed }: Records, site: Site): Layer[] {
 function values(record: WellRecord): Record<string, FieldValue> {
   return {
     record_id: record.recordId, datum: record.datum, shift: record.shift, pos_sd_m: record.posSdM,
-    semi_maj_m: record.semiMajM, semi_min_m: record.semiMinM, azim_deg: record.azimDeg, basis: record.basis, note: record.note,
+    semi_maj_m: record.semiMajM, semi_min_m: record.semiMinM, azim_deg: record.azimDeg, ell_holds: record.excess?.massHeld ?? ELLIPSE_MASS, basis: record.basis, note: record.note,
   };
 }
