@@ -13,10 +13,15 @@ export interface Answer {
 }
 
 /** Runs one command line in a folder and keeps what it says. */
-export async function ironplat(cwd: string, ...argv: string[]): Promise<Answer> {
+export function ironplat(cwd: string, ...argv: string[]): Promise<Answer> {
+  return ironplatWith({}, cwd, ...argv);
+}
+
+/** The same with an environment of its own. */
+export async function ironplatWith(env: Readonly<Record<string, string>>, cwd: string, ...argv: string[]): Promise<Answer> {
   const said = { out: '', err: '' };
   const status = await run(argv, {
-    cwd, env: {}, watched: false,
+    cwd, env, watched: false,
     out: (text) => void (said.out += text),
     err: (text) => void (said.err += text),
   });
