@@ -38,11 +38,13 @@ const SQUARE_PER_DEPTH = 0.5;
 const LARGEST_SQUARE = 1 / 5;
 const SMALLEST_SQUARE = 1 / 10;
 /**
- * Depth of the layer that the field is taken from, over the likeliest: too deep a layer bridges lines with more than is
- * there, one too shallow costs little. Measured: the worst of 40 surveys is 1.14 times as wrong as linear triangles instead
- * of 1.23, all together are as good. What is left open is judged by the likeliest.
+ * Depth of the layer that the field is taken from, over the likeliest: where lines are further apart than that, too deep a
+ * layer bridges them with more than is there, and one too shallow costs little. It falls from 1 at a spacing of one depth
+ * by SHALLOWER for each further depth, to LEAST_DEPTH. Measured: the worst of 40 surveys is 1.14 times as wrong as linear
+ * triangles instead of 1.23, all together are as good. What is left open is judged by the likeliest.
  */
-const FIELD_DEPTH = 0.85;
+const SHALLOWER = 0.3;
+const LEAST_DEPTH = 0.85;
 /** The layer keeps this far below the lowest sensor, in spacings, where the likeliest does. */
 const BELOW_SPACINGS = 0.1;
 /** Readings in a window at most, where they are crowded. */
@@ -67,12 +69,13 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
   const readings = placeReadings(samples, samplesBounds(samples), squareM);
   const lowestM = readings.up.reduce((least, up) => Math.min(least, up), 0);
   const likeliest = { depthM, deepM: DEEP_SPACINGS * spacingM };
-  const layer = { ...likeliest, depthM: Math.max(FIELD_DEPTH * depthM, Math.min(depthM, BELOW_SPACINGS * spacingM - lowestM)) };
+  const share = Math.min(1, Math.max(LEAST_DEPTH, 1 - SHALLOWER * (spacingM / depthM - 1)));
+  const layer = { ...likeliest, depthM: Math.max(share * depthM, Math.min(depthM, BELOW_SPACINGS * spacingM - lowestM)) };
   const side = Math.max(2, Math.round(spacingM / cellM));
   const reachM = side * cellM + MARGIN_SPACINGS * spacingM;
 
   const sum = new Float64Array(width * height);
-  const share = new Float64Array(width * height);
+  const parts = new Float64Array(width * height);
   const maps: OpennessMaps | null = error ? {
     variance: new Float32Array(sum.length).fill(NaN), strength: new Float32Array(sum.length), expected: new Float32Array(sum.length), occupied: occupiedCells(readings, frame),
   } : null;
@@ -86,11 +89,11 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
       const chosen = readingsWithin(readings, { west: x - reachM, east: x + reachM, south: y - reachM, north: y + reachM }, MOST);
       if (chosen.length < LEAST) continue;
       const patch = solvePatch(readings, chosen, { layer, noiseNT });
-      addBlock(patch, { frame, block, is }, { sum, share });
+      addBlock(patch, { frame, block, is }, { sum, parts });
       if (maps) mapBlock(solvePatch(readings, chosen, { layer: likeliest, noiseNT }), { frame, block, is }, maps);
     }
   }
-  const values = Float32Array.from(sum, (s, k) => (share[k]! > 0 ? s / share[k]! : NaN));
+  const values = Float32Array.from(sum, (s, k) => (parts[k]! > 0 ? s / parts[k]! : NaN));
   return { values, error: maps && fieldError(maps, { width, height, spacing: spacingM / cellM, depth: depthM / cellM, noiseNT }), depthM };
 }
 
@@ -125,7 +128,7 @@ function anyWanted({ width, height }: GridFrame, { i, j, side }: Block, is: (k: 
   return false;
 }
 
-function addBlock(patch: Patch, { frame: { width, height, west, north, cellM }, block: { i, j, side }, is }: Place, { sum, share }: { sum: Float64Array; share: Float64Array }): void {
+function addBlock(patch: Patch, { frame: { width, height, west, north, cellM }, block: { i, j, side }, is }: Place, { sum, parts }: { sum: Float64Array; parts: Float64Array }): void {
   for (let b = Math.max(0, j - side); b < Math.min(height, j + side); b++) {
     const down = 1 - Math.abs(b + 0.5 - j) / side;
     for (let a = Math.max(0, i - side); a < Math.min(width, i + side); a++) {
@@ -133,7 +136,7 @@ function addBlock(patch: Patch, { frame: { width, height, west, north, cellM }, 
       if (!is(k)) continue;
       const part = down * (1 - Math.abs(a + 0.5 - i) / side);
       sum[k]! += part * patchValue(patch, west + (a + 0.5) * cellM, north - (b + 0.5) * cellM);
-      share[k]! += part;
+      parts[k]! += part;
     }
   }
 }
