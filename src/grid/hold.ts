@@ -105,24 +105,22 @@ function addCoupling({ width, hold }: Sized, [i, j, di, dj]: readonly [number, n
   const bi = i + di;
   const bj = j + dj;
   const share = weight / ((1 + (i & 1)) * (1 + (j & 1)) * (1 + (bi & 1)) * (1 + (bj & 1)));
-  for (let p = 0; p <= (j & 1); p++) {
-    for (let q = 0; q <= (i & 1); q++) {
-      const a = ((j >> 1) + p) * width + (i >> 1) + q;
-      for (let r = 0; r <= (bj & 1); r++) {
-        for (let s = 0; s <= (bi & 1); s++) addPair(hold, [a, ((bj >> 1) + r) * width + (bi >> 1) + s, width], share);
+  const { self, east, south, southEast, southWest } = hold;
+  for (let p = j >> 1; p <= (j + 1) >> 1; p++) {
+    for (let q = i >> 1; q <= (i + 1) >> 1; q++) {
+      for (let r = bj >> 1; r <= (bj + 1) >> 1; r++) {
+        for (let s = bi >> 1; s <= (bi + 1) >> 1; s++) {
+          // The product of two nodes counts half in each of their rows; it is kept with the upper, then the left one.
+          const upper = Math.min(p, r);
+          const left = Math.min(q, s);
+          const at = upper * width + left;
+          if (p === r && q === s) self[at]! += share;
+          else if (p === r) east[at]! += share / 2;
+          else if (q === s) south[at]! += share / 2;
+          else if ((p < r) === (q < s)) southEast[at]! += share / 2;
+          else southWest[at + 1]! += share / 2;
+        }
       }
     }
   }
-}
-
-/** The product of two nodes counts half in each of their rows. */
-function addPair(hold: Hold, [a, b, width]: readonly [number, number, number], weight: number): void {
-  const first = Math.min(a, b);
-  const distance = Math.max(a, b) - first;
-  if (distance === 0) hold.self[first]! += weight;
-  else if (distance === width + 1) hold.southEast[first]! += weight / 2;
-  else if (distance === width) hold.south[first]! += weight / 2;
-  // With a width of 2 the node to the south-west is the next one too; such a pair lies in two rows.
-  else if (distance === width - 1 && Math.floor(first / width) !== Math.floor((first + distance) / width)) hold.southWest[first]! += weight / 2;
-  else hold.east[first]! += weight / 2;
 }
