@@ -76,7 +76,7 @@ export function solvePlate(problem: PlateProblem, { tolerance, maxSteps }: { tol
   for (let l = levels.length - 1; l >= 0; l--) {
     if (l < levels.length - 1) {
       const finer = new Float64Array(levels[l]!.width * levels[l]!.height);
-      prolong(transfers[l]!, [z, finer], { add: false, mask: null, watch: null });
+      prolong(transfers[l]!, [z, finer], { add: false, watch: null });
       z = finer;
     }
     const goal = l === 0 ? { tolerance, maxSteps } : { tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_CYCLES };
@@ -167,7 +167,7 @@ function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: 
   const { correction, scratch } = level;
   restrict(transfers[l]!, [scratch, coarse.right]);
   correct({ levels, transfers }, l + 1);
-  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, mask: null, watch });
+  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, watch });
   pinCorrection(correction, pins[l]!.pins, level);
   const length = path ? advance(level, z, path) : add(z, correction);
   size = Math.max(size, length * most);
@@ -262,7 +262,7 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   if (last) return;
   restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
   correct({ levels, transfers }, l + 1);
-  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, mask: null, watch: null });
+  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, watch: null });
   heldSweeps(level, { count: HELD_SWEEPS, residual: false });
 }
 

@@ -51,15 +51,14 @@ export function transfer(width: number, height: number): Transfer {
 
 export interface Prolongation {
   readonly add: boolean;
-  readonly mask: Float32Array | null;
   readonly watch: Uint8Array | null;
 }
 
 /**
- * fine += P coarse, or fine = P coarse where `add` is false. Where `mask` is given, fine nodes with mask 0 are left alone.
- * Returns the largest value of P coarse that was used, of nodes with `watch` 1 where that is given.
+ * fine += P coarse, or fine = P coarse where `add` is false. Returns the largest value of P coarse, of nodes with `watch`
+ * 1 where that is given.
  */
-export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, mask, watch }: Prolongation): number {
+export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, watch }: Prolongation): number {
   const width = x.fine;
   const reads = Math.min(4, x.coarse);
   for (let row = 0; row < y.coarse; row++) {
@@ -92,7 +91,6 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
     const h2 = rows > 2 ? h0 + 2 * width : h0;
     const h3 = rows > 3 ? h0 + 3 * width : h0;
     for (let i = 0; i < width; i++) {
-      if (mask && mask[f + i] === 0) continue;
       const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
       fine[f + i] = add ? fine[f + i]! + value : value;
       if ((value > largest || -value > largest) && (watch === null || watch[f + i] !== 0)) largest = Math.abs(value);
