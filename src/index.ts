@@ -64,6 +64,7 @@ export { planSurvey, PLAN_DEFAULTS } from './plan/planSurvey.js';
 export type { PlanLine, SurveyPlan } from './plan/types.js';
 export { reduceReadings } from './readings/reduceReadings.js';
 export type { Readings, ReductionStep } from './readings/types.js';
+export { gridByMethod, METHOD_DEFAULTS } from './grid/gridByMethod.js';
 export { gridReadings } from './grid/gridReadings.js';
 export { delineate } from './anomalies/delineate.js';
 export type { Anomalies, Anomaly, AnomalyClass } from './anomalies/types.js';

@@ -24,7 +24,7 @@ export interface MethodOptions extends GridOptions {
   readonly noiseNt?: number;
 }
 
-export const METHOD_DEFAULTS = Object.freeze({ method: 'tension' as GridMethod, error: false, noiseNt: NaN });
+export const METHOD_DEFAULTS = Object.freeze({ method: 'auto' as GridMethod, error: false, noiseNt: NaN });
 
 export interface MethodResult {
   readonly grid: GridResult;
