@@ -9,8 +9,10 @@ import type { Site } from '../site/types.js';
 import type { Delivered } from './deliver.js';
 import type { Host } from './host.js';
 
+/** A grid that has no negative values: shown from nothing upwards. */
+const ERROR_ROLE = 'residual_error';
 /** Grids with a role of their own; every further grid is a transform. */
-const ROLES: ReadonlySet<string> = new Set(['residual', 'residual_error', 'detection', 'covered']);
+const ROLES: ReadonlySet<string> = new Set(['residual', ERROR_ROLE, 'detection', 'covered']);
 /** Unit of a share or a chance, which a style shows from 0 to 1. */
 const SHARE = '1';
 
@@ -41,6 +43,7 @@ export async function gridFiles(role: string, grid: Grid & { readonly unit?: str
 function styleOf(role: string, grid: Grid, { title, unit }: { title: string; unit: string }): string | null {
   if (unit === SHARE) return sldStyle(CHANCE_RAMP, { low: 0, high: 1 }, { layer: role, title });
   const range = residualRange(grid);
+  if (range && role === ERROR_ROLE) return sldStyle(CHANCE_RAMP, { low: 0, high: range.high }, { layer: role, title, unit });
   return range && sldStyle(RESIDUAL_RAMP, range, { layer: role, title, unit });
 }
 
