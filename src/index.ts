@@ -17,6 +17,7 @@ export { parseAngle } from './geodesy/parseAngle.js';
 export type { Bounds, Crs, Datum, DatumShift, ShiftedPlace } from './geodesy/types.js';
 
 export { parseCsv } from './table/parseCsv.js';
+export { NumberReader, readNumberColumns } from './table/numberReader.js';
 export { writeCsv, type CsvColumn } from './table/writeCsv.js';
 export type { TextTable } from './table/types.js';
 
@@ -66,6 +67,7 @@ export { reduceReadings } from './readings/reduceReadings.js';
 export type { Readings, ReductionStep } from './readings/types.js';
 export { gridByMethod, METHOD_DEFAULTS } from './grid/gridByMethod.js';
 export { gridReadings } from './grid/gridReadings.js';
+export { gridTiled } from './grid/gridTiled.js';
 export { delineate } from './anomalies/delineate.js';
 export type { Anomalies, Anomaly, AnomalyClass } from './anomalies/types.js';
 export { reconcile } from './findings/reconcile.js';
