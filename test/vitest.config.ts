@@ -1,3 +1,4 @@
+import { availableParallelism } from 'node:os';
 import { defineConfig } from 'vitest/config';
 import { BaseSequencer, type TestSpecification } from 'vitest/node';
 
@@ -22,6 +23,8 @@ export default defineConfig({
     testTimeout: 120_000,
     hookTimeout: 120_000,
     pool: 'forks',
+    // All cores: by default one is left idle, which on two cores is half of them.
+    maxWorkers: availableParallelism(),
     sequence: { sequencer: LongestFirst },
   },
 });
