@@ -1,4 +1,5 @@
 import { ELLIPSE_MASS, ellipseRing } from '../../density/ellipse.js';
+import { region95 } from '../../density/region95.js';
 import type { WellRecord, Records } from '../../records/types.js';
 import type { Site } from '../../site/types.js';
 import type { Field, FieldValue, Layer } from '../../vector/types.js';
@@ -19,8 +20,16 @@ const FIELDS: readonly Field[] = [
   { name: 'note', type: 'text', title: 'What else has to be known' },
 ];
 
-/** Positions of the records, and their 95 % ellipses. */
+/** Positions of the records, their 95 % ellipses, and the 95 % areas of those that rest on an area (a section, a part of it). */
 export function recordLayers({ placed }: Records, site: Site): Layer[] {
+  const onAreas = placed.filter(({ density }) => density.parts.some(({ kind, role }) => kind === 'area' && role === 'place'));
+  const areas: Layer = {
+    name: 'records_areas', title: 'Records that rest on an area: 95 % areas', crs: site.frame, geometryType: 'MultiPolygon', fields: FIELDS,
+    features: onAreas.map((record) => ({
+      geometry: { type: 'MultiPolygon', coordinates: region95(record.density).outline().map((rings) => rings.map((ring) => ring.map(([x, y]) => [x, y]))) },
+      values: values(record),
+    })),
+  };
   return [
     {
       name: 'records', title: 'Records: best positions', crs: site.frame, geometryType: 'Point', fields: FIELDS,
@@ -30,6 +39,7 @@ export function recordLayers({ placed }: Records, site: Site): Layer[] {
       name: 'records_ellipses', title: 'Records: 95 % ellipses', crs: site.frame, geometryType: 'Polygon', fields: FIELDS,
       features: placed.map((record) => ({ geometry: { type: 'Polygon', coordinates: [ellipseRing(record, ELLIPSE_CORNERS)] }, values: values(record) })),
     },
+    ...(onAreas.length > 0 ? [areas] : []),
   ];
 }
 
