@@ -1,5 +1,6 @@
 import { Option } from 'commander';
 import { UserError } from '../src/errors.js';
+import { camelKey } from '../src/operations/camelKeys.js';
 import type { ObjectSchema, Schema } from '../src/operations/types.js';
 
 /** One flag a top-level key of the schema: `cell_m` is `--cell-m`; lists take commas, objects take JSON. */
@@ -15,8 +16,7 @@ export function flagsOf(schema: ObjectSchema): Option[] {
 export function valuesOf(schema: ObjectSchema, given: Readonly<Record<string, unknown>>): Record<string, unknown> {
   const out: Record<string, unknown> = {};
   for (const [key, property] of Object.entries(schema.properties)) {
-    const name = key.replace(/_([a-z0-9])/g, (_, letter: string) => letter.toUpperCase());
-    const text = given[name];
+    const text = given[camelKey(key)];
     if (text !== undefined) out[key] = valueOf(text, property, `--${key.replaceAll('_', '-')}`);
   }
   return out;

@@ -1,6 +1,7 @@
 import { dirname, join, resolve } from 'node:path';
 import { Command, Option } from 'commander';
 import { UserError } from '../../src/errors.js';
+import { camelKey } from '../../src/operations/camelKeys.js';
 import type { Operation, Slot } from '../../src/operations/types.js';
 import type { Site } from '../../src/site/types.js';
 import { COMMON_SCHEMA } from '../../src/survey/commonSchema.js';
@@ -77,7 +78,7 @@ async function readInputs(operation: Operation, { site, host, out, flags, termin
 }): Promise<Map<string, unknown>> {
   const given = new Map<string, unknown>();
   for (const [role, slot] of Object.entries(operation.inputs)) {
-    const path = await pathOf(role, slot, { host, out, named: flags[camel(`from_${role}`)], terminal });
+    const path = await pathOf(role, slot, { host, out, named: flags[camelKey(`from_${role}`)], terminal });
     if (path !== null) given.set(role, await readStage(role, path, { slot, site, host }));
   }
   return given;
@@ -89,8 +90,4 @@ async function pathOf(role: string, slot: Slot, { host, out, named, terminal }: 
   if (await host.files.has(path)) return path;
   if (slot.optional) return null;
   throw new UserError({ code: 'input_missing', where: shown(path, terminal), found: 'no such file', wanted: slot.title, advice: `run the stage that makes "${role}" into the same folder first, or name the file with --from-${role.replaceAll('_', '-')}` });
-}
-
-function camel(key: string): string {
-  return key.replace(/_([a-z0-9])/g, (_, letter: string) => letter.toUpperCase());
 }

@@ -9,6 +9,7 @@ function camel(value: unknown): unknown {
   return Object.fromEntries(Object.entries(value).map(([key, inner]) => [camelKey(key), camel(inner)]));
 }
 
-function camelKey(key: string): string {
+/** One name: `cell_m` becomes `cellM`. */
+export function camelKey(key: string): string {
   return key.replace(/_([a-z0-9])/g, (_, letter: string) => letter.toUpperCase());
 }

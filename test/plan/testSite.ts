@@ -1,5 +1,5 @@
 import type { Area } from '../../src/density/types.js';
-import { crs } from '../../src/geodesy/registry.js';
+import { crs } from '../../src/geodesy/crs.js';
 import { clipAreas } from '../../src/site/clipAreas.js';
 import type { Site } from '../../src/site/types.js';
 

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { UserError } from '../../src/errors.js';
-import { crs } from '../../src/geodesy/registry.js';
+import { crs } from '../../src/geodesy/crs.js';
 import { LOCATE_DEFAULTS, locateRecords } from '../../src/records/locateRecords.js';
 import type { RecordFileSettings, RecordSource } from '../../src/records/recordSource.js';
 import type { UnplacedRecord, WellRecord } from '../../src/records/types.js';

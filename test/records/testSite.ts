@@ -1,5 +1,5 @@
 import type { Area } from '../../src/density/types.js';
-import { crs } from '../../src/geodesy/registry.js';
+import { crs } from '../../src/geodesy/crs.js';
 import type { Datum, DatumShift } from '../../src/geodesy/types.js';
 import type { Site } from '../../src/site/types.js';
 

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { crs } from '../../src/geodesy/registry.js';
+import { crs } from '../../src/geodesy/crs.js';
 import type { Site } from '../../src/site/types.js';
 import { stacItem, type AssetTrace } from '../../src/survey/stacItem.js';
 import { testSite } from '../records/testSite.js';

@@ -1,1 +1,0 @@
-export { crs, crsCodes } from './crs.js';
