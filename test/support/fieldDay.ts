@@ -1,4 +1,5 @@
 import { demoFiles, type DemoOptions } from '../../fixtures/demo/generate.js';
+import { distanceTo } from '../../fixtures/demo/ground.js';
 import type { Anomalies } from '../../src/anomalies/types.js';
 import type { Finding, Findings } from '../../src/findings/types.js';
 import { BUILT_IN_OPERATIONS } from '../../src/operations/index.js';
@@ -68,7 +69,7 @@ export function localNoiseNT({ readings, truth }: RunDay, x: number, y: number):
     const [rx, ry, value] = [readings.x[i]!, readings.y[i]!, readings.residual[i]!];
     if (Number.isNaN(value) || Math.hypot(rx - x, ry - y) > LOCAL_M) continue;
     if (points.some((point) => Math.hypot(rx - point.x, ry - point.y) < OWN_READINGS_M)) continue;
-    if (truth.pipelines.some(({ points: line }) => distanceTo(line, rx, ry) < OWN_READINGS_M)) continue;
+    if (truth.pipelines.some(({ points: line }) => distanceTo(line, [rx, ry]) < OWN_READINGS_M)) continue;
     values.push(value);
   }
   const centre = middle(values);
@@ -83,17 +84,6 @@ export function peakNT({ readings }: RunDay, x: number, y: number, radiusM = 4):
     if (value > peak && Math.hypot(readings.x[i]! - x, readings.y[i]! - y) <= radiusM) peak = value;
   }
   return peak;
-}
-
-export function distanceTo(line: ReadonlyArray<readonly [number, number]>, x: number, y: number): number {
-  let least = Infinity;
-  for (let i = 0; i + 1 < line.length; i++) {
-    const [x0, y0] = line[i]!;
-    const [dx, dy] = [line[i + 1]![0] - x0, line[i + 1]![1] - y0];
-    const t = Math.min(1, Math.max(0, ((x - x0) * dx + (y - y0) * dy) / (dx * dx + dy * dy)));
-    least = Math.min(least, Math.hypot(x - x0 - t * dx, y - y0 - t * dy));
-  }
-  return least;
 }
 
 function middle(values: readonly number[]): number {
