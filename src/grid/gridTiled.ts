@@ -6,6 +6,7 @@ import { coarseSurface, surfaceAt, type CoarseSurface } from './coarseSurface.js
 import { anyGap, gapsOf, type Gaps } from './gaps.js';
 import { gridLayout, type GridLayout } from './gridLayout.js';
 import { GRID_DEFAULTS, TENSION_ON_LINE, type GridOptions } from './gridReadings.js';
+import { rimNodes } from './pins.js';
 import { robustRange } from './robustRange.js';
 import { solveTile, type TileSolution, type TileTask } from './solveTile.js';
 import { fitTrend } from './trend.js';
@@ -42,8 +43,6 @@ const COARSE_CELLS = 2_000_000;
 const COARSE_ACROSS = 64;
 /** Overlap beyond the reach: a reading that fills a cell lies in the tile, off the rim. */
 const SPARE_CELLS = 4;
-/** Rings of nodes that hold the value and the slope of the surface around. */
-const RINGS = 2;
 
 /** What was done, complete once all rows have been read. */
 export interface TiledSummary {
@@ -183,22 +182,10 @@ function tileTask({ layout: { frame, solved, cellM }, surface, buckets, common, 
   return { ...common, ...taken, frame: tile, own: { ...kept, left: left - from, top: top - above }, ...rimOf(tile, { open, surface }) };
 }
 
-/** Nodes of the rings on the sides where the ground goes on. */
-function rimOf({ width, height, west, north, cellM }: GridFrame, { open, surface }: {
-  open: { west: boolean; east: boolean; north: boolean; south: boolean }; surface: CoarseSurface | null;
-}): Pick<TileTask, 'rimNode' | 'rimValue'> {
-  const nodes: number[] = [];
-  if (surface) {
-    for (let j = 0; j < height; j++) {
-      const whole = (open.north && j < RINGS) || (open.south && j >= height - RINGS);
-      for (let i = 0; i < width; i++) {
-        if (whole || (open.west && i < RINGS) || (open.east && i >= width - RINGS)) nodes.push(j * width + i);
-        // Between the two sides there is nothing to look at.
-        else if (i >= RINGS && i < width - RINGS) i = width - RINGS - 1;
-      }
-    }
-  }
-  const rimNode = Int32Array.from(nodes);
+/** Nodes along the sides where the ground goes on, with the value of the wide surface there. */
+function rimOf(tile: GridFrame, { open, surface }: { open: Parameters<typeof rimNodes>[1]; surface: CoarseSurface | null }): Pick<TileTask, 'rimNode' | 'rimValue'> {
+  const { width, west, north, cellM } = tile;
+  const rimNode = surface ? rimNodes(tile, open) : new Int32Array(0);
   const rimValue = Float64Array.from(rimNode, (node) => {
     const j = Math.floor(node / width);
     return surfaceAt(surface!, west + (node - j * width + 0.5) * cellM, north - (j + 0.5) * cellM);

@@ -20,6 +20,69 @@ export function emptyPins(count: number): Pins {
   };
 }
 
+/** Rings of nodes that hold the value and the slope of the surface around. */
+const RINGS = 2;
+
+/** Nodes, ascending, of the rings along the sides where the surface goes on. */
+export function rimNodes({ width, height }: { readonly width: number; readonly height: number }, open: Readonly<Record<'west' | 'east' | 'north' | 'south', boolean>>): Int32Array {
+  const nodes: number[] = [];
+  for (let j = 0; j < height; j++) {
+    const whole = (open.north && j < RINGS) || (open.south && j >= height - RINGS);
+    for (let i = 0; i < width; i++) {
+      if (whole || (open.west && i < RINGS) || (open.east && i >= width - RINGS)) nodes.push(j * width + i);
+      // Between the two sides there is nothing to look at.
+      else if (i >= RINGS && i < width - RINGS) i = width - RINGS - 1;
+    }
+  }
+  return Int32Array.from(nodes);
+}
+
+/** Pins that hold values at nodes themselves. */
+export function nodePins(node: Int32Array, value: Float64Array): Pins {
+  return { ...emptyPins(node.length), node, value, weight: new Float64Array(node.length).fill(1) };
+}
+
+/** Pins of both; at a node of both, the first's. */
+export function joinPins(first: Pins, second: Pins): Pins {
+  const [n1, n2] = [first.node.length, second.node.length];
+  if (n1 === 0 || n2 === 0) return n1 === 0 ? second : first;
+  const all = emptyPins(n1 + n2);
+  let to = 0;
+  for (let a = 0, b = 0; a < n1 || b < n2; to++) {
+    const ofFirst = b === n2 || (a < n1 && first.node[a]! <= second.node[b]!);
+    if (ofFirst && b < n2 && first.node[a] === second.node[b]) b++;
+    copyPin(ofFirst ? first : second, ofFirst ? a++ : b++, all, to);
+  }
+  return {
+    node: all.node.subarray(0, to), value: all.value.subarray(0, to), dx: all.dx.subarray(0, to), dy: all.dy.subarray(0, to),
+    weight: all.weight.subarray(0, to),
+  };
+}
+
+function copyPin(from: Pins, n: number, to: Pins, m: number): void {
+  to.node[m] = from.node[n]!;
+  to.value[m] = from.value[n]!;
+  to.dx[m] = from.dx[n]!;
+  to.dy[m] = from.dy[n]!;
+  to.weight[m] = from.weight[n]!;
+}
+
+/** The pins of a rectangle of nodes, by the rectangle's own nodes. `width` is that of the whole. */
+export function pinsWithin(pins: Pins, width: number, window: { readonly left: number; readonly top: number; readonly width: number; readonly height: number }): Pins {
+  const taken: number[] = [];
+  for (let n = 0; n < pins.node.length; n++) {
+    const j = Math.floor(pins.node[n]! / width) - window.top;
+    const i = pins.node[n]! % width - window.left;
+    if (i >= 0 && i < window.width && j >= 0 && j < window.height) taken.push(n);
+  }
+  const within = emptyPins(taken.length);
+  taken.forEach((n, to) => {
+    copyPin(pins, n, within, to);
+    within.node[to] = (Math.floor(pins.node[n]! / width) - window.top) * window.width + pins.node[n]! % width - window.left;
+  });
+  return within;
+}
+
 /** The same values on a grid of half the resolution: those that fall to one node become their weighted mean. */
 export function coarsenPins(pins: Pins, [width, coarseWidth, coarseHeight]: readonly [number, number, number]): Pins {
   const slot = new Int32Array(coarseWidth * coarseHeight).fill(-1);
@@ -68,22 +131,12 @@ export function pinRows(pins: Pins, width: number, height: number): PinRows {
   return { pins, start };
 }
 
-export interface PinRow {
-  readonly width: number;
-  readonly height: number;
-  readonly j: number;
-  readonly largest: number;
-}
-
 /**
  * Moves each pinned node of row `j` by what the surface misses at the pin's own place. The surface between nodes is the
- * quadratic through the nine nodes around (Taylor to second order); on the rim it is constant across. Returns the
- * largest move, or `largest` where that is more.
+ * quadratic through the nine nodes around (Taylor to second order); on the rim it is constant across.
  */
-export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, row: PinRow): number {
+export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, { width, height }: { readonly width: number; readonly height: number }, j: number): void {
   const { node, value, dx, dy } = pins;
-  const { width, height, j } = row;
-  let largest = row.largest;
   const inner = j > 0 && j < height - 1;
   for (let n = start[j]!; n < start[j + 1]!; n++) {
     const k = node[n]!;
@@ -103,12 +156,8 @@ export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, row: Pi
         + ((y * (y - 1)) / 2) * (middle * z[north]! + west * z[north - a]! + east * z[north + a]!)
         + ((y * (y + 1)) / 2) * (middle * z[south]! + west * z[south - a]! + east * z[south + a]!);
     }
-    const move = value[n]! - at;
-    z[k]! += move;
-    if (move > largest) largest = move;
-    else if (-move > largest) largest = -move;
+    z[k]! += value[n]! - at;
   }
-  return largest;
 }
 
 /**

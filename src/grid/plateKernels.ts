@@ -54,30 +54,18 @@ function residualAtRim(level: PlateLevel, z: Float64Array, out: Float32Array, k:
   out[k] = level.inverseDiagonal[k] === 0 ? 0 : level.right[k]! - plateAtRim(level, z, k);
 }
 
-export interface RowSweep {
-  readonly j: number;
-  /** Largest change so far. */
-  readonly largest: number;
-  /** 1 at nodes whose change counts; null where all do. */
-  readonly watch: Uint8Array | null;
-}
-
-/**
- * One Gauss–Seidel sweep of row `j` from west to east on A z = right; pinned nodes stay. Returns the largest
- * change of a node, or `largest` where that is more.
- */
-export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest: before, watch }: RowSweep): number {
-  let largest = before;
+/** One Gauss–Seidel sweep of row `j` from west to east on A z = right; pinned nodes stay. */
+export function smoothRow(level: PlateLevel, z: Float64Array, j: number): void {
   const { width, height, alpha, tau, inverseDiagonal, right: b } = level;
   const start = j * width;
   if (j < 2 || j >= height - 2 || width < 5) {
-    for (let k = start; k < start + width; k++) largest = smoothAtRim(level, z, { k, largest, watch });
-    return largest;
+    for (let k = start; k < start + width; k++) smoothAtRim(level, z, k);
+    return;
   }
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  for (let k = start; k < start + 2; k++) largest = smoothAtRim(level, z, { k, largest, watch });
+  for (let k = start; k < start + 2; k++) smoothAtRim(level, z, k);
   const end = start + width - 2;
   let k = start + 2;
   const up = -width;
@@ -97,9 +85,7 @@ export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest: befo
     const known = b[k]! - a0 * centre - a1 * (right + near) - a2 * (nearLeft + nearRight)
       - alpha * (left2 + right2 + z[k + up2]! + z[k + down2]!);
     const value = (centre + step * known) - (step * a1) * left;
-    const change = value - centre;
     z[k] = value;
-    if ((change > largest || -change > largest) && (watch === null || watch[k] !== 0)) largest = Math.abs(change);
     nearLeft = near;
     near = nearRight;
     left2 = left;
@@ -107,14 +93,10 @@ export function smoothRow(level: PlateLevel, z: Float64Array, { j, largest: befo
     centre = right;
     right = right2;
   }
-  for (k = end; k < end + 2; k++) largest = smoothAtRim(level, z, { k, largest, watch });
-  return largest;
+  for (k = end; k < end + 2; k++) smoothAtRim(level, z, k);
 }
 
-function smoothAtRim(level: PlateLevel, z: Float64Array, { k, largest, watch }: { k: number; largest: number; watch: Uint8Array | null }): number {
+function smoothAtRim(level: PlateLevel, z: Float64Array, k: number): void {
   const inverse = level.inverseDiagonal[k]!;
-  if (inverse === 0) return largest;
-  const change = OMEGA * inverse * (level.right[k]! - plateAtRim(level, z, k));
-  z[k]! += change;
-  return watch === null || watch[k] !== 0 ? Math.max(largest, Math.abs(change)) : largest;
+  if (inverse !== 0) z[k]! += OMEGA * inverse * (level.right[k]! - plateAtRim(level, z, k));
 }

@@ -104,14 +104,17 @@ export function plateLevel(size: { width: number; height: number; alpha: number;
 export function fillDiagonal(level: PlateLevel, pinned: Int32Array | null): void {
   const { width, height, alpha, tau, inverseDiagonal, hold } = level;
   const inner = 20 * alpha + 4 * tau;
-  for (let j = 0, k = 0; j < height; j++) {
-    const rimRow = j < 2 || j >= height - 2;
-    for (let i = 0; i < width; i++, k++) {
-      const rim = rimRow || i < 2 || i >= width - 2;
-      const diagonal = (rim ? plateWeight(level, [i, j], [0, 0]) : inner) + (pinned ? 0 : hold.self[k]!);
+  if (pinned) inverseDiagonal.fill(1 / inner);
+  else for (let k = 0; k < inverseDiagonal.length; k++) inverseDiagonal[k] = 1 / (inner + hold.self[k]!);
+  for (let j = 0; j < height; j++) {
+    const wholeRow = j < 2 || j >= height - 2 || width < 5;
+    for (let i = 0; i < width; i++) {
+      if (!wholeRow && i === 2) i = width - 2;
+      const k = j * width + i;
+      const diagonal = plateWeight(level, [i, j], [0, 0]) + (pinned ? 0 : hold.self[k]!);
       // A lone node has no energy at all; any number will do, since its right side is zero.
       inverseDiagonal[k] = diagonal > 0 ? 1 / diagonal : 1;
     }
   }
-  for (const node of pinned ?? []) inverseDiagonal[node] = 0;
+  if (pinned) for (const node of pinned) inverseDiagonal[node] = 0;
 }

@@ -1,6 +1,7 @@
 import { clearHold, coarsenHold, holdPins } from './hold.js';
 import { heldResidualRow, heldSmoothRow } from './heldKernels.js';
-import { coarsenPins, movePinsOfRow, pinCorrection, pinRows, type PinRows, type Pins } from './pins.js';
+import { Moves, type Window } from './moves.js';
+import { coarsenPins, joinPins, movePinsOfRow, nodePins, pinCorrection, pinRows, pinsWithin, rimNodes, type PinRows, type Pins } from './pins.js';
 import { plateResidual, plateResidualRow, smoothRow } from './plateKernels.js';
 import { fillDiagonal, plateLevel, type PlateLevel } from './plateLevel.js';
 import { spikeWeights } from './spikeWeights.js';
@@ -45,9 +46,6 @@ const LAST_SWEEPS = 20;
  */
 const SWEEPS = 3;
 const HELD_SWEEPS = 2;
-/** Coarser grids only supply a start: an error below the next grid's own discretisation is enough. */
-const COARSE_TOLERANCE = 1e-2;
-const COARSE_CYCLES = 1;
 /**
  * Share of a correction that is taken: the hold lets corrections grow a little too large near pins. Where cycles leave more
  * than the slow rate, the share is found anew in each, which costs a quarter of a cycle and pays where pins are sparse
@@ -55,9 +53,8 @@ const COARSE_CYCLES = 1;
  */
 const SHARE = 0.7;
 const SLOW_RATE = 0.3;
-/** Bounds within which the rate of convergence is believed. */
-const BEST_RATE = 0.15;
-const WORST_RATE = 0.95;
+/** Spots that still move are solved by themselves where they take no more than this share of the nodes. */
+const SPOTS_SHARE = 0.25;
 
 interface Grids {
   readonly levels: readonly PlateLevel[];
@@ -66,33 +63,25 @@ interface Grids {
   readonly transfers: readonly Transfer[];
 }
 
-/** `tolerance` in the data's unit. */
-export function solvePlate(problem: PlateProblem, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): PlateSolution {
-  const grids = buildGrids(problem);
-  const { levels, transfers } = grids;
-  const range = spread(problem.pins.value);
-  let z = new Float64Array(levels.at(-1)!.width * levels.at(-1)!.height);
-  let solution: Omit<PlateSolution, 'z'> = { iterations: 0, remaining: 0, converged: true };
-  for (let l = levels.length - 1; l >= 0; l--) {
-    if (l < levels.length - 1) {
-      const finer = new Float64Array(levels[l]!.width * levels[l]!.height);
-      prolong(transfers[l]!, [z, finer], { add: false, watch: null });
-      z = finer;
-    }
-    const goal = l === 0 ? { tolerance, maxSteps } : { tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_CYCLES };
-    solution = solveOnGrid(grids, { l, z, watch: l === 0 ? problem.watch : null }, goal);
-  }
-  return { z, ...solution };
+interface Goal {
+  /** In the data's unit. */
+  readonly tolerance: number;
+  readonly maxSteps: number;
 }
 
-function spread(values: Float64Array): number {
-  let low = Infinity;
-  let high = -Infinity;
-  for (let n = 0; n < values.length; n++) {
-    low = Math.min(low, values[n]!);
-    high = Math.max(high, values[n]!);
+export function solvePlate(problem: PlateProblem, goal: Goal): PlateSolution {
+  const grids = buildGrids(problem);
+  const { levels, transfers } = grids;
+  const last = levels.length - 1;
+  let z = new Float64Array(levels[last]!.width * levels[last]!.height);
+  for (let l = last; l > 0; l--) {
+    layHolds(grids, l);
+    cycle(grids, { l, z }, null);
+    const finer = new Float64Array(levels[l - 1]!.width * levels[l - 1]!.height);
+    prolong(transfers[l - 1]!, [z, finer], { add: false });
+    z = finer;
   }
-  return values.length === 0 ? 0 : high - low;
+  return { z, ...improve(problem, { grids, z }, { ...goal, spots: true }) };
 }
 
 function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
@@ -111,29 +100,48 @@ function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
   return { levels, transfers, pins: pinsOf.map((each, l) => pinRows(each, levels[l]!.width, levels[l]!.height)) };
 }
 
-interface Work {
-  /** Level. */
-  readonly l: number;
-  readonly z: Float64Array;
-  readonly watch: Uint8Array | null;
+/** Cycles on the finest grid, in place, until the goal is reached; `spots`: the last of them only where they are needed. */
+function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64Array }, { tolerance, maxSteps, spots }: Goal & { spots: boolean }): Omit<PlateSolution, 'z'> {
+  layHolds(grids, 0);
+  const moves = new Moves(z, problem);
+  let path: Path | null = null;
+  for (let step = 1; step <= maxSteps; step++) {
+    cycle(grids, { l: 0, z }, path);
+    moves.note(z);
+    const { remaining } = moves;
+    if (remaining <= tolerance) return { iterations: step, remaining, converged: true };
+    if (moves.rate > SLOW_RATE) path ??= { step: new Float32Array(z.length), image: new Float32Array(z.length) };
+    if (!spots || step === maxSteps) continue;
+    // What is left outside adds to what is left inside.
+    const windows = moves.unsettled(tolerance / 2);
+    if (windows.reduce((sum, { width, height }) => sum + width * height, 0) > SPOTS_SHARE * z.length) continue;
+    const solved = windows.map((window) => improveWindow(problem, { z, window }, { tolerance: tolerance / 2, maxSteps: maxSteps - step }));
+    return {
+      iterations: step + Math.max(...solved.map(({ iterations }) => iterations)),
+      remaining: tolerance / 2 + Math.max(...solved.map((each) => each.remaining)),
+      converged: solved.every(({ converged }) => converged),
+    };
+  }
+  return { iterations: maxSteps, remaining: moves.remaining, converged: false };
 }
 
-function solveOnGrid(grids: Grids, { l, z, watch }: Work, { tolerance, maxSteps }: { tolerance: number; maxSteps: number }): Omit<PlateSolution, 'z'> {
-  layHolds(grids, l);
-  grids.levels[l]!.right.fill(0);
-  let path: Path | null = null;
-  let before = NaN;
-  let remaining = Infinity;
-  for (let step = 1; step <= maxSteps; step++) {
-    const size = cycle(grids, { l, z, watch }, path);
-    const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, size / before || 0));
-    // The changes fall about geometrically: what is still to come is their sum.
-    remaining = (size * rate) / (1 - rate);
-    if (remaining <= tolerance) return { iterations: step, remaining, converged: true };
-    if (size > SLOW_RATE * before) path ??= { step: new Float32Array(z.length), image: new Float32Array(z.length) };
-    before = size;
-  }
-  return { iterations: maxSteps, remaining, converged: false };
+/** Goes on with the cycles in a window of the surface alone, whose rim rests on the surface around. */
+function improveWindow(problem: PlateProblem, { z, window }: { z: Float64Array; window: Window }, goal: Goal): Omit<PlateSolution, 'z'> {
+  const { left, top, width, height } = window;
+  const cut = <T extends Float64Array | Uint8Array>(whole: T, part: T): T => {
+    for (let j = 0; j < height; j++) part.set(whole.subarray((top + j) * problem.width + left, (top + j) * problem.width + left + width), j * width);
+    return part;
+  };
+  const own = cut(z, new Float64Array(width * height));
+  const node = rimNodes(window, { west: left > 0, east: left + width < problem.width, north: top > 0, south: top + height < problem.height });
+  const rim = nodePins(node, Float64Array.from(node, (k) => own[k]!));
+  const part = {
+    ...problem, width, height, pins: joinPins(rim, pinsWithin(problem.pins, problem.width, window)),
+    watch: problem.watch && cut(problem.watch, new Uint8Array(width * height)),
+  };
+  const solved = improve(part, { grids: buildGrids(part), z: own }, { ...goal, spots: false });
+  for (let j = 0; j < height; j++) z.set(own.subarray(j * width, (j + 1) * width), (top + j) * problem.width + left);
+  return solved;
 }
 
 /** Grids next to the surface's own on which pins are laid one by one; further down the hold is coarsened from grid to grid. */
@@ -157,27 +165,21 @@ function layHolds({ levels, pins }: Grids, start: number): void {
   }
 }
 
-/** One V-cycle on the surface itself, by a fixed share where `path` is null; returns the size of the largest change. */
-function cycle({ levels, transfers, pins }: Grids, { l, z, watch }: Work, path: Path | null): number {
+/** One V-cycle on the surface of level `l` itself, by a fixed share where `path` is null. */
+function cycle({ levels, transfers, pins }: Grids, { l, z }: { l: number; z: Float64Array }, path: Path | null): void {
   const level = levels[l]!;
   const last = l === levels.length - 1;
-  let size = sweeps(level, pins[l]!, { z, watch, count: last ? LAST_SWEEPS : SWEEPS, residual: !last });
-  if (last) return size;
+  sweeps(level, pins[l]!, { z, count: last ? LAST_SWEEPS : SWEEPS, residual: !last });
+  if (last) return;
   const coarse = levels[l + 1]!;
   const { correction, scratch } = level;
   restrict(transfers[l]!, [scratch, coarse.right]);
   correct({ levels, transfers }, l + 1);
-  const most = prolong(transfers[l]!, [coarse.correction, correction], { add: false, watch });
+  prolong(transfers[l]!, [coarse.correction, correction], { add: false });
   pinCorrection(correction, pins[l]!.pins, level);
-  const length = path ? advance(level, z, path) : add(z, correction);
-  size = Math.max(size, length * most);
-  sweeps(level, pins[l]!, { z, watch, count: SWEEPS, residual: false });
-  return size;
-}
-
-function add(z: Float64Array, correction: Float64Array): number {
-  for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
-  return SHARE;
+  if (path) advance(level, z, path);
+  else for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
+  sweeps(level, pins[l]!, { z, count: SWEEPS, residual: false });
 }
 
 /** The last coarse step and what the operator makes of it; zero before the first. */
@@ -188,10 +190,9 @@ interface Path {
 
 /**
  * Moves the surface along the correction and along the last step as far as lowers the energy most (conjugate directions:
- * what the hold only estimates is made good here). level.scratch holds the residual and is spoilt. Returns the share of
- * the correction that was taken.
+ * what the hold only estimates is made good here). level.scratch holds the residual and is spoilt.
  */
-function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): number {
+function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): void {
   const { correction, scratch } = level;
   let gain = 0;
   let gainStep = 0;
@@ -209,7 +210,7 @@ function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): num
     cross += correction[k]! * image[k]!;
     costStep += step[k]! * image[k]!;
   }
-  if (!(cost > 0)) return 0;
+  if (!(cost > 0)) return;
   const determinant = cost * costStep - cross * cross;
   // Where both directions are one but for rounding, the correction alone is taken.
   const both = determinant > PARALLEL * cost * costStep;
@@ -221,7 +222,6 @@ function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): num
     image[k] = again * image[k]! - length * scratch[k]!;
     z[k]! += move;
   }
-  return Math.abs(length);
 }
 
 /** Relative determinant below which two directions are taken for one: rounding of 32-bit work space. */
@@ -229,27 +229,20 @@ const PARALLEL = 1e-5;
 
 interface Sweeps {
   readonly z: Float64Array;
-  readonly watch: Uint8Array | null;
   readonly count: number;
   /** Leaves the residual in level.scratch. */
   readonly residual: boolean;
 }
 
-/** Sweeps over the surface; returns the size of the largest change in the first. */
-function sweeps(level: PlateLevel, pins: PinRows, { z, watch, count, residual }: Sweeps): number {
-  const { width, height, scratch } = level;
-  let first = 0;
+function sweeps(level: PlateLevel, pins: PinRows, { z, count, residual }: Sweeps): void {
+  const { height, scratch } = level;
   wavefront(height, count + (residual ? 1 : 0), (pass, j) => {
-    if (pass === count) {
-      plateResidualRow(level, z, { out: scratch, j });
-      return;
+    if (pass === count) plateResidualRow(level, z, { out: scratch, j });
+    else {
+      movePinsOfRow(z, pins, level, j);
+      smoothRow(level, z, j);
     }
-    const before = pass === 0 ? first : 0;
-    const moved = movePinsOfRow(z, pins, { width, height, j, largest: before });
-    const largest = smoothRow(level, z, { j, largest: moved, watch });
-    if (pass === 0) first = largest;
   });
-  return first;
 }
 
 /** One V-cycle from zero on a correction: level.correction ≈ (A + H)⁻¹ level.right. */
@@ -262,7 +255,7 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   if (last) return;
   restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
   correct({ levels, transfers }, l + 1);
-  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true, watch: null });
+  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true });
   heldSweeps(level, { count: HELD_SWEEPS, residual: false });
 }
 

@@ -1,5 +1,5 @@
 import { binSamples, indexByCell } from './binSamples.js';
-import { emptyPins, type Pins } from './pins.js';
+import { joinPins, nodePins } from './pins.js';
 import { reachMask } from './reachMask.js';
 import { solvePlate } from './solvePlate.js';
 import { trendAt, type Trend } from './trend.js';
@@ -51,7 +51,7 @@ export function solveTile(task: TileTask): TileSolution {
   const values = new Float32Array(own.width * own.height).fill(NaN);
   if (inside === 0) return { values, filled: 0, iterations: 0, remaining: 0, converged: true };
   const { z, ...solved } = solvePlate(
-    { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins: withRim(data, task), watch: mask },
+    { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins: joinPins(data, nodePins(task.rimNode, task.rimValue)), watch: mask },
     task,
   );
   for (let j = 0, to = 0; j < own.height; j++) {
@@ -75,31 +75,4 @@ function keepOwn(mask: Uint8Array, { frame, own }: TileTask): number {
     }
   }
   return left;
-}
-
-/** Pins of the readings and, at nodes without any, of the rim; in the order of nodes. */
-function withRim(data: Pins, { rimNode, rimValue }: TileTask): Pins {
-  if (rimNode.length === 0) return data;
-  const all = emptyPins(data.node.length + rimNode.length);
-  let to = 0;
-  let r = 0;
-  for (let n = 0; n <= data.node.length; n++) {
-    const node = n < data.node.length ? data.node[n]! : Infinity;
-    for (; r < rimNode.length && rimNode[r]! <= node; r++) {
-      if (rimNode[r] === node) continue;
-      all.node[to] = rimNode[r]!;
-      all.value[to] = rimValue[r]!;
-      all.weight[to++] = 1;
-    }
-    if (n === data.node.length) break;
-    all.node[to] = node;
-    all.value[to] = data.value[n]!;
-    all.dx[to] = data.dx[n]!;
-    all.dy[to] = data.dy[n]!;
-    all.weight[to++] = data.weight[n]!;
-  }
-  return {
-    node: all.node.subarray(0, to), value: all.value.subarray(0, to), dx: all.dx.subarray(0, to), dy: all.dy.subarray(0, to),
-    weight: all.weight.subarray(0, to),
-  };
 }

@@ -49,16 +49,8 @@ export function transfer(width: number, height: number): Transfer {
   return { x, y, half: new Float64Array(width * y.coarse) };
 }
 
-export interface Prolongation {
-  readonly add: boolean;
-  readonly watch: Uint8Array | null;
-}
-
-/**
- * fine += P coarse, or fine = P coarse where `add` is false. Returns the largest value of P coarse, of nodes with `watch`
- * 1 where that is given.
- */
-export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add, watch }: Prolongation): number {
+/** fine += P coarse, or fine = P coarse where `add` is false. */
+export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add }: { add: boolean }): void {
   const width = x.fine;
   const reads = Math.min(4, x.coarse);
   for (let row = 0; row < y.coarse; row++) {
@@ -77,7 +69,6 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
       }
     }
   }
-  let largest = 0;
   for (let row = 0; row < y.fine; row++) {
     const f = row * width;
     const rows = Math.min(4, y.coarse - y.from[row]!);
@@ -93,10 +84,8 @@ export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Floa
     for (let i = 0; i < width; i++) {
       const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
       fine[f + i] = add ? fine[f + i]! + value : value;
-      if ((value > largest || -value > largest) && (watch === null || watch[f + i] !== 0)) largest = Math.abs(value);
     }
   }
-  return largest;
 }
 
 /** Fine rows on either side that read a coarse row, at most: one-sided weights at the rim reach the furthest. */
