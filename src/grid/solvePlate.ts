@@ -1,4 +1,4 @@
-import { clearHold, coarsenHold, holdPins } from './hold.js';
+import { holdPins } from './hold.js';
 import { heldResidualRow, heldSmoothRow } from './heldKernels.js';
 import { Moves, type Window } from './moves.js';
 import { coarsenPins, joinPins, movePinsOfRow, nodePins, pinCorrection, pinRows, pinsWithin, rimNodes, type PinRows, type Pins } from './pins.js';
@@ -75,11 +75,12 @@ export function solvePlate(problem: PlateProblem, goal: Goal): PlateSolution {
   const last = levels.length - 1;
   let z = new Float64Array(levels[last]!.width * levels[last]!.height);
   for (let l = last; l > 0; l--) {
-    layHolds(grids, l);
     cycle(grids, { l, z }, null);
     const finer = new Float64Array(levels[l - 1]!.width * levels[l - 1]!.height);
     prolong(transfers[l - 1]!, [z, finer], { add: false });
     z = finer;
+    // From here on only corrections are sought on this grid.
+    fillDiagonal(levels[l]!, null);
   }
   return { z, ...improve(problem, { grids, z }, { ...goal, spots: true }) };
 }
@@ -90,19 +91,22 @@ function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
   const transfers: Transfer[] = [];
   for (;;) {
     const fine = levels.at(-1)!;
+    const own = pinsOf.at(-1)!;
+    fillDiagonal(fine, own.node);
     if (fine.width <= LAST_SIDE && fine.height <= LAST_SIDE) break;
     const down = transfer(fine.width, fine.height);
     transfers.push(down);
     // Twice the cell: curvature counts a quarter, slope the same, in the units of the finer grid.
-    levels.push(plateLevel({ width: down.x.coarse, height: down.y.coarse, alpha: fine.alpha / 4, tau: fine.tau }));
-    pinsOf.push(coarsenPins(pinsOf.at(-1)!, [fine.width, down.x.coarse, down.y.coarse]));
+    const coarse = plateLevel({ width: down.x.coarse, height: down.y.coarse, alpha: fine.alpha / 4, tau: fine.tau });
+    holdPins(coarse, { pins: own, weights: spikeWeights(fine, own.node), finer: fine });
+    levels.push(coarse);
+    pinsOf.push(coarsenPins(own, [fine.width, coarse.width, coarse.height]));
   }
   return { levels, transfers, pins: pinsOf.map((each, l) => pinRows(each, levels[l]!.width, levels[l]!.height)) };
 }
 
 /** Cycles on the finest grid, in place, until the goal is reached; `spots`: the last of them only where they are needed. */
 function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64Array }, { tolerance, maxSteps, spots }: Goal & { spots: boolean }): Omit<PlateSolution, 'z'> {
-  layHolds(grids, 0);
   const moves = new Moves(z, problem);
   let path: Path | null = null;
   for (let step = 1; step <= maxSteps; step++) {
@@ -139,31 +143,13 @@ function improveWindow(problem: PlateProblem, { z, window }: { z: Float64Array; 
     ...problem, width, height, pins: joinPins(rim, pinsWithin(problem.pins, problem.width, window)),
     watch: problem.watch && cut(problem.watch, new Uint8Array(width * height)),
   };
-  const solved = improve(part, { grids: buildGrids(part), z: own }, { ...goal, spots: false });
+  const grids = buildGrids(part);
+  for (const level of grids.levels.slice(1)) fillDiagonal(level, null);
+  const solved = improve(part, { grids, z: own }, { ...goal, spots: false });
   for (let j = 0; j < height; j++) z.set(own.subarray(j * width, (j + 1) * width), (top + j) * problem.width + left);
   return solved;
 }
 
-/** Grids next to the surface's own on which pins are laid one by one; further down the hold is coarsened from grid to grid. */
-const LAID_GRIDS = 2;
-
-/**
- * Pins the nodes of grid `start`, whose surface is sought, and lays their hold on all coarser grids. Both ways give the
- * same: bilinear interpolation nests.
- */
-function layHolds({ levels, pins }: Grids, start: number): void {
-  const top = levels[start]!;
-  const own = pins[start]!.pins;
-  fillDiagonal(top, own.node);
-  const weights = spikeWeights(top, own.node);
-  for (let l = start + 1; l < levels.length; l++) {
-    const level = levels[l]!;
-    clearHold(level.hold);
-    if (l - start <= LAID_GRIDS) holdPins(level, { pins: own, weights, finer: top, step: 2 ** (l - start) });
-    else coarsenHold(levels[l - 1]!, level);
-    fillDiagonal(level, null);
-  }
-}
 
 /** One V-cycle on the surface of level `l` itself, by a fixed share where `path` is null. */
 function cycle({ levels, transfers, pins }: Grids, { l, z }: { l: number; z: Float64Array }, path: Path | null): void {

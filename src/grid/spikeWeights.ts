@@ -1,10 +1,11 @@
 import { plateWeight, type PlateLevel } from './plateLevel.js';
 
 /**
- * Weight of a pin's hold on corrections: half the energy of the spike that it leaves, as far as neighbouring pins do not
- * share it, and no less than of a pin in a field of pins. Affects speed only (measured).
+ * Weight of a pin's hold on corrections: this share of the energy of the spike that it leaves, as far as neighbouring pins
+ * do not share it, and no less than of a pin in a field of pins. Affects speed only (measured: 0.5 to 1 about alike, below
+ * a quarter cycles diverge).
  */
-const SPIKE_SHARE = 0.5;
+const SPIKE_SHARE = 0.75;
 const LEAST_SPIKE = 4;
 
 /** For each pinned node, the weight of its hold. The level's inverse diagonal is 0 at pinned nodes. */
