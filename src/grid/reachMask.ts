@@ -11,9 +11,9 @@ const HALF_DIAGONAL = Math.SQRT1_2;
 export function reachMask(index: CellIndex, frame: GridFrame, reachM: number): Uint8Array {
   const { width, height, cellM } = frame;
   const reach = reachM / cellM;
-  const squared = distanceToOccupied(index, frame);
   const mask = new Uint8Array(width * height);
   const surely = Math.max(0, reach - HALF_DIAGONAL);
+  const squared = distanceToOccupied(index, frame, surely);
   const atMost = reach + HALF_DIAGONAL;
   for (let j = 0, k = 0; j < height; j++) {
     for (let i = 0; i < width; i++, k++) {
@@ -42,29 +42,32 @@ function readingWithin({ start, order, column, row }: CellIndex, { width, height
 }
 
 /**
- * Squared distance, in cells, from each cell to the nearest one that holds readings; Infinity where there is none.
+ * Squared distance, in cells, from each cell to the nearest one that holds readings; Infinity where there is none. Where
+ * all cells of a row are known to lie within `enough` cells, their distances may come out larger than they are, up to that.
  * Source: Felzenszwalb & Huttenlocher (2012), Distance transforms of sampled functions, Theory of Computing 8 (exact).
  */
-export function distanceToOccupied({ start }: Pick<CellIndex, 'start'>, { width, height }: Pick<GridFrame, 'width' | 'height'>): Float64Array {
+export function distanceToOccupied({ start }: Pick<CellIndex, 'start'>, { width, height }: Pick<GridFrame, 'width' | 'height'>, enough = 0): Float64Array {
   const squared = new Float64Array(width * height);
-  // Up and down the columns, plain counting does.
-  for (let i = 0; i < width; i++) {
-    let steps = Infinity;
-    for (let j = 0, k = i; j < height; j++, k += width) {
-      steps = start[k + 1]! > start[k]! ? 0 : steps + 1;
-      squared[k] = steps;
-    }
-    steps = Infinity;
-    for (let j = height - 1, k = i + j * width; j >= 0; j--, k -= width) {
-      steps = start[k + 1]! > start[k]! ? 0 : steps + 1;
-      const least = Math.min(steps, squared[k]!);
-      squared[k] = least * least;
-    }
+  // Up and down the columns, plain counting does; all columns at once, since cells of a row lie side by side.
+  const steps = new Float64Array(width).fill(Infinity);
+  for (let j = 0, k = 0; j < height; j++) {
+    for (let i = 0; i < width; i++, k++) squared[k] = steps[i] = start[k + 1]! > start[k]! ? 0 : steps[i]! + 1;
   }
+  steps.fill(Infinity);
   const parabola = new Int32Array(width);
   const border = new Float64Array(width + 1);
   const line = new Float64Array(width);
-  for (let j = 0; j < height; j++) lowerEnvelope(squared.subarray(j * width, (j + 1) * width), { parabola, border, line });
+  for (let j = height - 1; j >= 0; j--) {
+    const row = squared.subarray(j * width, (j + 1) * width);
+    let furthest = 0;
+    for (let i = 0; i < width; i++) {
+      const least = Math.min(steps[i]! + 1, row[i]!);
+      steps[i] = least;
+      row[i] = least * least;
+      if (least > furthest) furthest = least;
+    }
+    if (furthest > enough) lowerEnvelope(row, { parabola, border, line });
+  }
   return squared;
 }
 
