@@ -1,6 +1,6 @@
 import { estimateLineSpacing } from '../grid/estimateLineSpacing.js';
 import { GRID_METHODS, gridByMethod, METHOD_DEFAULTS, type MethodOptions } from '../grid/gridByMethod.js';
-import { GRID_DEFAULTS } from '../grid/gridReadings.js';
+import { GRID_DEFAULTS } from '../grid/gridOptions.js';
 import type { Readings } from '../readings/types.js';
 import { camelKeys } from './camelKeys.js';
 import { objectSchema, quantitySchema } from './schema.js';
@@ -45,7 +45,7 @@ export const grid: Operation = {
     const { x, y, heightM, line, flag, residual } = inputs.readings as Readings;
     const value = residual.map((nT, n) => (flag[n] === 0 ? nT : NaN));
     const spacingM = options.spacingM ?? estimateLineSpacing({ x, y, line, flag });
-    const { grid: result, error } = gridByMethod({ x, y, up: heightM, line, value }, { ...options, spacingM });
+    const { grid: result, error } = await gridByMethod({ x, y, up: heightM, line, value }, { ...options, spacingM });
     for (const note of result.notes) progress(note);
     for (const warning of result.warnings) warn(warning);
     return error ? { residual: result, residual_error: error } : { residual: result };
