@@ -51,9 +51,7 @@ const LEVEL_SHARE = 0.01;
  */
 export async function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}): Promise<MethodResult> {
   const { method, error, noiseNt: stated, ...plain } = { ...METHOD_DEFAULTS, ...options };
-  if (!GRID_METHODS.includes(method)) {
-    throw new UserError({ code: 'value_invalid', where: 'grid, method', found: JSON.stringify(method), wanted: `one of ${GRID_METHODS.join(', ')}` });
-  }
+  checkMethod(method);
   const grid = await gridReadings(samples, plain);
   if (method === 'tension' && !error) return { grid, error: null, method };
   const { width, height, west, north, cellM, spacingM } = grid;
@@ -79,6 +77,11 @@ export async function gridByMethod(samples: WalkedSamples, options: MethodOption
   );
   // The plate only lent its frame: how far it had converged is no matter here.
   return { grid: { ...grid, values: sources.values, iterations: 0, remaining: 0, remainingShare: 0, converged: true, notes, warnings: grid.converged ? grid.warnings : grid.warnings.slice(0, -1) }, error: errorGrid, method: used };
+}
+
+export function checkMethod(method: GridMethod): void {
+  if (GRID_METHODS.includes(method)) return;
+  throw new UserError({ code: 'value_invalid', where: 'grid, method', found: JSON.stringify(method), wanted: `one of ${GRID_METHODS.join(', ')}` });
 }
 
 /** Heights above their median; readings without one lie on it. */
