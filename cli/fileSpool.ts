@@ -3,8 +3,8 @@ import { open, rename, rm, type FileHandle } from 'node:fs/promises';
 import { dirname } from 'node:path';
 import type { ByteScratch } from '../src/raster/byteStores.js';
 import type { Spool } from '../src/survey/host.js';
-import { makeFolder } from './makeFolder.js';
 import { readAt } from './fileSource.js';
+import { makeFolder } from './makeFolder.js';
 import { UNFINISHED } from './writeFiles.js';
 
 /** Small pieces are joined up to this size: the system takes one large piece faster than many small ones. */

@@ -8,8 +8,8 @@ export const UNFINISHED = '.unfinished';
 
 /**
  * Writes files into a folder so that none is ever half there under its final name: all are written under another name
- * first and renamed when the last one is whole; spooled files are so far already. What fails before that leaves the
- * folder as it was.
+ * first, as spooled files are already, and renamed when the last one is whole. What fails before that leaves the folder
+ * as it was.
  */
 export async function writeFiles(folder: string, files: ReadonlyMap<string, Uint8Array | SpooledFile>): Promise<void> {
   const undo: Array<() => Promise<void>> = [];

@@ -4,6 +4,7 @@ import { MAX_CELLS } from './gridFrame.js';
 import { GRID_DEFAULTS } from './gridOptions.js';
 import { gridLayout } from './gridLayout.js';
 import { gridTiled, TILED_DEFAULTS, type TiledGrid } from './gridTiled.js';
+import type { GridRemarks } from './types.js';
 
 /**
  * What `gridByMethod` is for grids that are too large to be held: the grid in tension, made as its rows are read; null
@@ -24,5 +25,9 @@ export function streamByMethod(samples: WalkedSamples, options: MethodOptions = 
   const tiled = gridTiled(samples, plain);
   if (method === 'tension') return tiled;
   const why = `With more than ${MAX_CELLS / 1e6} million cells the grid is made in tension, tile by tile, whatever the depth of the sources.`;
-  return { ...tiled, remarks: () => ({ ...tiled.remarks(), notes: [...tiled.remarks().notes, why] }) };
+  const remarks = (): GridRemarks => {
+    const { notes, warnings } = tiled.remarks();
+    return { notes: [...notes, why], warnings };
+  };
+  return { ...tiled, remarks };
 }
