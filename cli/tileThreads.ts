@@ -14,45 +14,51 @@ interface Waiting {
   readonly failed: (error: Error) => void;
 }
 
+/** At most `count` threads, each started when a tile finds none that is idle. */
 export function tileThreads(count: number = availableParallelism()): TileThreads {
+  const workers: Worker[] = [];
   const waiting: Waiting[] = [];
   const idle: Worker[] = [];
   const busy = new Map<Worker, Waiting>();
-  const next = (worker: Worker): void => {
-    busy.delete(worker);
-    const one = waiting.shift();
-    if (one) give(worker, one);
-    else idle.push(worker);
-  };
+  /** Why no tile is solved any more. */
+  let end: Error | null = null;
   const give = (worker: Worker, one: Waiting): void => {
     busy.set(worker, one);
     const { x, y, value, rimNode, rimValue } = one.task;
     worker.postMessage(one.task, [x, y, value, rimNode, rimValue].map(({ buffer }) => buffer as ArrayBuffer));
   };
-  const workers = Array.from({ length: count }, () => {
+  const start = (): Worker => {
     const worker = new Worker(new URL('./tileWorker.js', import.meta.url));
     worker.on('message', (solution: TileSolution) => {
       const { done } = busy.get(worker)!;
-      next(worker);
+      busy.delete(worker);
+      const next = waiting.shift();
+      if (next) give(worker, next);
+      else idle.push(worker);
       done(solution);
     });
-    // A worker that fails is lost: what it had, and all that waits, fails with it.
+    // A worker that fails is lost: what it had fails with it, and all that waits or is still to come.
     worker.on('error', (error: Error) => {
-      const lost = busy.get(worker);
+      end ??= error;
+      busy.get(worker)?.failed(end);
       busy.delete(worker);
-      for (const { failed } of [...(lost ? [lost] : []), ...waiting.splice(0)]) failed(error);
+      for (const { failed } of waiting.splice(0)) failed(end);
     });
-    idle.push(worker);
+    workers.push(worker);
     return worker;
-  });
+  };
   return {
     solve: (task) => new Promise((done, failed) => {
-      const worker = idle.pop();
-      if (worker) give(worker, { task, done, failed });
-      else waiting.push({ task, done, failed });
+      if (end) return failed(end);
+      const one = { task, done, failed };
+      const worker = idle.pop() ?? (workers.length < count ? start() : null);
+      if (worker) give(worker, one);
+      else waiting.push(one);
     }),
     async close() {
+      end ??= new Error('The threads are closed');
       await Promise.all(workers.map((worker) => worker.terminate()));
+      for (const { failed } of [...busy.values(), ...waiting]) failed(end);
     },
   };
 }

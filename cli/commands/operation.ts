@@ -11,7 +11,7 @@ import { readStage, stagePath } from '../../src/survey/readStage.js';
 import { surveyFrom, type Survey } from '../../src/survey/readSurvey.js';
 import { runSurvey } from '../../src/survey/runSurvey.js';
 import { flagsOf, valuesOf } from '../flags.js';
-import { nodeHost } from '../nodeHost.js';
+import { withNodeHost } from '../nodeHost.js';
 import { withStandardGrids } from '../standardGrids.js';
 import type { Terminal } from '../terminal.js';
 import { writeFiles } from '../writeFiles.js';
@@ -37,21 +37,24 @@ export function operationCommand(operation: Operation, operations: readonly Oper
   return command.addOption(FORMATS).addOption(JSON_FLAG).addOption(QUIET)
     .addHelpText('after', `\nExample:\n  ${operation.example}${operation.sources.length > 0 ? `\n\nMethods:\n${operation.sources.map((source) => `  ${source}`).join('\n')}` : ''}`)
     .action(async (flags: OutputFlags & Record<string, unknown>) => {
+      const formats = formatsOf(flags.formats);
       const progress = progressOn(terminal, flags.quiet);
-      const { host, inputs } = tracing(nodeHost(progress.show));
       const out = resolve(terminal.cwd, flags.out);
-      const survey = await withStandardGrids(await surveyOf(operation, operations, { flags, host, terminal }), terminal);
-      const given = (site: Site): Promise<Map<string, unknown>> => readInputs(operation, { site, host, out, flags, terminal });
-      const result = await runSurvey(survey, { operations: [operation], host, given, strict: true });
-      const files = await deliverRun(result, { host, inputs: inputs(), formats: formatsOf(flags.formats), manifest: false, relative: seenFrom(dirname(survey.where)) });
-      await writeFiles(out, files);
-      progress.clear();
-      for (const warning of result.warnings) terminal.err(`warning: ${warning}\n`);
-      if (flags.quiet) return;
-      const names = [...files.keys()].toSorted();
-      terminal.out(flags.json
-        ? `${JSON.stringify({ operation: operation.id, out: shown(out, terminal), warnings: result.warnings, files: names }, null, 2)}\n`
-        : `${operation.id}: wrote ${names.join(', ')} in ${shown(out, terminal)}.\n`);
+      await withNodeHost(out, progress.show, async (node) => {
+        const { host, inputs } = tracing(node);
+        const survey = await withStandardGrids(await surveyOf(operation, operations, { flags, host, terminal }), terminal);
+        const given = (site: Site): Promise<Map<string, unknown>> => readInputs(operation, { site, host, out, flags, terminal });
+        const result = await runSurvey(survey, { operations: [operation], host, given, strict: true });
+        const { files, warnings } = await deliverRun(result, { host, inputs: inputs(), formats, manifest: false, relative: seenFrom(dirname(survey.where)) });
+        await writeFiles(out, files);
+        progress.clear();
+        for (const warning of warnings) terminal.err(`warning: ${warning}\n`);
+        if (flags.quiet) return;
+        const names = [...files.keys()].toSorted();
+        terminal.out(flags.json
+          ? `${JSON.stringify({ operation: operation.id, out: shown(out, terminal), warnings, files: names }, null, 2)}\n`
+          : `${operation.id}: wrote ${names.join(', ')} in ${shown(out, terminal)}.\n`);
+      });
     });
 }
 

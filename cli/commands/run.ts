@@ -6,7 +6,7 @@ import { tracing } from '../../src/survey/host.js';
 import { readSurvey } from '../../src/survey/readSurvey.js';
 import { runSurvey } from '../../src/survey/runSurvey.js';
 import { summarise } from '../../src/survey/summarise.js';
-import { nodeHost } from '../nodeHost.js';
+import { withNodeHost } from '../nodeHost.js';
 import { withStandardGrids } from '../standardGrids.js';
 import type { Terminal } from '../terminal.js';
 import { writeFiles } from '../writeFiles.js';
@@ -22,22 +22,24 @@ export function runCommand(operations: readonly Operation[], terminal: Terminal)
     .action(async (file: string, flags: OutputFlags) => {
       const formats = formatsOf(flags.formats);
       const progress = progressOn(terminal, flags.quiet);
-      const { host, inputs } = tracing(nodeHost(progress.show));
-      const path = resolve(terminal.cwd, file);
-      const folder = dirname(path);
-      const text = new TextDecoder().decode(await host.files.read(path));
-      const survey = await withStandardGrids(readSurvey(text, path, { operations, resolve: (name) => host.resolve(name, folder) }), terminal);
-      const result = await runSurvey(survey, { operations, host });
       const out = resolve(terminal.cwd, flags.out);
-      const files = await deliverRun(result, { host, inputs: inputs(), formats, manifest: true, relative: seenFrom(folder) });
-      progress.show('writing');
-      await writeFiles(out, files);
-      progress.clear();
-      for (const warning of result.warnings) terminal.err(`warning: ${warning}\n`);
-      if (flags.quiet) return;
-      const summary = summarise(result);
-      terminal.out(flags.json
-        ? `${JSON.stringify({ out: shown(out, terminal), ...summary, files: [...files.keys()].toSorted() }, null, 2)}\n`
-        : `${summary.sentences.join('\n')}\n\nFiles in ${shown(out, terminal)}: report.html first, item.json lists the rest (${files.size} files).\n`);
+      await withNodeHost(out, progress.show, async (node) => {
+        const { host, inputs } = tracing(node);
+        const path = resolve(terminal.cwd, file);
+        const folder = dirname(path);
+        const text = new TextDecoder().decode(await host.files.read(path));
+        const survey = await withStandardGrids(readSurvey(text, path, { operations, resolve: (name) => host.resolve(name, folder) }), terminal);
+        const result = await runSurvey(survey, { operations, host });
+        const { files, warnings } = await deliverRun(result, { host, inputs: inputs(), formats, manifest: true, relative: seenFrom(folder) });
+        progress.show('writing');
+        await writeFiles(out, files);
+        progress.clear();
+        for (const warning of warnings) terminal.err(`warning: ${warning}\n`);
+        if (flags.quiet) return;
+        const summary = summarise({ ...result, warnings });
+        terminal.out(flags.json
+          ? `${JSON.stringify({ out: shown(out, terminal), ...summary, files: [...files.keys()].toSorted() }, null, 2)}\n`
+          : `${summary.sentences.join('\n')}\n\nFiles in ${shown(out, terminal)}: report.html first, item.json lists the rest (${files.size} files).\n`);
+      });
     });
 }

@@ -1,7 +1,8 @@
 import { UserError } from '../errors.js';
 import { median } from '../numerics/robust.js';
 import type { Grid } from '../raster/types.js';
-import { gridReadings, type GridOptions } from './gridReadings.js';
+import { gridReadings } from './gridReadings.js';
+import type { TiledOptions } from './gridTiled.js';
 import { gridBySources } from './sources/gridBySources.js';
 import { layerDepthM } from './sources/layerDepth.js';
 import { lineNoise } from './sources/lineNoise.js';
@@ -16,7 +17,7 @@ export interface WalkedSamples extends HighSamples {
   readonly line?: ArrayLike<number>;
 }
 
-export interface MethodOptions extends GridOptions {
+export interface MethodOptions extends TiledOptions {
   readonly method?: GridMethod;
   /** Whether the standard error of each cell is wanted. */
   readonly error?: boolean;
@@ -48,12 +49,10 @@ const LEVEL_SHARE = 0.01;
  * depth of the likeliest layer of sources and the sensor kept its height, else sources. Frame, reach and cells are the
  * same for all. The error is that of the grid it comes with: with tension, its distance from the sources' field is added.
  */
-export function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}): MethodResult {
+export async function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}): Promise<MethodResult> {
   const { method, error, noiseNt: stated, ...plain } = { ...METHOD_DEFAULTS, ...options };
-  if (!GRID_METHODS.includes(method)) {
-    throw new UserError({ code: 'value_invalid', where: 'grid, method', found: JSON.stringify(method), wanted: `one of ${GRID_METHODS.join(', ')}` });
-  }
-  const grid = gridReadings(samples, plain);
+  checkMethod(method);
+  const grid = await gridReadings(samples, plain);
   if (method === 'tension' && !error) return { grid, error: null, method };
   const { width, height, west, north, cellM, spacingM } = grid;
   const noiseNT = stated >= 0 ? stated : lineNoise(samples.value, samples.line) || 0;
@@ -78,6 +77,11 @@ export function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}
   );
   // The plate only lent its frame: how far it had converged is no matter here.
   return { grid: { ...grid, values: sources.values, iterations: 0, remaining: 0, remainingShare: 0, converged: true, notes, warnings: grid.converged ? grid.warnings : grid.warnings.slice(0, -1) }, error: errorGrid, method: used };
+}
+
+export function checkMethod(method: GridMethod): void {
+  if (GRID_METHODS.includes(method)) return;
+  throw new UserError({ code: 'value_invalid', where: 'grid, method', found: JSON.stringify(method), wanted: `one of ${GRID_METHODS.join(', ')}` });
 }
 
 /** Heights above their median; readings without one lie on it. */

@@ -5,12 +5,14 @@ import { cellMeans } from './cellMeans.js';
 import { coarseSurface, surfaceAt, type CoarseSurface } from './coarseSurface.js';
 import { anyGap, gapsOf, type Gaps } from './gaps.js';
 import { gridLayout, type GridLayout } from './gridLayout.js';
+import { GRID_DEFAULTS, type GridOptions } from './gridOptions.js';
 import { GRID_DEFAULTS, TENSION_ON_LINE, type GridOptions } from './gridReadings.js';
+import { gridRemarks } from './gridRemarks.js';
 import { rimNodes } from './pins.js';
 import { robustRange } from './robustRange.js';
 import { solveTile, type TileSolution, type TileTask } from './solveTile.js';
 import { fitTrend } from './trend.js';
-import type { GridFrame, Samples } from './types.js';
+import type { GridFrame, GridRemarks, GridResult, Samples } from './types.js';
 
 export interface TiledOptions extends GridOptions {
   /** Cells across a tile that are kept, a multiple of 512 for whole tiles of a COG; more where the overlap asks for it. */
@@ -19,9 +21,16 @@ export interface TiledOptions extends GridOptions {
   readonly overlapSpacings?: number;
   /** The same for a tile with ground beyond the reach in or around it. */
   readonly gapOverlapSpacings?: number;
-  /** Solves a tile, here or on another thread. */
-  readonly solve?: (task: TileTask) => TileSolution | Promise<TileSolution>;
+  /** Solves a tile of several, here or on another thread. A grid of one tile is solved here. */
+  readonly solve?: SolveTile;
+  /** A larger grid is refused. */
+  readonly maxCells?: number;
 }
+
+export type SolveTile = (task: TileTask) => TileSolution | Promise<TileSolution>;
+
+/** Room for any survey; beyond it the cell size is a mistake. */
+const MAX_TILED_CELLS = 4e9;
 
 export const TILED_DEFAULTS = Object.freeze({
   ...GRID_DEFAULTS,
@@ -30,11 +39,12 @@ export const TILED_DEFAULTS = Object.freeze({
   overlapSpacings: 10,
   /** Across a gap nothing dies out by itself (measured: a hole 15 spacings wide on a seam leaves 5e-6 of the range at 10, 5e-7 at 20). */
   gapOverlapSpacings: 24,
-  solve: solveTile,
+  solve: solveTile as SolveTile,
+  maxCells: MAX_TILED_CELLS,
 });
 
-/** Room for any survey; beyond it the cell size is a mistake. */
-export const MAX_TILED_CELLS = 4e9;
+/** Readings on one line leave a plate free to tilt about it; a membrane is not. */
+const TENSION_ON_LINE = 0.25;
 const BUCKET_CELLS = 128;
 /** Cells of the surface that the tiles' rims rest on: so many to one, and never more than this many in all. */
 const COARSE_STEP = 8;
@@ -45,15 +55,7 @@ const COARSE_ACROSS = 64;
 const SPARE_CELLS = 4;
 
 /** What was done, complete once all rows have been read. */
-export interface TiledSummary {
-  readonly filled: number;
-  /** Most cycles that a tile took. */
-  readonly iterations: number;
-  /** Largest over all tiles, in the data's unit and as a share of the data's range. */
-  readonly remaining: number;
-  readonly remainingShare: number;
-  readonly converged: boolean;
-}
+export type TiledSummary = Pick<GridResult, 'filled' | 'pinned' | 'iterations' | 'remaining' | 'remainingShare' | 'converged'>;
 
 /** A grid that is made as its rows are read; feed it to `writeCog`. */
 export interface TiledGrid extends RowSource, Pick<GridLayout, 'spacingM' | 'reachM'> {
@@ -64,18 +66,23 @@ export interface TiledGrid extends RowSource, Pick<GridLayout, 'spacingM' | 'rea
   readonly overlapCells: number;
   readRows(first: number, count: number): Promise<Float32Array>;
   summary(): TiledSummary;
+  /** The same in words, and what is to be said of the cells, which is known before. */
+  remarks(): GridRemarks;
 }
 
 /**
- * The same surface as `gridReadings`, tile by tile, so that neither the grid nor its solver has to be in memory as a whole.
+ * The surface of `gridReadings`, tile by tile, so that neither the grid nor its solver has to be in memory as a whole.
  * Each tile is solved with an overlap; its rim rests on a surface of wide cells through all readings, which carries what
  * ground without readings passes on from far away. What is wrong at the rim falls to about a quarter from line to line.
  * Tiles do not depend on the order in which they are solved, so threads change nothing. Rows are kept a row of tiles at a
  * time; the next one is begun before it is asked for.
  */
 export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGrid {
-  const { tension: wanted, tolerance, maxSteps, bounds, tileCells: least, overlapSpacings, gapOverlapSpacings, solve, ...sizes } = { ...TILED_DEFAULTS, ...options };
-  const layout = gridLayout(samples, { ...sizes, bounds, maxCells: MAX_TILED_CELLS });
+  const { tension: wanted, tolerance, maxSteps, bounds, tileCells: least, overlapSpacings, gapOverlapSpacings, solve, maxCells, ...sizes } = { ...TILED_DEFAULTS, ...options };
+  if (!(wanted >= 0 && wanted <= 1)) {
+    throw new UserError({ code: 'value_invalid', where: 'grid, tension', found: String(wanted), wanted: 'a number from 0 to 1' });
+  }
+  const layout = gridLayout(samples, { ...sizes, bounds, maxCells });
   const { frame, solved, spacingM, reachM, cellM } = layout;
   const coarseFrame = coarseOf(solved);
   const means = cellMeans(samples, coarseFrame);
@@ -96,19 +103,21 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
     buckets: bucketSamples(samples, widened(solved, BUCKET_CELLS)),
     common: { trend, tension, spacingM, reachM, tolerance: tolerance * Math.max(range, Math.abs(trend.level) * 1e-12, 1e-300), maxSteps },
   };
-  const totals = { filled: 0, iterations: 0, remaining: 0, converged: true };
+  const totals = { filled: 0, pinned: 0, iterations: 0, remaining: 0, converged: true };
   const rowsOfTiles = new Map<number, Promise<Float32Array>>();
   const perRow = single ? frame.height : tileCells;
   const rowOfTiles = (r: number): Promise<Float32Array> => {
-    const begun = rowsOfTiles.get(r) ?? solveRow(tiler, r, { solve, totals });
+    const begun = rowsOfTiles.get(r) ?? solveRow(tiler, r, { solve: single ? solveTile : solve, totals });
     // A failure is thrown where the row is asked for; until then it is nobody's unhandled rejection.
     begun.catch(() => {});
     rowsOfTiles.set(r, begun);
     return begun;
   };
+  const summary = (): TiledSummary => ({ ...totals, remainingShare: range > 0 ? totals.remaining / range : 0 });
 
   return {
-    ...frame, spacingM, reachM, tension, range, tileCells, overlapCells,
+    ...frame, spacingM, reachM, tension, range, tileCells, overlapCells, summary,
+    remarks: () => gridRemarks({ ...frame, spacingM, reachM, tension, ...summary() }, tolerance),
     async readRows(first, count) {
       const rows = new Float32Array(count * frame.width);
       for (let j = first; j < first + count;) {
@@ -124,7 +133,6 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
       }
       return rows;
     },
-    summary: () => ({ ...totals, remainingShare: range > 0 ? totals.remaining / range : 0 }),
   };
 }
 
@@ -141,7 +149,7 @@ interface Tiler {
 }
 
 async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
-  solve: NonNullable<TiledOptions['solve']>; totals: { filled: number; iterations: number; remaining: number; converged: boolean };
+  solve: SolveTile; totals: { filled: number; pinned: number; iterations: number; remaining: number; converged: boolean };
 }): Promise<Float32Array> {
   const { layout: { frame }, tileCells } = tiler;
   const side = Math.min(tileCells, Math.max(frame.width, frame.height));
@@ -156,6 +164,7 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
     const solution = await solve(task);
     for (let j = 0; j < height; j++) values.set(solution.values.subarray(j * width, (j + 1) * width), j * frame.width + left);
     totals.filled += solution.filled;
+    totals.pinned += solution.pinned;
     totals.iterations = Math.max(totals.iterations, solution.iterations);
     totals.remaining = Math.max(totals.remaining, solution.remaining);
     totals.converged &&= solution.converged;
@@ -204,5 +213,3 @@ function coarseOf(solved: GridFrame): GridFrame {
 function widened({ width, height, west, north, cellM }: GridFrame, step: number): GridFrame {
   return { width: Math.ceil(width / step), height: Math.ceil(height / step), west, north, cellM: cellM * step };
 }
-
-

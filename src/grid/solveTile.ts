@@ -31,6 +31,8 @@ export interface TileSolution {
   /** Of the cells that are kept, row-major; NaN beyond the reach. */
   readonly values: Float32Array;
   readonly filled: number;
+  /** Filled cells that hold readings. */
+  readonly pinned: number;
   readonly iterations: number;
   readonly remaining: number;
   readonly converged: boolean;
@@ -49,7 +51,7 @@ export function solveTile(task: TileTask): TileSolution {
   const mask = reachMask(index, frame, reachM);
   const inside = keepOwn(mask, task);
   const values = new Float32Array(own.width * own.height).fill(NaN);
-  if (inside === 0) return { values, filled: 0, iterations: 0, remaining: 0, converged: true };
+  if (inside === 0) return { values, filled: 0, pinned: 0, iterations: 0, remaining: 0, converged: true };
   const { z, ...solved } = solvePlate(
     { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins: joinPins(data, nodePins(task.rimNode, task.rimValue)), watch: mask },
     task,
@@ -61,7 +63,8 @@ export function solveTile(task: TileTask): TileSolution {
       if (mask[from + i] !== 0) values[to] = z[from + i]! + trendAt(trend, west + (own.left + i + 0.5) * cellM, y);
     }
   }
-  return { ...solved, values, filled: inside };
+  const pinned = data.node.reduce((count, node) => count + mask[node]!, 0);
+  return { ...solved, values, filled: inside, pinned };
 }
 
 /** Takes the overlap out of the mask, in place; returns how many cells are left. */

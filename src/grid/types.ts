@@ -8,8 +8,16 @@ export interface Samples {
   readonly value: ArrayLike<number>;
 }
 
+/** What there is to say of a grid, in words. */
+export interface GridRemarks {
+  /** For the report: what was done, with numbers. */
+  readonly notes: readonly string[];
+  /** What the user has to know. */
+  readonly warnings: readonly string[];
+}
+
 /** A grid of values with what it rests on. It is a Grid, so it goes wherever one goes. */
-export interface GridResult extends Grid {
+export interface GridResult extends Grid, GridRemarks {
   /** Distance beyond which no cell is filled, metres, from the cell's centre to the nearest reading. */
   readonly reachM: number;
   /** Line spacing (or mean distance of readings) that cell, reach and tension were judged by, metres. */
@@ -17,18 +25,14 @@ export interface GridResult extends Grid {
   readonly tension: number;
   /** Cells with a value. */
   readonly filled: number;
-  /** Cells that hold readings. */
+  /** Cells with a value that hold readings. */
   readonly pinned: number;
-  /** Steps of the solver on the finest grid. */
+  /** Steps of the solver on the finest grid; the most that a tile took. */
   readonly iterations: number;
   /** Estimate of the largest error left by the solver, in the data's unit and as a share of the data's range. */
   readonly remaining: number;
   readonly remainingShare: number;
   readonly converged: boolean;
-  /** For the report: what was done, with numbers. */
-  readonly notes: readonly string[];
-  /** What the user has to know. */
-  readonly warnings: readonly string[];
 }
 
 /** Cells of a grid before it has values. */

@@ -1,6 +1,7 @@
 import { estimateLineSpacing } from '../grid/estimateLineSpacing.js';
 import { GRID_METHODS, gridByMethod, METHOD_DEFAULTS, type MethodOptions } from '../grid/gridByMethod.js';
-import { GRID_DEFAULTS } from '../grid/gridReadings.js';
+import { GRID_DEFAULTS } from '../grid/gridOptions.js';
+import { streamByMethod } from '../grid/streamByMethod.js';
 import type { Readings } from '../readings/types.js';
 import { camelKeys } from './camelKeys.js';
 import { objectSchema, quantitySchema } from './schema.js';
@@ -40,12 +41,20 @@ export const grid: Operation = {
     'Felzenszwalb & Huttenlocher (2012), Distance transforms of sampled functions, Theory of Computing 8, 415-428',
   ],
   example: 'ironplat grid --survey survey.json --cell-m 1 --out delivery',
-  async run({ parameters, inputs, progress, warn }) {
-    const options = camelKeys<MethodOptions>(parameters);
+  async run({ parameters, inputs, solveTile, progress, warn }) {
+    const given = camelKeys<MethodOptions>(parameters);
     const { x, y, heightM, line, flag, residual } = inputs.readings as Readings;
     const value = residual.map((nT, n) => (flag[n] === 0 ? nT : NaN));
-    const spacingM = options.spacingM ?? estimateLineSpacing({ x, y, line, flag });
-    const { grid: result, error } = gridByMethod({ x, y, up: heightM, line, value }, { ...options, spacingM });
+    const samples = { x, y, up: heightM, line, value };
+    const spacingM = given.spacingM ?? estimateLineSpacing({ x, y, line, flag });
+    const options = { ...given, spacingM, ...(solveTile ? { solve: solveTile } : {}) };
+    const streamed = streamByMethod(samples, options);
+    if (streamed) {
+      // What is known of the cells stands in the report; the rest is told once the grid is written.
+      for (const warning of streamed.remarks().warnings) warn(warning);
+      return { residual: streamed };
+    }
+    const { grid: result, error } = await gridByMethod(samples, options);
     for (const note of result.notes) progress(note);
     for (const warning of result.warnings) warn(warning);
     return error ? { residual: result, residual_error: error } : { residual: result };

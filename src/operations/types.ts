@@ -1,4 +1,7 @@
 import type { FileSource } from '../files.js';
+import type { SolveTile } from '../grid/gridTiled.js';
+import type { GridRemarks } from '../grid/types.js';
+import type { Grid, RowSource } from '../raster/types.js';
 import type { QuantityUnit } from '../units.js';
 import type { Site } from '../site/types.js';
 
@@ -37,12 +40,25 @@ export interface ObjectSchema extends Schema {
 /** A thing that one operation hands to the next, by its role: `records`, `plan`, `readings`, `residual`, … */
 export interface Slot {
   readonly title: string;
-  /** Type of the value: a stage's record type, a Grid, a Layer, an HTML text, or any JSON value. */
+  /**
+   * Type of the value: a stage's record type, a Grid, a Layer, an HTML text, or any JSON value. An output of form `grid`
+   * may also be made as it is read (GridOutput), so that it can be larger than memory: it is written, and no later
+   * operation can have it as an input.
+   */
   readonly form: 'records' | 'plan' | 'readings' | 'grid' | 'layer' | 'anomalies' | 'findings' | 'html' | 'json';
   /** An input that the operation can do without; an output that it makes only when asked. */
   readonly optional?: boolean;
   /** Unit of a grid's values, for the raster's metadata. */
   readonly unit?: string;
+}
+
+/** What an operation may return for an output of form `grid`; its own unit, where it has one, is taken before the slot's. */
+export type GridOutput = (Grid | StreamedGrid) & { readonly unit?: string };
+
+/** A grid that is made as its rows are read, which happens once. */
+export interface StreamedGrid extends RowSource {
+  /** Asked for once all rows were read: notes for the terminal, warnings for the user. */
+  remarks?(): GridRemarks;
 }
 
 export interface Task {
@@ -54,6 +70,8 @@ export interface Task {
   readonly files: FileSource;
   /** Anything random starts from here. */
   readonly seed: number;
+  /** Solves a tile of a large grid on a thread of its own, where the surroundings have threads. Results do not depend on it. */
+  readonly solveTile?: SolveTile;
   /** What the run warned of, and which operations it ran, before this one; absent where an operation stands alone. */
   readonly before?: {
     readonly warnings: readonly string[];

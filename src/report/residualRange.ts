@@ -14,12 +14,12 @@ const ROOM = 0.068;
 
 /**
  * Colours for a residual: the same for both signs, even through the noise and by logarithm above it, up to a round
- * number near the highest. Null where the grid has no values.
+ * number near the highest. From all cells of a grid or from a sample of them. Null where none has a value.
  */
-export function residualRange(grid: Grid, noise?: NoiseModel): ColourRange | null {
-  const high = quantile(Float64Array.from(grid.values, Math.abs), 1 - CUT);
+export function residualRange({ values }: Pick<Grid, 'values'>, noise?: NoiseModel): ColourRange | null {
+  const high = quantile(Float64Array.from(values, Math.abs), 1 - CUT);
   if (!Number.isFinite(high)) return null;
-  const spread = noise ? Math.hypot(noise.whiteSdNT, noise.correlatedSdNT) : madSd(grid.values);
+  const spread = noise ? Math.hypot(noise.whiteSdNT, noise.correlatedSdNT) : madSd(values);
   const knee = Math.max(LEAST_KNEE_NT, spread);
   const end = roundUp(Math.max(high, 3 * knee));
   return { low: -end, high: end, knee };

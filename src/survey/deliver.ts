@@ -1,6 +1,5 @@
 import { UserError } from '../errors.js';
-import type { Operation, Slot } from '../operations/types.js';
-import type { Grid } from '../raster/types.js';
+import type { GridOutput, Operation, Slot } from '../operations/types.js';
 import type { Anomalies } from '../anomalies/types.js';
 import type { Findings } from '../findings/types.js';
 import type { SurveyPlan } from '../plan/types.js';
@@ -9,7 +8,7 @@ import type { Records } from '../records/types.js';
 import type { Site } from '../site/types.js';
 import type { Layer } from '../vector/types.js';
 import { gridFiles } from './gridFiles.js';
-import type { Host } from './host.js';
+import type { Host, SpooledFile } from './host.js';
 import { anomalyLayers } from './layers/anomalyLayers.js';
 import { findingLayers } from './layers/findingLayers.js';
 import { planLayers } from './layers/planLayers.js';
@@ -23,7 +22,7 @@ import { encodeValue } from './valueJson.js';
 
 /** A file as it leaves a run, with what the manifest says of it. */
 export interface Delivered extends Omit<AssetTrace, 'bytes' | 'sha256'> {
-  readonly content: Uint8Array;
+  readonly content: Uint8Array | SpooledFile;
 }
 
 /** Values that the next stage starts from, exactly as they were; not layers to look at. */
@@ -44,7 +43,7 @@ export async function deliverRole(role: string, value: unknown, options: {
     case 'findings': return [...await layers(findingLayers(value as Findings, site)), stageFile(role, slot, value)];
     case 'layer': return layers([value as Layer]);
     case 'readings': return readingsFiles(role, value as Readings, { slot, site });
-    case 'grid': return gridFiles(role, value as Grid, { slot, site, host });
+    case 'grid': return gridFiles(role, value as GridOutput, { slot, site, host });
     case 'html': return [{ key: role, path: `${role}.html`, title: slot.title, mediaType: 'text/html', roles: [role], content: TEXT.encode(value as string) }];
     case 'json': return [{ key: role, path: `${role}.json`, title: slot.title, mediaType: 'application/json', roles: [role], content: TEXT.encode(encodeValue(value)) }];
     default: throw new UserError({ code: 'operation_invalid', where: `operation "${options.operation.id}", ${role}`, found: `the form ${JSON.stringify(slot.form)}`, wanted: 'a form that Ironplat can write' });

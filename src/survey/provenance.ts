@@ -1,12 +1,10 @@
 import { VERSION } from '../version.js';
-import type { InputTrace } from './host.js';
+import type { FileDigest, InputTrace } from './host.js';
 import type { RunResult } from './runSurvey.js';
 
 /** A delivered file with its hash, so that a folder can be checked against what was delivered. */
-export interface OutputTrace {
+export interface OutputTrace extends FileDigest {
   readonly path: string;
-  readonly bytes: number;
-  readonly sha256: string;
 }
 
 export interface Provenance {

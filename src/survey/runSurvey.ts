@@ -1,6 +1,8 @@
 import { UserError } from '../errors.js';
+import { MAX_CELLS } from '../grid/gridFrame.js';
 import { readParameters } from '../operations/readParameters.js';
-import type { Operation } from '../operations/types.js';
+import type { GridOutput, Operation } from '../operations/types.js';
+import { inMemory } from '../raster/inMemory.js';
 import { makeSite, type SiteSettings } from '../site/makeSite.js';
 import { camelKeys } from '../operations/camelKeys.js';
 import type { Site } from '../site/types.js';
@@ -55,9 +57,9 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
     }
     host.progress(operation.id);
     const parameters = readParameters(survey.sections[operation.id], operation.parameters, { where: `${survey.where}, ${operation.id}`, resolve: survey.resolve });
-    const inputs = Object.fromEntries(Object.keys(operation.inputs).filter((role) => values.has(role)).map((role) => [role, values.get(role)]));
+    const inputs = inputsOf(operation, values, warn);
     const outputs = await operation.run({
-      site, parameters, inputs, files: host.files, seed: survey.seed,
+      site, parameters, inputs, files: host.files, seed: survey.seed, solveTile: host.solveTile,
       before: { warnings: [...warnings], operations: steps.map((step) => step.operation) },
       progress: (message) => host.progress(`${operation.id}: ${message}`),
       warn: (message) => warn(`${operation.id}: ${message}`),
@@ -70,6 +72,32 @@ export async function runSurvey(survey: Survey, { operations, host, given, stric
     steps.push({ operation, parameters });
   }
   return { survey, site, values, steps, warnings, skipped };
+}
+
+/**
+ * What an operation starts from. A grid that is made as its rows are read is not for a second reader: an operation that
+ * needs it stops the run, one that can do without goes without.
+ */
+function inputsOf(operation: Operation, values: ReadonlyMap<string, unknown>, warn: (message: string) => void): Record<string, unknown> {
+  const inputs: Record<string, unknown> = {};
+  for (const [role, slot] of Object.entries(operation.inputs)) {
+    if (!values.has(role)) continue;
+    const value = values.get(role);
+    if (slot.form !== 'grid' || inMemory(value as GridOutput)) {
+      inputs[role] = value;
+      continue;
+    }
+    const { width, height } = value as GridOutput;
+    const cells = `a grid of ${width} × ${height} cells`;
+    if (!slot.optional) {
+      throw new UserError({
+        code: 'value_invalid', where: `ironplat ${operation.id}, ${role}`, found: cells, wanted: `one that fits into memory, at most ${MAX_CELLS / 1e6} million cells`,
+        advice: `state a larger cell_m for it, look for readings with a wrong position, or leave the operation out with "${operation.id}": false`,
+      });
+    }
+    warn(`${operation.id}: goes without "${role}" (${slot.title}), ${cells} that does not fit into memory; a larger cell_m would bring it in.`);
+  }
+  return inputs;
 }
 
 function whyNot(operation: Operation, survey: Survey, values: ReadonlyMap<string, unknown>): { reason: string; chosen: boolean } | null {

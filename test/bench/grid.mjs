@@ -154,7 +154,7 @@ async function seams(cells, lines) {
     if (Math.hypot(samples.x[n] - 1024, samples.y[n] - (cells - 1024)) < pond || Math.hypot(samples.x[n] - 1024, samples.y[n] - middle) < pond) samples.value[n] = NaN;
   }
   const options = { cellM: 1, spacingM: cells / lines, bounds: { west: 0, south: 0, east: cells, north: cells }, tolerance: 1e-7 };
-  const whole = gridReadings(samples, options).values;
+  const { values: whole } = await gridReadings(samples, { ...options, tileCells: cells });
   const tiled = gridTiled(samples, options);
   let largest = 0;
   for (let first = 0; first < cells; first += 512) {

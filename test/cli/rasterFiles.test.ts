@@ -1,12 +1,12 @@
 import { execFileSync } from 'node:child_process';
 import { mkdtempSync, openSync, readFileSync, readSync, readdirSync, rmSync, statSync } from 'node:fs';
-import { open } from 'node:fs/promises';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { unzlibSync } from 'fflate';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
 import { deflate } from '../../cli/deflate.js';
-import { fileSource, writeCogFile } from '../../cli/rasterFiles.js';
+import { fileSource } from '../../cli/fileSource.js';
+import { writeCogFile } from '../../cli/rasterFiles.js';
 import { crs } from '../../src/geodesy/crs.js';
 import { Random } from '../../src/numerics/random.js';
 import { checkCog } from '../../src/raster/checkCog.js';
@@ -95,22 +95,17 @@ describe('writeCogFile', () => {
       const said = execFileSync('/usr/bin/python3', ['-m', 'osgeo_utils.samples.validate_cloud_optimized_geotiff', '--full-check=yes', path], { encoding: 'utf8' });
       expect(said).toContain('is a valid cloud optimized GeoTIFF');
     }
-    const file = await open(path);
-    try {
-      const tiff = await openGeoTiff(await fileSource(file));
-      for (const [column, row] of [[0, 0], [side - 40, side - 30], [side / 2 - 20, side / 2 - 15]] as const) {
-        const { values } = await tiff.readWindow({ column, row, width: 40, height: 30 });
-        const wrong = [...values].findIndex((value, i) => value !== cell(column + (i % 40), row + Math.floor(i / 40)));
-        expect(wrong).toBe(-1);
-      }
-      // Sides are even: each cell of the first overview is a mean of four.
-      const { values } = await tiff.readWindow({ column: side / 4, row: side / 4, width: 40, height: 30 }, 1);
-      for (const [i, value] of values.entries()) {
-        const [x, y] = [2 * (side / 4 + (i % 40)), 2 * (side / 4 + Math.floor(i / 40))];
-        expect(value).toBeCloseTo((cell(x, y) + cell(x + 1, y) + cell(x, y + 1) + cell(x + 1, y + 1)) / 4, 4);
-      }
-    } finally {
-      await file.close();
+    const tiff = await openGeoTiff(await fileSource(path));
+    for (const [column, row] of [[0, 0], [side - 40, side - 30], [side / 2 - 20, side / 2 - 15]] as const) {
+      const { values } = await tiff.readWindow({ column, row, width: 40, height: 30 });
+      const wrong = [...values].findIndex((value, i) => value !== cell(column + (i % 40), row + Math.floor(i / 40)));
+      expect(wrong).toBe(-1);
+    }
+    // Sides are even: each cell of the first overview is a mean of four.
+    const { values } = await tiff.readWindow({ column: side / 4, row: side / 4, width: 40, height: 30 }, 1);
+    for (const [i, value] of values.entries()) {
+      const [x, y] = [2 * (side / 4 + (i % 40)), 2 * (side / 4 + Math.floor(i / 40))];
+      expect(value).toBeCloseTo((cell(x, y) + cell(x + 1, y) + cell(x, y + 1) + cell(x + 1, y + 1)) / 4, 4);
     }
   }, 60_000 + LARGE * 60);
 });

@@ -21,9 +21,9 @@ interface Case {
   readonly cells: ReadonlyArray<{ readonly k: number; readonly x: number; readonly y: number; readonly field: number }>;
 }
 
-function makeCase(ratio: number, seed: number): Case {
+async function makeCase(ratio: number, seed: number): Promise<Case> {
   const survey = madeSurvey({ seed, spacingM: SPACING_M, depthM: SPACING_M / ratio, noiseNT: NOISE_NT, azimuthDeg: (37 * seed) % 180 });
-  const result = gridByMethod(survey, { method: 'auto', error: true, cellM: CELL_M, spacingM: SPACING_M });
+  const result = await gridByMethod(survey, { method: 'auto', error: true, cellM: CELL_M, spacingM: SPACING_M });
   const { width, west, north, values } = result.grid;
   const cells: Array<Case['cells'][number]> = [];
   values.forEach((value, k) => {
@@ -36,7 +36,7 @@ function makeCase(ratio: number, seed: number): Case {
 }
 
 const ALL = [...CLOSE, ...WIDE];
-const CASES = ALL.flatMap((ratio, r) => Array.from({ length: SURVEYS_EACH }, (_, n) => makeCase(ratio, 1000 + r * SURVEYS_EACH + n)));
+const CASES = await Promise.all(ALL.flatMap((ratio, r) => Array.from({ length: SURVEYS_EACH }, (_, n) => makeCase(ratio, 1000 + r * SURVEYS_EACH + n))));
 
 /** Sums of squared errors over the cells inside the hull of the readings. */
 interface Squares { readonly ours: number; readonly linear: number; readonly cubic: number }

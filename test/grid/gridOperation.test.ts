@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest';
 import { grid } from '../../src/operations/grid.js';
+import { solveTile, type TileTask } from '../../src/grid/solveTile.js';
 import type { GridResult } from '../../src/grid/types.js';
 import type { Grid } from '../../src/raster/types.js';
-import type { Task } from '../../src/operations/types.js';
+import type { StreamedGrid, Task } from '../../src/operations/types.js';
 import type { Readings } from '../../src/readings/types.js';
 
 /** Ten lines 6 m apart, a reading a metre; every tenth reading flagged and wild. */
@@ -61,5 +62,49 @@ describe('the grid operation', () => {
     expect(residual.reachM).toBe(2);
     expect(residual.tension).toBe(0);
     expect(warnings.join()).toMatch(/finer/);
+  });
+});
+
+describe('the grid operation beyond what fits into memory', () => {
+  /** Two short lines 8.1 km apart: 66 million cells of a metre, nearly all of them empty. */
+  const far = { count: 40, x: new Float64Array(40), y: new Float64Array(40), heightM: new Float64Array(40).fill(2), line: new Int32Array(40), flag: new Uint8Array(40), residual: new Float64Array(40) };
+  for (let n = 0; n < 40; n++) {
+    far.line[n] = n < 20 ? 0 : 1;
+    far.x[n] = (n < 20 ? 0 : 8100) + (n % 20);
+    far.y[n] = n < 20 ? 0 : 8100;
+    far.residual[n] = Math.sin(n);
+  }
+  const given = { cell_m: 1, spacing_m: 5, reach_m: 4, tension: 0.25, tolerance: 1e-4, max_steps: 2 };
+  const task = (parameters: object, said: string[] = [], solved: string[] = []): Task => ({
+    parameters: { ...given, ...parameters }, inputs: { readings: far }, warn: (m: string) => said.push(m), progress: (m: string) => said.push(m),
+    solveTile: (tile: TileTask) => (solved.push(`${tile.own.width} × ${tile.own.height}`), solveTile(tile)),
+  }) as unknown as Task;
+
+  it.each([
+    [{ method: 'sources', error: false }, /grid, method: found "sources" for a grid of 8127 × 8108 cells, wanted at most 64 million cells with it; state a larger cell_m, .*take "tension"/],
+    [{ method: 'auto', error: true }, /grid, error: found true for a grid of 8127 × 8108 cells, .*leave it out/],
+    [{ method: 'auto', error: false, cell_m: 0.1 }, /grid: found 81\d+ × 81\d+ cells .* wanted at most 4000 million cells/],
+  ])('refuses %o', async (parameters, says) => {
+    await expect(grid.run(task(parameters))).rejects.toThrow(says);
+  });
+
+  it('makes it in tension as its rows are read, tile by tile, and then says so', async () => {
+    const said: string[] = [], solved: string[] = [];
+    const { residual, residual_error: error } = await grid.run(task({ method: 'auto', error: false, spacing_m: 10 }, said, solved)) as { residual: StreamedGrid; residual_error: undefined };
+    expect(error).toBeUndefined();
+    expect('values' in residual).toBe(false);
+    expect(said).toEqual([expect.stringMatching(/finer/)]);
+    expect(solved).toEqual([]);
+    let filled = 0;
+    for (let first = 0; first < residual.height; first += 1024) {
+      const rows = await residual.readRows(first, Math.min(1024, residual.height - first));
+      for (const value of rows) if (!Number.isNaN(value)) filled++;
+    }
+    expect(solved).toEqual(['959 × 1024', '1024 × 940']);
+    const { notes, warnings } = residual.remarks!();
+    expect(warnings).toEqual([...said, expect.stringMatching(/stopped after 2 steps/)]);
+    expect(notes.join(' ')).toContain(`${filled} cells are filled`);
+    expect(notes.at(-1)).toMatch(/more than 64 million cells .* in tension/);
+    expect(filled).toBeGreaterThan(2 * 20 * 8);
   });
 });

@@ -54,13 +54,14 @@ describe('gridTiled', () => {
   const samples = lines(holes);
 
   it('gives the surface of the whole within 0.01 nT, across lines, poles and holes', async () => {
-    const whole = gridReadings(samples, OPTIONS);
+    const whole = await gridReadings(samples, OPTIONS);
     const tiled = gridTiled(samples, { ...OPTIONS, tileCells: 100 });
     const values = await allRows(tiled, 64);
     expect(tiled.tileCells).toBe(100);
     expect(tiled.range).toBeGreaterThan(200);
     expect(largest(values, whole.values)).toBeLessThan(0.01);
     expect(tiled.summary().filled).toBe(whole.filled);
+    expect(tiled.summary().pinned).toBe(whole.pinned);
     expect(tiled.summary().converged).toBe(true);
     // With hardly any overlap seams are seen: the bound above is no accident.
     const seamed = await allRows(gridTiled(samples, { ...OPTIONS, tileCells: 100, overlapSpacings: 2, gapOverlapSpacings: 2 }), 64);
@@ -90,9 +91,22 @@ describe('gridTiled', () => {
     expect(values[0]).toBeNaN();
   });
 
+  it('solves a grid of one tile here, whatever it is told, and says in words what was done', async () => {
+    let elsewhere = 0;
+    const tiled = gridTiled(samples, { ...OPTIONS, tolerance: 1e-4, solve: (task) => (elsewhere++, solveTile(task)) });
+    const values = await allRows(tiled, SIDE);
+    expect(elsewhere).toBe(0);
+    const { filled, pinned } = tiled.summary();
+    expect(filled).toBe(values.filter((v) => !Number.isNaN(v)).length);
+    expect(pinned).toBeGreaterThan(SIDE * SIDE / SPACING / 2);
+    expect(tiled.remarks().notes.join(' ')).toContain(`${filled} cells are filled, all within 3 m of a reading; ${pinned} of them hold readings.`);
+  });
+
   it('hands on what goes wrong in a tile, and complains where there is no reading', async () => {
     const broken = gridTiled(samples, { ...OPTIONS, tileCells: 100, solve: () => Promise.reject(new Error('thread lost')) });
     await expect(broken.readRows(0, 1)).rejects.toThrow('thread lost');
+    expect(() => gridTiled(samples, { ...OPTIONS, tension: -0.1 })).toThrow('from 0 to 1');
+    expect(() => gridTiled(samples, { ...OPTIONS, maxCells: SIDE * SIDE - 1 })).toThrow('million cells');
     expect(() => gridTiled({ x: [NaN], y: [1], value: [1] }, {})).toThrow(UserError);
     expect(() => gridTiled(samples, { ...OPTIONS, bounds: { west: 900, south: 900, east: 950, north: 950 } })).toThrow(UserError);
   });

@@ -61,8 +61,8 @@ describe.skipIf(!existsSync(FILE))('real flight lines', () => {
     expect(list.length).toBeGreaterThan(10);
     expect(list.filter((anomaly) => anomaly.class === 'casing')).toEqual([]);
 
-    const files = await deliverRun(result, { host, inputs: [], formats: [], relative: (path) => path, manifest: true });
-    const bytes = files.get('residual.tif')!;
+    const { files } = await deliverRun(result, { host, inputs: [], formats: [], relative: (path) => path, manifest: true });
+    const bytes = files.get('residual.tif') as Uint8Array;
     expect(checkCog(bytes)).toEqual([]);
     const { raster } = await openWithGdal({ 'residual.tif': bytes });
     expect(raster!.stac!['proj:epsg']).toBe(32754);
