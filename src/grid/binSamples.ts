@@ -1,4 +1,5 @@
 import { emptyPins, type Pins } from './pins.js';
+import { runningSum } from './runningSum.js';
 import type { GridFrame, Samples } from './types.js';
 
 /** Samples sorted by the cell that they lie in. */
@@ -13,12 +14,11 @@ export interface CellIndex {
 
 /** Sorts by cell in two passes; samples without place or value, or outside the frame, are left out. */
 export function indexByCell({ x, y, value }: Samples, { width, height, west, north, cellM }: GridFrame): CellIndex {
-  const count = x.length;
-  const cell = new Int32Array(count);
-  const column = new Float64Array(count);
-  const row = new Float64Array(count);
+  const cell = new Int32Array(x.length);
+  const column = new Float64Array(x.length);
+  const row = new Float64Array(x.length);
   const start = new Int32Array(width * height + 1);
-  for (let n = 0; n < count; n++) {
+  for (let n = 0; n < x.length; n++) {
     const u = (x[n]! - west) / cellM - 0.5;
     const v = (north - y[n]!) / cellM - 0.5;
     column[n] = u;
@@ -29,11 +29,14 @@ export function indexByCell({ x, y, value }: Samples, { width, height, west, nor
     cell[n] = inside ? j * width + i : -1;
     if (inside) start[j * width + i + 1]!++;
   }
-  for (let k = 0; k < width * height; k++) start[k + 1]! += start[k]!;
-  const order = new Int32Array(start[width * height]!);
+  return { start: runningSum(start), order: orderByCell(cell, start), column, row };
+}
+
+function orderByCell(cell: Int32Array, start: Int32Array): Int32Array {
+  const order = new Int32Array(start.at(-1)!);
   const next = start.slice(0, -1);
-  for (let n = 0; n < count; n++) if (cell[n]! >= 0) order[next[cell[n]!]!++] = n;
-  return { start, order, column, row };
+  for (let n = 0; n < cell.length; n++) if (cell[n]! >= 0) order[next[cell[n]!]!++] = n;
+  return order;
 }
 
 /**

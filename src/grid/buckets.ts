@@ -1,3 +1,4 @@
+import { runningSum } from './runningSum.js';
 import type { GridFrame, Samples } from './types.js';
 
 /** Readings sorted by squares of ground, so that those of any rectangle are found without looking at all. */
@@ -18,7 +19,7 @@ export function bucketSamples(samples: Samples, frame: GridFrame): Buckets {
     const b = squareOf(samples, frame, n);
     if (b >= 0) start[b + 1]!++;
   }
-  for (let b = 0; b + 1 < start.length; b++) start[b + 1]! += start[b]!;
+  runningSum(start);
   const order = new Int32Array(start[start.length - 1]!);
   const next = start.slice(0, -1);
   for (let n = 0; n < y.length; n++) {

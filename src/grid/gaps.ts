@@ -1,5 +1,6 @@
 import type { CellMeans } from './cellMeans.js';
 import { distanceToOccupied } from './reachMask.js';
+import { runningSum } from './runningSum.js';
 import type { GridFrame } from './types.js';
 
 /** Wide cells of the whole ground; 1 where no reading reaches. */
@@ -15,7 +16,7 @@ const DIAGONALS = Math.SQRT2;
 export function gapsOf(means: CellMeans, frame: GridFrame, reachM: number): Gaps {
   const start = new Int32Array(frame.width * frame.height + 1);
   for (const cell of means.cell) start[cell + 1] = 1;
-  for (let k = 0; k + 1 < start.length; k++) start[k + 1]! += start[k]!;
+  runningSum(start);
   const far = reachM / frame.cellM + DIAGONALS;
   return { frame, gap: Uint8Array.from(distanceToOccupied({ start }, frame), (squared) => (squared > far * far ? 1 : 0)) };
 }

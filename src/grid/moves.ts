@@ -47,13 +47,8 @@ export class Moves {
     for (let j = 0; j < height; j++) {
       const row = Math.floor(j / SQUARE) * this.#across;
       for (let c = 0; c < this.#across; c++) {
-        let largest = this.#largest[row + c]!;
-        const end = j * width + Math.min(width, (c + 1) * SQUARE);
-        for (let k = j * width + c * SQUARE; k < end; k++) {
-          const move = Math.abs(z[k]! - before[k]!);
-          if (move > largest && (watch === null || watch[k] !== 0)) largest = move;
-        }
-        this.#largest[row + c] = largest;
+        const span = [j * width + c * SQUARE, j * width + Math.min(width, (c + 1) * SQUARE)] as const;
+        this.#largest[row + c] = Math.max(this.#largest[row + c]!, largestMove(z, before, { watch, span }));
       }
     }
     before.set(z);
@@ -93,6 +88,16 @@ export class Moves {
     const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, move / this.#largestBefore[square]! || 0));
     return (move * rate) / (1 - rate);
   }
+}
+
+/** Of the watched nodes of a span. */
+function largestMove(z: Float64Array, before: Float64Array, { watch, span: [from, to] }: { watch: Uint8Array | null; span: readonly [number, number] }): number {
+  let largest = 0;
+  for (let k = from; k < to; k++) {
+    const move = Math.abs(z[k]! - before[k]!);
+    if (move > largest && (watch === null || watch[k] !== 0)) largest = move;
+  }
+  return largest;
 }
 
 interface Square {

@@ -1,3 +1,5 @@
+import { runningSum } from './runningSum.js';
+
 /**
  * Values that the surface has to take: one for each node whose cell holds data. The place of the value is the node plus
  * an offset of at most half a cell, since readings seldom lie on nodes.
@@ -39,24 +41,35 @@ export function rimNodes({ width, height }: { readonly width: number; readonly h
 
 /** Pins that hold values at nodes themselves. */
 export function nodePins(node: Int32Array, value: Float64Array): Pins {
-  return { ...emptyPins(node.length), node, value, weight: new Float64Array(node.length).fill(1) };
+  const pins = emptyPins(node.length);
+  pins.node.set(node);
+  pins.value.set(value);
+  pins.weight.fill(1);
+  return pins;
 }
 
 /** Pins of both; at a node of both, the first's. */
 export function joinPins(first: Pins, second: Pins): Pins {
   const [n1, n2] = [first.node.length, second.node.length];
   if (n1 === 0 || n2 === 0) return n1 === 0 ? second : first;
-  const all = emptyPins(n1 + n2);
-  let to = 0;
-  for (let a = 0, b = 0; a < n1 || b < n2; to++) {
+  const all = emptyPins(n1 + n2 - countShared(first.node, second.node));
+  for (let a = 0, b = 0, to = 0; to < all.node.length; to++) {
     const ofFirst = b === n2 || (a < n1 && first.node[a]! <= second.node[b]!);
     if (ofFirst && b < n2 && first.node[a] === second.node[b]) b++;
     copyPin(ofFirst ? first : second, ofFirst ? a++ : b++, all, to);
   }
-  return {
-    node: all.node.subarray(0, to), value: all.value.subarray(0, to), dx: all.dx.subarray(0, to), dy: all.dy.subarray(0, to),
-    weight: all.weight.subarray(0, to),
-  };
+  return all;
+}
+
+/** Numbers that two ascending rows have in common. */
+function countShared(first: Int32Array, second: Int32Array): number {
+  let shared = 0;
+  for (let a = 0, b = 0; a < first.length && b < second.length;) {
+    if (first[a] === second[b]) shared++;
+    if (first[a]! <= second[b]!) a++;
+    else b++;
+  }
+  return shared;
 }
 
 function copyPin(from: Pins, n: number, to: Pins, m: number): void {
@@ -67,55 +80,82 @@ function copyPin(from: Pins, n: number, to: Pins, m: number): void {
   to.weight[m] = from.weight[n]!;
 }
 
+interface Rectangle {
+  readonly left: number;
+  readonly top: number;
+  readonly width: number;
+  readonly height: number;
+}
+
 /** The pins of a rectangle of nodes, by the rectangle's own nodes. `width` is that of the whole. */
-export function pinsWithin(pins: Pins, width: number, window: { readonly left: number; readonly top: number; readonly width: number; readonly height: number }): Pins {
-  const taken: number[] = [];
-  for (let n = 0; n < pins.node.length; n++) {
-    const j = Math.floor(pins.node[n]! / width) - window.top;
-    const i = pins.node[n]! % width - window.left;
-    if (i >= 0 && i < window.width && j >= 0 && j < window.height) taken.push(n);
-  }
-  const within = emptyPins(taken.length);
-  taken.forEach((n, to) => {
+export function pinsWithin(pins: Pins, width: number, window: Rectangle): Pins {
+  const within = emptyPins(pins.node.reduce((count, node) => count + (nodeWithin(node, width, window) < 0 ? 0 : 1), 0));
+  for (let n = 0, to = 0; n < pins.node.length; n++) {
+    const node = nodeWithin(pins.node[n]!, width, window);
+    if (node < 0) continue;
     copyPin(pins, n, within, to);
-    within.node[to] = (Math.floor(pins.node[n]! / width) - window.top) * window.width + pins.node[n]! % width - window.left;
-  });
+    within.node[to++] = node;
+  }
   return within;
+}
+
+/** −1 outside. */
+function nodeWithin(node: number, width: number, window: Rectangle): number {
+  const j = Math.floor(node / width) - window.top;
+  const i = node % width - window.left;
+  return i >= 0 && i < window.width && j >= 0 && j < window.height ? j * window.width + i : -1;
 }
 
 /** The same values on a grid of half the resolution: those that fall to one node become their weighted mean. */
 export function coarsenPins(pins: Pins, [width, coarseWidth, coarseHeight]: readonly [number, number, number]): Pins {
+  const target = coarseNodes(pins, width, coarseWidth);
   const slot = new Int32Array(coarseWidth * coarseHeight).fill(-1);
-  const target = new Int32Array(pins.node.length);
-  for (let n = 0; n < pins.node.length; n++) {
-    const j = Math.floor(pins.node[n]! / width);
-    const i = pins.node[n]! - j * width;
-    const node = Math.round((j + pins.dy[n]!) / 2) * coarseWidth + Math.round((i + pins.dx[n]!) / 2);
-    target[n] = node;
-    slot[node] = 0;
+  const coarse = emptyPins(giveSlots(slot, target));
+  sumBySlot(pins, [width, coarseWidth], { target, slot, coarse });
+  divideByWeight(coarse);
+  return coarse;
+}
+
+/** For each pin, the coarse node next to its place. */
+function coarseNodes({ node, dx, dy }: Pins, width: number, coarseWidth: number): Int32Array {
+  const target = new Int32Array(node.length);
+  for (let n = 0; n < node.length; n++) {
+    const j = Math.floor(node[n]! / width);
+    const i = node[n]! - j * width;
+    target[n] = Math.round((j + dy[n]!) / 2) * coarseWidth + Math.round((i + dx[n]!) / 2);
   }
+  return target;
+}
+
+/** Numbers the nodes that are a target, in their order; returns how many there are. */
+function giveSlots(slot: Int32Array, target: Int32Array): number {
+  for (let n = 0; n < target.length; n++) slot[target[n]!] = 0;
   let count = 0;
   for (let node = 0; node < slot.length; node++) if (slot[node] === 0) slot[node] = count++;
-  const coarse = emptyPins(count);
-  for (let n = 0; n < pins.node.length; n++) {
-    const j = Math.floor(pins.node[n]! / width);
-    const i = pins.node[n]! - j * width;
-    const node = target[n]!;
-    const to = slot[node]!;
-    const row = Math.floor(node / coarseWidth);
-    const weight = pins.weight[n]!;
-    coarse.node[to] = node;
-    coarse.weight[to]! += weight;
-    coarse.value[to]! += weight * pins.value[n]!;
-    coarse.dx[to]! += weight * ((i + pins.dx[n]!) / 2 - (node - row * coarseWidth));
-    coarse.dy[to]! += weight * ((j + pins.dy[n]!) / 2 - row);
+  return count;
+}
+
+function sumBySlot({ node, value, dx, dy, weight }: Pins, [width, coarseWidth]: readonly [number, number], { target, slot, coarse }: { target: Int32Array; slot: Int32Array; coarse: Pins }): void {
+  for (let n = 0; n < node.length; n++) {
+    const j = Math.floor(node[n]! / width);
+    const i = node[n]! - j * width;
+    const to = slot[target[n]!]!;
+    const row = Math.floor(target[n]! / coarseWidth);
+    const w = weight[n]!;
+    coarse.node[to] = target[n]!;
+    coarse.weight[to]! += w;
+    coarse.value[to]! += w * value[n]!;
+    coarse.dx[to]! += w * ((i + dx[n]!) / 2 - (target[n]! - row * coarseWidth));
+    coarse.dy[to]! += w * ((j + dy[n]!) / 2 - row);
   }
-  for (let to = 0; to < count; to++) {
-    coarse.value[to]! /= coarse.weight[to]!;
-    coarse.dx[to]! /= coarse.weight[to]!;
-    coarse.dy[to]! /= coarse.weight[to]!;
+}
+
+function divideByWeight({ value, dx, dy, weight }: Pins): void {
+  for (let n = 0; n < value.length; n++) {
+    value[n]! /= weight[n]!;
+    dx[n]! /= weight[n]!;
+    dy[n]! /= weight[n]!;
   }
-  return coarse;
 }
 
 /** Pins with the place where each row of nodes starts among them. */
@@ -127,8 +167,7 @@ export interface PinRows {
 export function pinRows(pins: Pins, width: number, height: number): PinRows {
   const start = new Int32Array(height + 1);
   for (let n = 0; n < pins.node.length; n++) start[Math.floor(pins.node[n]! / width) + 1]!++;
-  for (let j = 0; j < height; j++) start[j + 1]! += start[j]!;
-  return { pins, start };
+  return { pins, start: runningSum(start) };
 }
 
 /**

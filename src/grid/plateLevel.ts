@@ -87,11 +87,13 @@ export function plateAtRim(level: PlateLevel, z: Float64Array, k: number): numbe
 
 /** `finest`: no finer grid's pins will ever be held here. */
 export function plateLevel(size: { width: number; height: number; alpha: number; tau: number }, { finest = false } = {}): PlateLevel {
-  const count = size.width * size.height;
+  const { width, height, alpha, tau } = size;
+  const count = width * height;
+  // Field by field, so that all levels have one shape: the sweeps are compiled once.
   return {
-    ...size,
-    xAxis: axisTables(size.width),
-    yAxis: axisTables(size.height),
+    width, height, alpha, tau,
+    xAxis: axisTables(width),
+    yAxis: axisTables(height),
     inverseDiagonal: new Float32Array(count),
     hold: emptyHold(finest ? 0 : count),
     correction: new Float64Array(count),
@@ -105,7 +107,7 @@ export function fillDiagonal(level: PlateLevel, pinned: Int32Array | null): void
   const { width, height, alpha, tau, inverseDiagonal, hold } = level;
   const inner = 20 * alpha + 4 * tau;
   if (pinned) inverseDiagonal.fill(1 / inner);
-  else for (let k = 0; k < inverseDiagonal.length; k++) inverseDiagonal[k] = 1 / (inner + hold.self[k]!);
+  else invertHeld(inverseDiagonal, hold.self, inner);
   for (let j = 0; j < height; j++) {
     const wholeRow = j < 2 || j >= height - 2 || width < 5;
     for (let i = 0; i < width; i++) {
@@ -116,5 +118,13 @@ export function fillDiagonal(level: PlateLevel, pinned: Int32Array | null): void
       inverseDiagonal[k] = diagonal > 0 ? 1 / diagonal : 1;
     }
   }
-  if (pinned) for (const node of pinned) inverseDiagonal[node] = 0;
+  if (pinned) zeroAt(inverseDiagonal, pinned);
+}
+
+function invertHeld(inverse: Float32Array, held: Float32Array, inner: number): void {
+  for (let k = 0; k < inverse.length; k++) inverse[k] = 1 / (inner + held[k]!);
+}
+
+function zeroAt(values: Float32Array, nodes: Int32Array): void {
+  for (let n = 0; n < nodes.length; n++) values[nodes[n]!] = 0;
 }

@@ -47,28 +47,39 @@ function readingWithin({ start, order, column, row }: CellIndex, { width, height
  * Source: Felzenszwalb & Huttenlocher (2012), Distance transforms of sampled functions, Theory of Computing 8 (exact).
  */
 export function distanceToOccupied({ start }: Pick<CellIndex, 'start'>, { width, height }: Pick<GridFrame, 'width' | 'height'>, enough = 0): Float64Array {
-  const squared = new Float64Array(width * height);
   // Up and down the columns, plain counting does; all columns at once, since cells of a row lie side by side.
+  const squared = stepsDown(start, width, height);
   const steps = new Float64Array(width).fill(Infinity);
-  for (let j = 0, k = 0; j < height; j++) {
-    for (let i = 0; i < width; i++, k++) squared[k] = steps[i] = start[k + 1]! > start[k]! ? 0 : steps[i]! + 1;
-  }
-  steps.fill(Infinity);
   const parabola = new Int32Array(width);
   const border = new Float64Array(width + 1);
   const line = new Float64Array(width);
   for (let j = height - 1; j >= 0; j--) {
     const row = squared.subarray(j * width, (j + 1) * width);
-    let furthest = 0;
-    for (let i = 0; i < width; i++) {
-      const least = Math.min(steps[i]! + 1, row[i]!);
-      steps[i] = least;
-      row[i] = least * least;
-      if (least > furthest) furthest = least;
-    }
-    if (furthest > enough) lowerEnvelope(row, { parabola, border, line });
+    if (squareNearer(row, steps) > enough) lowerEnvelope(row, { parabola, border, line });
   }
   return squared;
+}
+
+/** Steps to the nearest occupied cell above, itself included. */
+function stepsDown(start: Int32Array, width: number, height: number): Float64Array {
+  const steps = new Float64Array(width * height);
+  for (let k = 0; k < steps.length; k++) {
+    const above = k < width ? Infinity : steps[k - width]!;
+    steps[k] = start[k + 1]! > start[k]! ? 0 : above + 1;
+  }
+  return steps;
+}
+
+/** Steps to the nearest cell above or below, squared, from those to the one above; returns the most of them. `below` moves on to this row. */
+function squareNearer(row: Float64Array, below: Float64Array): number {
+  let furthest = 0;
+  for (let i = 0; i < row.length; i++) {
+    const least = Math.min(below[i]! + 1, row[i]!);
+    below[i] = least;
+    row[i] = least * least;
+    if (least > furthest) furthest = least;
+  }
+  return furthest;
 }
 
 /** Replaces f by min over q of (p − q)² + f(q). */

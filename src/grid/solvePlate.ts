@@ -164,8 +164,12 @@ function cycle({ levels, transfers, pins }: Grids, { l, z }: { l: number; z: Flo
   prolong(transfers[l]!, [coarse.correction, correction], { add: false });
   pinCorrection(correction, pins[l]!.pins, level);
   if (path) advance(level, z, path);
-  else for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
+  else addShare(z, correction);
   sweeps(level, pins[l]!, { z, count: SWEEPS, residual: false });
+}
+
+function addShare(z: Float64Array, correction: Float64Array): void {
+  for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
 }
 
 /** The last coarse step and what the operator makes of it; zero before the first. */

@@ -1,5 +1,5 @@
 import { binSamples, indexByCell } from './binSamples.js';
-import { joinPins, nodePins } from './pins.js';
+import { joinPins, nodePins, type Pins } from './pins.js';
 import { reachMask } from './reachMask.js';
 import { solvePlate } from './solvePlate.js';
 import { trendAt, type Trend } from './trend.js';
@@ -40,22 +40,33 @@ export interface TileSolution {
 
 /** Minimum curvature in tension on one tile of a larger grid; see `gridTiled`. */
 export function solveTile(task: TileTask): TileSolution {
-  const { frame, own, trend, tension, spacingM, reachM } = task;
-  const { width, height, cellM, west, north } = frame;
+  const { frame, own, tension, spacingM, reachM } = task;
+  const { width, height, cellM } = frame;
   const index = indexByCell(task, frame);
   const data = binSamples(index, task.value, width);
-  for (let n = 0; n < data.node.length; n++) {
-    const j = Math.floor(data.node[n]! / width);
-    data.value[n]! -= trendAt(trend, west + (data.node[n]! - j * width + 0.5 + data.dx[n]!) * cellM, north - (j + 0.5 + data.dy[n]!) * cellM);
-  }
+  takeTrend(data, task);
   const mask = reachMask(index, frame, reachM);
   const inside = keepOwn(mask, task);
-  const values = new Float32Array(own.width * own.height).fill(NaN);
-  if (inside === 0) return { values, filled: 0, pinned: 0, iterations: 0, remaining: 0, converged: true };
+  if (inside === 0) return { values: new Float32Array(own.width * own.height).fill(NaN), filled: 0, pinned: 0, iterations: 0, remaining: 0, converged: true };
   const { z, ...solved } = solvePlate(
     { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins: joinPins(data, nodePins(task.rimNode, task.rimValue)), watch: mask },
     task,
   );
+  const pinned = data.node.reduce((count, node) => count + mask[node]!, 0);
+  return { ...solved, values: ownValues(z, mask, task), filled: inside, pinned };
+}
+
+/** Takes the trend off the pins' values, in place. */
+function takeTrend({ node, value, dx, dy }: Pins, { trend, frame: { width, west, north, cellM } }: TileTask): void {
+  for (let n = 0; n < node.length; n++) {
+    const j = Math.floor(node[n]! / width);
+    value[n]! -= trendAt(trend, west + (node[n]! - j * width + 0.5 + dx[n]!) * cellM, north - (j + 0.5 + dy[n]!) * cellM);
+  }
+}
+
+/** The surface with its trend at the cells that are kept, NaN where the mask is 0. */
+function ownValues(z: Float64Array, mask: Uint8Array, { trend, own, frame: { width, west, north, cellM } }: TileTask): Float32Array {
+  const values = new Float32Array(own.width * own.height).fill(NaN);
   for (let j = 0, to = 0; j < own.height; j++) {
     const y = north - (own.top + j + 0.5) * cellM;
     const from = (own.top + j) * width + own.left;
@@ -63,8 +74,7 @@ export function solveTile(task: TileTask): TileSolution {
       if (mask[from + i] !== 0) values[to] = z[from + i]! + trendAt(trend, west + (own.left + i + 0.5) * cellM, y);
     }
   }
-  const pinned = data.node.reduce((count, node) => count + mask[node]!, 0);
-  return { ...solved, values, filled: inside, pinned };
+  return values;
 }
 
 /** Takes the overlap out of the mask, in place; returns how many cells are left. */

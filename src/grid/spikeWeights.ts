@@ -40,10 +40,10 @@ function pinned(free: Float32Array, k: number): number {
 function rimSpike(level: PlateLevel, [i, j]: readonly [number, number]): number {
   const { width, height, inverseDiagonal } = level;
   let sum = 0;
-  for (let dy = Math.max(-2, -j); dy <= Math.min(2, height - 1 - j); dy++) {
-    const reach = 2 - Math.abs(dy);
-    for (let dx = Math.max(-reach, -i); dx <= Math.min(reach, width - 1 - i); dx++) {
-      if (inverseDiagonal[(j + dy) * width + i + dx] === 0) sum += plateWeight(level, [i, j], [dx, dy]);
+  for (let y = Math.max(0, j - 2); y <= Math.min(height - 1, j + 2); y++) {
+    const reach = 2 - Math.abs(y - j);
+    for (let x = Math.max(0, i - reach); x <= Math.min(width - 1, i + reach); x++) {
+      if (inverseDiagonal[y * width + x] === 0) sum += plateWeight(level, [i, j], [x - i, y - j]);
     }
   }
   return sum;
