@@ -6,7 +6,6 @@ import { coarseSurface, surfaceAt, type CoarseSurface } from './coarseSurface.js
 import { anyGap, gapsOf, type Gaps } from './gaps.js';
 import { gridLayout, type GridLayout } from './gridLayout.js';
 import { GRID_DEFAULTS, type GridOptions } from './gridOptions.js';
-import { GRID_DEFAULTS, TENSION_ON_LINE, type GridOptions } from './gridReadings.js';
 import { gridRemarks } from './gridRemarks.js';
 import { rimNodes } from './pins.js';
 import { robustRange } from './robustRange.js';
