@@ -4,6 +4,8 @@ import type { TileSolution, TileTask } from '../src/grid/solveTile.js';
 
 /** Threads that solve tiles for `gridTiled`. Close them when the grid is done: they keep the process alive. */
 export interface TileThreads {
+  /** Starts all threads before there is a tile, for one who still reads the data. */
+  start(): void;
   solve(task: TileTask): Promise<TileSolution>;
   close(): Promise<void>;
 }
@@ -48,6 +50,9 @@ export function tileThreads(count: number = availableParallelism()): TileThreads
     return worker;
   };
   return {
+    start() {
+      while (workers.length < count) idle.push(start());
+    },
     solve: (task) => new Promise((done, failed) => {
       if (end) return failed(end);
       const one = { task, done, failed };

@@ -7,7 +7,6 @@ export interface CellMeans {
   readonly x: Float64Array;
   readonly y: Float64Array;
   readonly value: Float64Array;
-  readonly count: Float64Array;
 }
 
 /** Plain means in one pass; readings without place or value, or outside the frame, are left out. */
@@ -35,7 +34,6 @@ export function cellMeans({ x, y, value }: Samples, { width, height, west, north
   const mean = (of: (k: number) => number): Float64Array => Float64Array.from(cell, of);
   return {
     cell,
-    count: mean((k) => count[k]!),
     x: mean((k) => west + sumX[k]! / count[k]!),
     y: mean((k) => north - sumY[k]! / count[k]!),
     value: mean((k) => sum[k]! / count[k]!),

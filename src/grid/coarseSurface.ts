@@ -1,6 +1,5 @@
 import type { CellMeans } from './cellMeans.js';
-import { emptyPins } from './pins.js';
-import { solvePlate } from './solvePlate.js';
+import type { SolveTile } from './solveTile.js';
 import { trendAt, type Trend } from './trend.js';
 import type { GridFrame } from './types.js';
 
@@ -14,31 +13,21 @@ export interface CoarseSurface {
 const COARSE_TOLERANCE = 1e-3;
 const COARSE_STEPS = 10;
 
-/** Surface of the whole ground through the means of wide cells. */
-export function coarseSurface(means: CellMeans, { frame, trend, tension, spacingM }: {
-  frame: GridFrame; trend: Trend; tension: number; spacingM: number;
-}): CoarseSurface {
+/** Surface of the whole ground through the means of wide cells, solved as a tile of its own; `range` is that of the readings. */
+export async function coarseSurface(means: CellMeans, { frame, trend, tension, spacingM, range, solve }: {
+  frame: GridFrame; trend: Trend; tension: number; spacingM: number; range: number; solve: SolveTile;
+}): Promise<CoarseSurface> {
   const { width, height, west, north, cellM } = frame;
-  const pins = emptyPins(means.cell.length);
-  let low = Infinity;
-  let high = -Infinity;
-  for (let n = 0; n < means.cell.length; n++) {
-    const k = means.cell[n]!;
+  const { values } = await solve({
+    // Copies, since a thread takes what it is given.
+    frame, own: { left: 0, top: 0, width, height }, x: means.x.slice(), y: means.y.slice(), value: means.value.slice(),
+    trend, rimNode: new Int32Array(0), rimValue: new Float64Array(0), tension, spacingM, reachM: Infinity,
+    tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_STEPS,
+  });
+  return { frame, z: Float64Array.from(values, (value, k) => {
     const j = Math.floor(k / width);
-    const value = means.value[n]! - trendAt(trend, means.x[n]!, means.y[n]!);
-    pins.node[n] = k;
-    pins.value[n] = value;
-    pins.weight[n] = means.count[n]!;
-    pins.dx[n] = (means.x[n]! - west) / cellM - 0.5 - (k - j * width);
-    pins.dy[n] = (north - means.y[n]!) / cellM - 0.5 - j;
-    low = Math.min(low, value);
-    high = Math.max(high, value);
-  }
-  const { z } = solvePlate(
-    { width, height, alpha: 1 - tension, tau: tension * (cellM / spacingM) ** 2, pins, watch: null },
-    { tolerance: COARSE_TOLERANCE * Math.max(high - low, Number.MIN_VALUE), maxSteps: COARSE_STEPS },
-  );
-  return { frame, z };
+    return value - trendAt(trend, west + (k - j * width + 0.5) * cellM, north - (j + 0.5) * cellM);
+  }) };
 }
 
 /**

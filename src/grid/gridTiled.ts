@@ -9,7 +9,7 @@ import { GRID_DEFAULTS, type GridOptions } from './gridOptions.js';
 import { gridRemarks } from './gridRemarks.js';
 import { rimNodes } from './pins.js';
 import { robustRange } from './robustRange.js';
-import { solveTile, type TileSolution, type TileTask } from './solveTile.js';
+import { solveTile, type SolveTile, type TileTask } from './solveTile.js';
 import { fitTrend } from './trend.js';
 import type { GridFrame, GridRemarks, GridResult, Samples } from './types.js';
 
@@ -25,8 +25,6 @@ export interface TiledOptions extends GridOptions {
   /** A larger grid is refused. */
   readonly maxCells?: number;
 }
-
-export type SolveTile = (task: TileTask) => TileSolution | Promise<TileSolution>;
 
 /** Room for any survey; beyond it the cell size is a mistake. */
 const MAX_TILED_CELLS = 4e9;
@@ -95,10 +93,12 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const overlapCells = cellsOf(overlapSpacings);
   const tileCells = Math.max(least, Math.ceil((2 * overlapCells) / least) * least);
   const single = tileCells >= frame.width && tileCells >= frame.height;
+  const surface = single ? null : coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM, range, solve });
+  // A failure is thrown where it is waited for.
+  surface?.catch(() => {});
   const tiler: Tiler = {
     layout, tileCells: single ? Infinity : tileCells, overlapCells, gapOverlapCells: Math.max(overlapCells, cellsOf(gapOverlapSpacings)),
-    gaps: gapsOf(means, coarseFrame, reachM),
-    surface: single ? null : coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM }),
+    gaps: gapsOf(means, coarseFrame, reachM), surface,
     buckets: bucketSamples(samples, widened(solved, BUCKET_CELLS)),
     common: { trend, tension, spacingM, reachM, tolerance: tolerance * Math.max(range, Math.abs(trend.level) * 1e-12, 1e-300), maxSteps },
   };
@@ -142,7 +142,7 @@ interface Tiler {
   readonly overlapCells: number;
   readonly gapOverlapCells: number;
   readonly gaps: Gaps;
-  readonly surface: CoarseSurface | null;
+  readonly surface: Promise<CoarseSurface> | null;
   readonly buckets: Buckets;
   readonly common: Pick<TileTask, 'trend' | 'tension' | 'spacingM' | 'reachM' | 'tolerance' | 'maxSteps'>;
 }
@@ -158,7 +158,7 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
   const tiles = Array.from({ length: Math.ceil(frame.width / side) }, (_, c) => c * side);
   await Promise.all(tiles.map(async (left) => {
     const width = Math.min(side, frame.width - left);
-    const task = tileTask(tiler, { left, top, width, height });
+    const task = tileTask(tiler, await tiler.surface, { left, top, width, height });
     if (task === null) return;
     const solution = await solve(task);
     for (let j = 0; j < height; j++) values.set(solution.values.subarray(j * width, (j + 1) * width), j * frame.width + left);
@@ -172,7 +172,7 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
 }
 
 /** Null where no reading is near. */
-function tileTask({ layout: { frame, solved, cellM }, surface, buckets, common, ...tiler }: Tiler, kept: TileTask['own']): TileTask | null {
+function tileTask({ layout: { frame, solved, cellM }, buckets, common, ...tiler }: Tiler, surface: CoarseSurface | null, kept: TileTask['own']): TileTask | null {
   // Of the frame that is solved, in whose cells all that follows counts.
   const left = kept.left + Math.round((frame.west - solved.west) / cellM);
   const top = kept.top + Math.round((solved.north - frame.north) / cellM);

@@ -38,6 +38,9 @@ export interface TileSolution {
   readonly converged: boolean;
 }
 
+/** Solves a tile, here or on another thread; what is passed may be taken over. */
+export type SolveTile = (task: TileTask) => TileSolution | Promise<TileSolution>;
+
 /** Minimum curvature in tension on one tile of a larger grid; see `gridTiled`. */
 export function solveTile(task: TileTask): TileSolution {
   const { frame, own, tension, spacingM, reachM } = task;

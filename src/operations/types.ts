@@ -1,5 +1,5 @@
 import type { FileSource } from '../files.js';
-import type { SolveTile } from '../grid/gridTiled.js';
+import type { SolveTile } from '../grid/solveTile.js';
 import type { GridRemarks } from '../grid/types.js';
 import type { Grid, RowSource } from '../raster/types.js';
 import type { QuantityUnit } from '../units.js';

@@ -1,5 +1,5 @@
 import type { FileSource } from '../files.js';
-import type { SolveTile } from '../grid/gridTiled.js';
+import type { SolveTile } from '../grid/solveTile.js';
 import type { ByteScratch, ByteSink, ByteSource } from '../raster/byteStores.js';
 
 /** What the surroundings hand in: files, a compressor and a hash. A browser brings others than Node. */

@@ -17,6 +17,7 @@ const [input, output, cells, spacing, count] = process.argv.slice(2);
 const threads = Number(count ?? availableParallelism());
 const begin = performance.now();
 const pool = threads > 0 ? tileThreads(threads) : null;
+pool?.start();
 const reader = new NumberReader(['x', 'y', 'z'], { source: input });
 const file = await open(input, 'r');
 const piece = new Uint8Array(PIECE_BYTES);
