@@ -1,4 +1,3 @@
-import { OMEGA } from './plateKernels.js';
 import { plateAtRim, type PlateLevel } from './plateLevel.js';
 
 /** The sweeps of plateKernels.ts for a correction: the operator is that of the plate and of the hold, and no node is pinned. */
@@ -11,15 +10,16 @@ export function heldResidual(level: PlateLevel, z: Float64Array, out: Float32Arr
 export function heldResidualRow(level: PlateLevel, z: Float64Array, { out, j }: { out: Float32Array; j: number }): void {
   const { width, height, alpha, tau, hold, right: b } = level;
   const { self, east, south, southEast, southWest } = hold;
+  const start = j * width;
+  const rimRow = j < 2 || j >= height - 2 || width < 5;
+  for (let i = 0; i < width; i++) {
+    if (i === 2 && !rimRow) i = width - 2;
+    out[start + i] = b[start + i]! - heldAtRim(level, z, start + i);
+  }
+  if (rimRow) return;
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  const start = j * width;
-  if (j < 2 || j >= height - 2 || width < 5) {
-    for (let k = start; k < start + width; k++) out[k] = b[k]! - heldAtRim(level, z, k);
-    return;
-  }
-  for (let k = start; k < start + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
   const end = start + width - 2;
   let n = start + 2 - width;
   let s = start + 2 + width;
@@ -48,22 +48,22 @@ export function heldResidualRow(level: PlateLevel, z: Float64Array, { out, j }: 
     centre = right;
     right = right2;
   }
-  for (let k = end; k < end + 2; k++) out[k] = b[k]! - heldAtRim(level, z, k);
 }
 
 /** One Gauss–Seidel sweep of row `j` on (A + H) z = right. */
 export function heldSmoothRow(level: PlateLevel, z: Float64Array, j: number): void {
-  const { width, height, alpha, tau, hold, inverseDiagonal, right: b } = level;
+  const { width, height, alpha, tau, hold, relaxation, right: b } = level;
   const { self, east, south, southEast, southWest } = hold;
+  const start = j * width;
+  const rimRow = j < 2 || j >= height - 2 || width < 5;
+  for (let i = 0; i < width; i++) {
+    if (i === 2 && !rimRow) i = width - 2;
+    z[start + i]! += relaxation[start + i]! * (b[start + i]! - heldAtRim(level, z, start + i));
+  }
+  if (rimRow) return;
   const a0 = 20 * alpha + 4 * tau;
   const a1 = -8 * alpha - tau;
   const a2 = 2 * alpha;
-  const start = j * width;
-  if (j < 2 || j >= height - 2 || width < 5) {
-    for (let k = start; k < start + width; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
-    return;
-  }
-  for (let k = start; k < start + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
   const end = start + width - 2;
   let n = start + 2 - width;
   let s = start + 2 + width;
@@ -83,7 +83,7 @@ export function heldSmoothRow(level: PlateLevel, z: Float64Array, j: number): vo
       - (a2 + southEast[n - 1]!) * northLeft - (a2 + southWest[n + 1]!) * northRight - (a2 + southWest[k]!) * southLeft - (a2 + southEast[k]!) * southRight
       - alpha * (left2 + right2 + z[n - width]! + z[s + width]!);
     // What waits for the node before is kept short.
-    const step = OMEGA * inverseDiagonal[k]!;
+    const step = relaxation[k]!;
     const value = (centre + step * rest) - (step * (a1 + east[k - 1]!)) * left;
     z[k] = value;
     northLeft = north;
@@ -95,7 +95,6 @@ export function heldSmoothRow(level: PlateLevel, z: Float64Array, j: number): vo
     centre = right;
     right = right2;
   }
-  for (let k = end; k < end + 2; k++) z[k]! += OMEGA * inverseDiagonal[k]! * (b[k]! - heldAtRim(level, z, k));
 }
 
 function heldAtRim(level: PlateLevel, z: Float64Array, k: number): number {

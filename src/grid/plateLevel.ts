@@ -17,11 +17,14 @@ export interface PlateLevel {
   readonly tau: number;
   readonly xAxis: AxisTables;
   readonly yAxis: AxisTables;
-  /** One over the diagonal; 0 where a pin holds the node. Row-major like all that follows. */
-  readonly inverseDiagonal: Float32Array;
+  /** By what share of its residual a sweep moves a node: ω over the diagonal; 0 where a pin holds the node. Row-major like all that follows. */
+  readonly relaxation: Float32Array;
   /** What the pins of a finer grid add to the operator when a correction is sought here. */
   readonly hold: Hold;
-  /** Correction that is sought, its right side, work space. 32 bits do for what is added to a solution in 64. */
+  /**
+   * Correction that is sought, its right side (none on the finest grid), work space. 32 bits do for what is added to a
+   * solution in 64.
+   */
   readonly correction: Float64Array;
   readonly right: Float32Array;
   readonly scratch: Float32Array;
@@ -94,35 +97,38 @@ export function plateLevel(size: { width: number; height: number; alpha: number;
     width, height, alpha, tau,
     xAxis: axisTables(width),
     yAxis: axisTables(height),
-    inverseDiagonal: new Float32Array(count),
+    relaxation: new Float32Array(count),
     hold: emptyHold(finest ? 0 : count),
     correction: new Float64Array(count),
-    right: new Float32Array(count),
+    right: new Float32Array(finest ? 0 : count),
     scratch: new Float32Array(count),
   };
 }
 
-/** Fills the inverse diagonal: with the level's hold in it, or, for the surface itself, with 0 at the pinned nodes. */
-export function fillDiagonal(level: PlateLevel, pinned: Int32Array | null): void {
-  const { width, height, alpha, tau, inverseDiagonal, hold } = level;
+/** Over-relaxation of the smoother: damps the short waves of the 13-point operator faster than 1 does (measured: 1.2 to 1.4 about alike, worse beyond). */
+const OMEGA = 1.3;
+
+/** Fills the relaxation: with the level's hold in it, or, for the surface itself, with 0 at the pinned nodes. */
+export function fillRelaxation(level: PlateLevel, pinned: Int32Array | null): void {
+  const { width, height, alpha, tau, relaxation, hold } = level;
   const inner = 20 * alpha + 4 * tau;
-  if (pinned) inverseDiagonal.fill(1 / inner);
-  else invertHeld(inverseDiagonal, hold.self, inner);
+  if (pinned) relaxation.fill(OMEGA / inner);
+  else fillHeld(relaxation, hold.self, inner);
   for (let j = 0; j < height; j++) {
-    const wholeRow = j < 2 || j >= height - 2 || width < 5;
+    const rimRow = j < 2 || j >= height - 2 || width < 5;
     for (let i = 0; i < width; i++) {
-      if (!wholeRow && i === 2) i = width - 2;
+      if (i === 2 && !rimRow) i = width - 2;
       const k = j * width + i;
       const diagonal = plateWeight(level, [i, j], [0, 0]) + (pinned ? 0 : hold.self[k]!);
       // A lone node has no energy at all; any number will do, since its right side is zero.
-      inverseDiagonal[k] = diagonal > 0 ? 1 / diagonal : 1;
+      relaxation[k] = diagonal > 0 ? OMEGA / diagonal : 1;
     }
   }
-  if (pinned) zeroAt(inverseDiagonal, pinned);
+  if (pinned) zeroAt(relaxation, pinned);
 }
 
-function invertHeld(inverse: Float32Array, held: Float32Array, inner: number): void {
-  for (let k = 0; k < inverse.length; k++) inverse[k] = 1 / (inner + held[k]!);
+function fillHeld(relaxation: Float32Array, held: Float32Array, inner: number): void {
+  for (let k = 0; k < relaxation.length; k++) relaxation[k] = OMEGA / (inner + held[k]!);
 }
 
 function zeroAt(values: Float32Array, nodes: Int32Array): void {

@@ -3,7 +3,7 @@ import { heldResidualRow, heldSmoothRow } from './heldKernels.js';
 import { Moves, type Window } from './moves.js';
 import { coarsenPins, joinPins, movePinsOfRow, nodePins, pinCorrection, pinRows, pinsWithin, rimNodes, type PinRows, type Pins } from './pins.js';
 import { plateResidual, plateResidualRow, smoothRow } from './plateKernels.js';
-import { fillDiagonal, plateLevel, type PlateLevel } from './plateLevel.js';
+import { fillRelaxation, plateLevel, type PlateLevel } from './plateLevel.js';
 import { spikeWeights } from './spikeWeights.js';
 import { prolong, restrict, transfer, type Transfer } from './transfer.js';
 import { wavefront } from './wavefront.js';
@@ -80,7 +80,7 @@ export function solvePlate(problem: PlateProblem, goal: Goal): PlateSolution {
     prolong(transfers[l - 1]!, [z, finer], { add: false });
     z = finer;
     // From here on only corrections are sought on this grid.
-    fillDiagonal(levels[l]!, null);
+    fillRelaxation(levels[l]!, null);
   }
   return { z, ...improve(problem, { grids, z }, { ...goal, spots: true }) };
 }
@@ -92,7 +92,7 @@ function buildGrids({ width, height, alpha, tau, pins }: PlateProblem): Grids {
   for (;;) {
     const fine = levels.at(-1)!;
     const own = pinsOf.at(-1)!;
-    fillDiagonal(fine, own.node);
+    fillRelaxation(fine, own.node);
     if (fine.width <= LAST_SIDE && fine.height <= LAST_SIDE) break;
     const down = transfer(fine.width, fine.height);
     transfers.push(down);
@@ -144,7 +144,7 @@ function improveWindow(problem: PlateProblem, { z, window }: { z: Float64Array; 
     watch: problem.watch && cut(problem.watch, new Uint8Array(width * height)),
   };
   const grids = buildGrids(part);
-  for (const level of grids.levels.slice(1)) fillDiagonal(level, null);
+  for (const level of grids.levels.slice(1)) fillRelaxation(level, null);
   const solved = improve(part, { grids, z: own }, { ...goal, spots: false });
   for (let j = 0; j < height; j++) z.set(own.subarray(j * width, (j + 1) * width), (top + j) * problem.width + left);
   return solved;
@@ -190,7 +190,7 @@ function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): voi
     gain += correction[k]! * scratch[k]!;
     gainStep += step[k]! * scratch[k]!;
   }
-  // The right side of the surface is zero, so this is −A correction.
+  // −A correction.
   plateResidual(level, correction, scratch);
   let cost = 0;
   let cross = 0;

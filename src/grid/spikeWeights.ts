@@ -8,7 +8,7 @@ import { plateWeight, type PlateLevel } from './plateLevel.js';
 const SPIKE_SHARE = 0.75;
 const LEAST_SPIKE = 4;
 
-/** For each pinned node, the weight of its hold. The level's inverse diagonal is 0 at pinned nodes. */
+/** For each pinned node, the weight of its hold. The level's relaxation is 0 at pinned nodes. */
 export function spikeWeights(level: PlateLevel, node: Int32Array): Float32Array {
   const { width, height, alpha, tau } = level;
   const least = LEAST_SPIKE * (alpha + tau);
@@ -24,7 +24,7 @@ export function spikeWeights(level: PlateLevel, node: Int32Array): Float32Array 
 }
 
 /** Energy of a spike of height 1 on a pinned node and on all pinned nodes around it, as far as this node's row shows it. */
-function insideSpike({ width, inverseDiagonal: free, alpha, tau }: PlateLevel, k: number): number {
+function insideSpike({ width, relaxation: free, alpha, tau }: PlateLevel, k: number): number {
   const north = k - width;
   const south = k + width;
   const beside = pinned(free, k - 1) + pinned(free, k + 1) + pinned(free, north) + pinned(free, south);
@@ -38,12 +38,12 @@ function pinned(free: Float32Array, k: number): number {
 }
 
 function rimSpike(level: PlateLevel, [i, j]: readonly [number, number]): number {
-  const { width, height, inverseDiagonal } = level;
+  const { width, height, relaxation } = level;
   let sum = 0;
   for (let y = Math.max(0, j - 2); y <= Math.min(height - 1, j + 2); y++) {
     const reach = 2 - Math.abs(y - j);
     for (let x = Math.max(0, i - reach); x <= Math.min(width - 1, i + reach); x++) {
-      if (inverseDiagonal[y * width + x] === 0) sum += plateWeight(level, [i, j], [x - i, y - j]);
+      if (relaxation[y * width + x] === 0) sum += plateWeight(level, [i, j], [x - i, y - j]);
     }
   }
   return sum;

@@ -51,40 +51,43 @@ export function transfer(width: number, height: number): Transfer {
 
 /** fine += P coarse, or fine = P coarse where `add` is false. */
 export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add }: { add: boolean }): void {
-  const width = x.fine;
+  for (let row = 0; row < y.coarse; row++) prolongAcross(x, half, coarse, row);
+  for (let row = 0; row < y.fine; row++) prolongDown([x.fine, y], half, fine, { row, add });
+}
+
+function prolongAcross(x: AxisTransfer, half: Float64Array, coarse: Float64Array, row: number): void {
+  const c = row * x.coarse;
+  const h = row * x.fine;
   const reads = Math.min(4, x.coarse);
-  for (let row = 0; row < y.coarse; row++) {
-    const c = row * x.coarse;
-    const h = row * width;
-    for (let i = 0; i < width; i++) {
-      if (i % 2 === 0) {
-        half[h + i] = coarse[c + (i >> 1)]!;
-      } else if (i >= 3 && (i >> 1) + 2 < x.coarse) {
-        const at = c + (i >> 1);
-        half[h + i] = 0.5625 * (coarse[at]! + coarse[at + 1]!) - 0.0625 * (coarse[at - 1]! + coarse[at + 2]!);
-      } else {
-        let sum = 0;
-        for (let n = 0; n < reads; n++) sum += x.weights[i * 4 + n]! * coarse[c + x.from[i]! + n]!;
-        half[h + i] = sum;
-      }
+  for (let i = 0; i < x.fine; i++) {
+    if (i % 2 === 0) {
+      half[h + i] = coarse[c + (i >> 1)]!;
+    } else if (i >= 3 && (i >> 1) + 2 < x.coarse) {
+      const at = c + (i >> 1);
+      half[h + i] = 0.5625 * (coarse[at]! + coarse[at + 1]!) - 0.0625 * (coarse[at - 1]! + coarse[at + 2]!);
+    } else {
+      let sum = 0;
+      for (let n = 0; n < reads; n++) sum += x.weights[i * 4 + n]! * coarse[c + x.from[i]! + n]!;
+      half[h + i] = sum;
     }
   }
-  for (let row = 0; row < y.fine; row++) {
-    const f = row * width;
-    const rows = Math.min(4, y.coarse - y.from[row]!);
-    const w0 = y.weights[row * 4]!;
-    const w1 = y.weights[row * 4 + 1]!;
-    const w2 = y.weights[row * 4 + 2]!;
-    const w3 = y.weights[row * 4 + 3]!;
-    const h0 = y.from[row]! * width;
-    // A weight of a row that does not exist is zero: read the first row in its place.
-    const h1 = rows > 1 ? h0 + width : h0;
-    const h2 = rows > 2 ? h0 + 2 * width : h0;
-    const h3 = rows > 3 ? h0 + 3 * width : h0;
-    for (let i = 0; i < width; i++) {
-      const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
-      fine[f + i] = add ? fine[f + i]! + value : value;
-    }
+}
+
+function prolongDown([width, y]: readonly [number, AxisTransfer], half: Float64Array, fine: Float64Array, { row, add }: { row: number; add: boolean }): void {
+  const f = row * width;
+  const rows = Math.min(4, y.coarse - y.from[row]!);
+  const w0 = y.weights[row * 4]!;
+  const w1 = y.weights[row * 4 + 1]!;
+  const w2 = y.weights[row * 4 + 2]!;
+  const w3 = y.weights[row * 4 + 3]!;
+  const h0 = y.from[row]! * width;
+  // A weight of a row that does not exist is zero: read the first row in its place.
+  const h1 = rows > 1 ? h0 + width : h0;
+  const h2 = rows > 2 ? h0 + 2 * width : h0;
+  const h3 = rows > 3 ? h0 + 3 * width : h0;
+  for (let i = 0; i < width; i++) {
+    const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
+    fine[f + i] = add ? fine[f + i]! + value : value;
   }
 }
 
@@ -93,47 +96,50 @@ const RIM_SPAN = 5;
 
 /** coarse = Pᵀ fine. */
 export function restrict({ x, y, half }: Transfer, [fine, coarse]: readonly [Float32Array, Float32Array]): void {
-  const width = x.fine;
-  // Coarse row by coarse row: its own fine row, the two beside it and the two beyond, or what the rim makes of them.
-  for (let row = 0; row < y.coarse; row++) {
-    const h = row * width;
-    const f = 2 * row * width;
-    if (row >= 3 && 2 * row + 7 < y.fine) {
-      for (let i = 0; i < width; i++) {
-        half[h + i] = fine[f + i]! + 0.5625 * (fine[f + i - width]! + fine[f + i + width]!)
-          - 0.0625 * (fine[f + i - 3 * width]! + fine[f + i + 3 * width]!);
-      }
-      continue;
-    }
-    half.fill(0, h, h + width);
-    for (let from = Math.max(0, 2 * row - RIM_SPAN); from <= Math.min(y.fine - 1, 2 * row + RIM_SPAN); from++) {
-      const n = row - y.from[from]!;
-      const weight = n >= 0 && n < 4 ? y.weights[from * 4 + n]! : 0;
-      if (weight === 0) continue;
-      for (let i = 0; i < width; i++) half[h + i]! += weight * fine[from * width + i]!;
-    }
-  }
+  for (let row = 0; row < y.coarse; row++) restrictUp([x.fine, y], half, fine, row);
   coarse.fill(0);
-  for (let row = 0; row < y.coarse; row++) {
-    const c = row * x.coarse;
-    const h = row * width;
+  for (let row = 0; row < y.coarse; row++) restrictAcross(x, half, coarse, row);
+}
+
+/** A coarse row's own fine row, the two beside it and the two beyond, or what the rim makes of them. */
+function restrictUp([width, y]: readonly [number, AxisTransfer], half: Float64Array, fine: Float32Array, row: number): void {
+  const h = row * width;
+  const f = 2 * row * width;
+  if (row >= 3 && 2 * row + 7 < y.fine) {
     for (let i = 0; i < width; i++) {
-      const value = half[h + i]!;
-      if (i % 2 === 0) {
-        coarse[c + (i >> 1)]! += value;
-      } else if (i >= 3 && (i >> 1) + 2 < x.coarse) {
-        const at = c + (i >> 1);
-        const near = 0.5625 * value;
-        const far = -0.0625 * value;
-        coarse[at - 1]! += far;
-        coarse[at]! += near;
-        coarse[at + 1]! += near;
-        coarse[at + 2]! += far;
-      } else {
-        for (let n = 0; n < 4; n++) {
-          const weight = x.weights[i * 4 + n]!;
-          if (weight !== 0) coarse[c + x.from[i]! + n]! += weight * value;
-        }
+      half[h + i] = fine[f + i]! + 0.5625 * (fine[f + i - width]! + fine[f + i + width]!)
+        - 0.0625 * (fine[f + i - 3 * width]! + fine[f + i + 3 * width]!);
+    }
+    return;
+  }
+  half.fill(0, h, h + width);
+  for (let from = Math.max(0, 2 * row - RIM_SPAN); from <= Math.min(y.fine - 1, 2 * row + RIM_SPAN); from++) {
+    const n = row - y.from[from]!;
+    const weight = n >= 0 && n < 4 ? y.weights[from * 4 + n]! : 0;
+    if (weight === 0) continue;
+    for (let i = 0; i < width; i++) half[h + i]! += weight * fine[from * width + i]!;
+  }
+}
+
+function restrictAcross(x: AxisTransfer, half: Float64Array, coarse: Float32Array, row: number): void {
+  const c = row * x.coarse;
+  const h = row * x.fine;
+  for (let i = 0; i < x.fine; i++) {
+    const value = half[h + i]!;
+    if (i % 2 === 0) {
+      coarse[c + (i >> 1)]! += value;
+    } else if (i >= 3 && (i >> 1) + 2 < x.coarse) {
+      const at = c + (i >> 1);
+      const near = 0.5625 * value;
+      const far = -0.0625 * value;
+      coarse[at - 1]! += far;
+      coarse[at]! += near;
+      coarse[at + 1]! += near;
+      coarse[at + 2]! += far;
+    } else {
+      for (let n = 0; n < 4; n++) {
+        const weight = x.weights[i * 4 + n]!;
+        if (weight !== 0) coarse[c + x.from[i]! + n]! += weight * value;
       }
     }
   }
