@@ -93,9 +93,11 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const overlapCells = cellsOf(overlapSpacings);
   const tileCells = Math.max(least, Math.ceil((2 * overlapCells) / least) * least);
   const single = tileCells >= frame.width && tileCells >= frame.height;
-  const surface = single ? null : coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM, range, solve });
-  // A failure is thrown where it is waited for.
-  surface?.catch(() => {});
+  let begun: Promise<CoarseSurface> | null = null;
+  const surface = (): Promise<CoarseSurface> | null => {
+    if (!single) begun ??= coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM, range, solve });
+    return begun;
+  };
   const tiler: Tiler = {
     layout, tileCells: single ? Infinity : tileCells, overlapCells, gapOverlapCells: Math.max(overlapCells, cellsOf(gapOverlapSpacings)),
     gaps: gapsOf(means, coarseFrame, reachM), surface,
@@ -142,7 +144,8 @@ interface Tiler {
   readonly overlapCells: number;
   readonly gapOverlapCells: number;
   readonly gaps: Gaps;
-  readonly surface: Promise<CoarseSurface> | null;
+  /** The wide surface, solved when the first tile is; null where there is but one tile. */
+  readonly surface: () => Promise<CoarseSurface> | null;
   readonly buckets: Buckets;
   readonly common: Pick<TileTask, 'trend' | 'tension' | 'spacingM' | 'reachM' | 'tolerance' | 'maxSteps'>;
 }
@@ -158,7 +161,7 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
   const tiles = Array.from({ length: Math.ceil(frame.width / side) }, (_, c) => c * side);
   await Promise.all(tiles.map(async (left) => {
     const width = Math.min(side, frame.width - left);
-    const task = tileTask(tiler, await tiler.surface, { left, top, width, height });
+    const task = tileTask(tiler, await tiler.surface(), { left, top, width, height });
     if (task === null) return;
     const solution = await solve(task);
     for (let j = 0; j < height; j++) values.set(solution.values.subarray(j * width, (j + 1) * width), j * frame.width + left);
