@@ -23,8 +23,8 @@ export const GRID_DEFAULTS = Object.freeze({
   /** Smith & Wessel (1990) advise about 0.25 for potential fields. */
   tension: 0.25,
   reachM: NaN,
-  /** A tenth of a nanotesla where the readings span 5,000 nT: below the noise of any magnetometer in the field. */
-  tolerance: 2e-5,
+  /** A hundredth of a nanotesla where the readings span 5,000 nT: so far may two tiles differ at their seam, which nobody can see. */
+  tolerance: 2e-6,
   maxSteps: 200,
   bounds: null,
 });

@@ -10,7 +10,7 @@ import type { Operation } from './types.js';
 /** Reduced readings to a grid of the residual. */
 export const grid: Operation = {
   id: 'grid',
-  version: '1.1.0',
+  version: '1.2.0',
   title: 'Readings to a residual grid',
   summary: 'Lays a surface of minimum curvature in tension through the reduced readings, or explains them by a layer of sources below; cells beyond a stated reach from readings stay empty. On request each cell has its standard error.',
   parameters: objectSchema({
