@@ -23,8 +23,8 @@ export const GRID_DEFAULTS = Object.freeze({
   /** Smith & Wessel (1990) advise about 0.25 for potential fields. */
   tension: 0.25,
   reachM: NaN,
-  /** A hundredth of a nanotesla where the readings span 5,000 nT: so far may two tiles differ at their seam, which nobody can see. */
-  tolerance: 2e-6,
+  /** A hundredth of a nanotesla where the readings span 4,000 nT: so little may two tiles differ at their seam. */
+  tolerance: 2.5e-6,
   maxSteps: 200,
   bounds: null,
 });

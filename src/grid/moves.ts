@@ -3,7 +3,7 @@ const SQUARE = 32;
 /** Squares around one that still moves which are solved with it: what lies beyond hardly feels it. */
 const MARGIN = 1;
 /** Bounds within which the rate of convergence is believed. */
-const BEST_RATE = 0.15;
+const BEST_RATE = 0.25;
 const WORST_RATE = 0.95;
 
 export interface Window {
@@ -15,7 +15,7 @@ export interface Window {
 
 /**
  * How far a surface moves from one cycle of its solver to the next, square by square, and what that says of the error that
- * is left. Only nodes that are watched count.
+ * is left.
  */
 export class Moves {
   readonly #width: number;
@@ -25,9 +25,11 @@ export class Moves {
   readonly #before: Float64Array;
   readonly #across: number;
   readonly #down: number;
-  #largest: Float64Array;
-  #largestBefore: Float64Array;
+  /** Of all nodes, and of those that are watched. */
+  readonly #all: LargestMoves;
+  readonly #watched: LargestMoves;
 
+  /** `watch`: 1 at nodes whose error counts; null where all do. */
   constructor(z: Float64Array, { width, height, watch }: { width: number; height: number; watch: Uint8Array | null }) {
     this.#width = width;
     this.#height = height;
@@ -35,69 +37,91 @@ export class Moves {
     this.#before = z.slice();
     this.#across = Math.ceil(width / SQUARE);
     this.#down = Math.ceil(height / SQUARE);
-    this.#largest = new Float64Array(this.#across * this.#down).fill(NaN);
-    this.#largestBefore = this.#largest.slice();
+    this.#all = largestMoves(this.#across * this.#down);
+    this.#watched = watch ? largestMoves(this.#across * this.#down) : this.#all;
   }
 
   /** Looks at the surface after a cycle. */
   note(z: Float64Array): void {
-    [this.#largest, this.#largestBefore] = [this.#largestBefore, this.#largest];
-    this.#largest.fill(0);
-    const [width, height, before, watch] = [this.#width, this.#height, this.#before, this.#watch];
+    const [width, height, before, watch, all, watched] = [this.#width, this.#height, this.#before, this.#watch, this.#all, this.#watched];
+    next(all);
+    if (watch) next(watched);
     for (let j = 0; j < height; j++) {
-      const row = Math.floor(j / SQUARE) * this.#across;
       for (let c = 0; c < this.#across; c++) {
+        const square = Math.floor(j / SQUARE) * this.#across + c;
         const span = [j * width + c * SQUARE, j * width + Math.min(width, (c + 1) * SQUARE)] as const;
-        this.#largest[row + c] = Math.max(this.#largest[row + c]!, largestMove(z, before, { watch, span }));
+        noteSpan(z, before, { span, watch, square, all: all.now, watched: watched.now });
       }
     }
     before.set(z);
   }
 
-  /** Largest move, as a share of the largest of the cycle before; NaN in the first. */
+  /** Largest move of a watched node, as a share of the largest of the cycle before; NaN in the first. */
   get rate(): number {
-    const largest = (all: Float64Array): number => all.reduce((most, each) => Math.max(most, each), 0);
-    return largest(this.#largest) / largest(this.#largestBefore);
+    const largest = (moves: Float64Array): number => moves.reduce((most, each) => Math.max(most, each), 0);
+    return largest(this.#watched.now) / largest(this.#watched.before);
   }
 
-  /** Estimate of the largest error that is left. */
+  /** Estimate of the largest error that is left at a watched node. */
   get remaining(): number {
-    return this.#largest.reduce((most, _, square) => Math.max(most, this.#left(square)), 0);
+    return this.#watched.now.reduce((most, _, square) => Math.max(most, left(this.#watched, square)), 0);
   }
 
-  /** Windows around all squares in which more than `tolerance` may be left. They do not overlap. */
+  /**
+   * Windows around all squares in which more than `tolerance` may be left, at any node: where nobody watches, the surface
+   * may be far from its end and still pull on what lies beside. They do not overlap.
+   */
   unsettled(tolerance: number): Window[] {
     const windows: Square[] = [];
-    for (let square = 0; square < this.#largest.length; square++) {
-      if (this.#left(square) <= tolerance) continue;
+    for (let square = 0; square < this.#all.now.length; square++) {
+      if (left(this.#all, square) <= tolerance) continue;
       const [i, j] = [square % this.#across, Math.floor(square / this.#across)];
       addJoined(windows, {
         left: Math.max(0, i - MARGIN), top: Math.max(0, j - MARGIN),
         right: Math.min(this.#across, i + MARGIN + 1), bottom: Math.min(this.#down, j + MARGIN + 1),
       });
     }
-    return windows.map(({ left, top, right, bottom }) => ({
-      left: left * SQUARE, top: top * SQUARE,
-      width: Math.min(this.#width, right * SQUARE) - left * SQUARE, height: Math.min(this.#height, bottom * SQUARE) - top * SQUARE,
+    return windows.map(({ left: west, top, right, bottom }) => ({
+      left: west * SQUARE, top: top * SQUARE,
+      width: Math.min(this.#width, right * SQUARE) - west * SQUARE, height: Math.min(this.#height, bottom * SQUARE) - top * SQUARE,
     }));
-  }
-
-  /** Moves fall about geometrically: what is still to come is their sum. */
-  #left(square: number): number {
-    const move = this.#largest[square]!;
-    const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, move / this.#largestBefore[square]! || 0));
-    return (move * rate) / (1 - rate);
   }
 }
 
-/** Of the watched nodes of a span. */
-function largestMove(z: Float64Array, before: Float64Array, { watch, span: [from, to] }: { watch: Uint8Array | null; span: readonly [number, number] }): number {
-  let largest = 0;
+/** Of each square, in the last cycle and in the one before. */
+interface LargestMoves {
+  now: Float64Array;
+  before: Float64Array;
+}
+
+function largestMoves(squares: number): LargestMoves {
+  return { now: new Float64Array(squares).fill(NaN), before: new Float64Array(squares).fill(NaN) };
+}
+
+function next(moves: LargestMoves): void {
+  [moves.now, moves.before] = [moves.before, moves.now];
+  moves.now.fill(0);
+}
+
+/** Moves fall about geometrically: what is still to come is their sum. */
+function left({ now, before }: LargestMoves, square: number): number {
+  const move = now[square]!;
+  const rate = Math.min(WORST_RATE, Math.max(BEST_RATE, move / before[square]! || 0));
+  return (move * rate) / (1 - rate);
+}
+
+function noteSpan(z: Float64Array, before: Float64Array, { span: [from, to], watch, square, all, watched }: {
+  span: readonly [number, number]; watch: Uint8Array | null; square: number; all: Float64Array; watched: Float64Array;
+}): void {
+  let largest = all[square]!;
+  let largestWatched = watched[square]!;
   for (let k = from; k < to; k++) {
     const move = Math.abs(z[k]! - before[k]!);
-    if (move > largest && (watch === null || watch[k] !== 0)) largest = move;
+    if (move > largest) largest = move;
+    if (move > largestWatched && (watch === null || watch[k] !== 0)) largestWatched = move;
   }
-  return largest;
+  all[square] = largest;
+  watched[square] = largestWatched;
 }
 
 interface Square {
