@@ -1,9 +1,14 @@
 import { UserError } from '../errors.js';
 import { median } from '../numerics/robust.js';
 import type { Grid } from '../raster/types.js';
+import { MAX_CELLS } from './gridFrame.js';
+import { gridLayout } from './gridLayout.js';
+import { GRID_DEFAULTS } from './gridOptions.js';
 import { gridReadings } from './gridReadings.js';
+import { short } from './gridRemarks.js';
 import type { TiledOptions } from './gridTiled.js';
-import { gridBySources } from './sources/gridBySources.js';
+import { reachedCells, unsolvedGrid } from './reachedCells.js';
+import { gridBySources, type SourcesGrid } from './sources/gridBySources.js';
 import { layerDepthM } from './sources/layerDepth.js';
 import { lineNoise } from './sources/lineNoise.js';
 import type { HighSamples } from './sources/placedReadings.js';
@@ -52,31 +57,33 @@ const LEVEL_SHARE = 0.01;
 export async function gridByMethod(samples: WalkedSamples, options: MethodOptions = {}): Promise<MethodResult> {
   const { method, error, noiseNt: stated, ...plain } = { ...METHOD_DEFAULTS, ...options };
   checkMethod(method);
-  const grid = await gridReadings(samples, plain);
-  if (method === 'tension' && !error) return { grid, error: null, method };
-  const { width, height, west, north, cellM, spacingM } = grid;
+  if (method === 'tension' && !error) return { grid: await gridReadings(samples, plain), error: null, method };
+  const layout = gridLayout(samples, { ...GRID_DEFAULTS, maxCells: MAX_CELLS, ...plain });
+  const { frame, spacingM } = layout;
   const noiseNT = stated >= 0 ? stated : lineNoise(samples.value, samples.line) || 0;
   const { heights, levelM, spreadM } = levelled(samples);
   const depthM = layerDepthM(heights, { spacingM, noiseNT });
   const used = method === 'auto' ? (spacingM <= RESOLVED_SHARE * depthM && spreadM <= LEVEL_SHARE * depthM ? 'tension' : 'sources') : method;
   const why = `Sources lie most likely ${short(depthM)} m below the sensor; lines are ${short(spacingM)} m apart.`;
-  if (used === 'tension' && !error) return { grid: { ...grid, notes: [...grid.notes, why] }, error: null, method: used };
+  const fieldAt = (wanted: Uint8Array): SourcesGrid => gridBySources(heights, frame, { spacingM, noiseNT, depthM, wanted, error });
 
-  const wanted = Uint8Array.from(grid.values, (value) => (Number.isNaN(value) ? 0 : 1));
-  const sources = gridBySources(heights, { width, height, west, north, cellM }, { spacingM, noiseNT, depthM, wanted, error });
-  const notes = [why];
-  const errorGrid = sources.error && { width, height, west, north, cellM, values: sources.error };
-  if (errorGrid) notes.push(unknownNote(errorGrid.values, wanted));
-  if (used === 'tension') {
-    errorGrid?.values.forEach((sd, k) => { errorGrid.values[k] = Math.hypot(sd, grid.values[k]! - sources.values[k]!); });
-    return { grid: { ...grid, notes: [...grid.notes, ...notes] }, error: errorGrid, method: used };
+  if (used === 'sources') {
+    const { reached, occupied } = reachedCells(samples, layout);
+    const field = fieldAt(reached);
+    const how = `Grid of ${frame.width} × ${frame.height} cells of ${short(frame.cellM)} m, by equivalent sources, on the level of the sensor's median height${samples.up ? ` (${short(levelM)} m)` : ''}; noise of a reading ${short(noiseNT)} nT.`;
+    return noted(unsolvedGrid(field.values, { layout, occupied, how }), { why, error: field.error, method: used });
   }
-  notes.unshift(
-    `Grid of ${width} × ${height} cells of ${short(cellM)} m, by equivalent sources, on the level of the sensor's median height${samples.up ? ` (${short(levelM)} m)` : ''}; noise of a reading ${short(noiseNT)} nT.`,
-    grid.notes[1]!,
-  );
-  // The plate only lent its frame: how far it had converged is no matter here.
-  return { grid: { ...grid, values: sources.values, iterations: 0, remaining: 0, remainingShare: 0, converged: true, notes, warnings: grid.converged ? grid.warnings : grid.warnings.slice(0, -1) }, error: errorGrid, method: used };
+  const grid = await gridReadings(samples, plain);
+  if (!error) return noted(grid, { why, error: null, method: used });
+  const field = fieldAt(Uint8Array.from(grid.values, (value) => (Number.isNaN(value) ? 0 : 1)));
+  return noted(grid, { why, error: field.error!.map((sd, k) => Math.hypot(sd, grid.values[k]! - field.values[k]!)), method: used });
+}
+
+/** The grid with what is to be said of its sources and its error. */
+function noted(grid: GridResult, { why, error, method }: { why: string; error: Float32Array | null; method: MethodResult['method'] }): MethodResult {
+  if (!error) return { grid: { ...grid, notes: [...grid.notes, why] }, error, method };
+  const { width, height, west, north, cellM } = grid;
+  return { grid: { ...grid, notes: [...grid.notes, why, unknownNote(error, grid)] }, error: { width, height, west, north, cellM, values: error }, method };
 }
 
 export function checkMethod(method: GridMethod): void {
@@ -94,16 +101,8 @@ function levelled(samples: WalkedSamples): { heights: HighSamples; levelM: numbe
   return { heights: { ...samples, up: above }, levelM, spreadM };
 }
 
-function unknownNote(error: ArrayLike<number>, wanted: Uint8Array): string {
-  let filled = 0;
+function unknownNote(error: Float32Array, { values, filled }: GridResult): string {
   let unknown = 0;
-  for (let k = 0; k < wanted.length; k++) {
-    filled += wanted[k]!;
-    if (wanted[k] === 1 && Number.isNaN(error[k])) unknown++;
-  }
-  return `In ${short((100 * unknown) / filled)} % of the filled cells the readings leave the field unknown; the error grid is empty there.`;
-}
-
-function short(value: number): string {
-  return String(Number(value.toPrecision(3)));
+  for (let k = 0; k < values.length; k++) if (Number.isNaN(error[k]!) && !Number.isNaN(values[k]!)) unknown++;
+  return `In ${short((100 * unknown) / Math.max(1, filled))} % of the filled cells the readings leave the field unknown; the error grid is empty there.`;
 }

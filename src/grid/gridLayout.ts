@@ -1,3 +1,4 @@
+import { UserError } from '../errors.js';
 import { gridFrame, samplesBounds } from './gridFrame.js';
 import type { Bounds, GridFrame, Samples } from './types.js';
 
@@ -29,6 +30,11 @@ export function gridLayout(samples: Samples, { bounds, maxCells, ...sizes }: {
   const frame = gridFrame(bounds ?? grow(dataBounds, reachM), cellM, maxCells);
   const solved = withRim(gridFrame(within(frameBounds(frame), dataBounds, reachM), cellM, maxCells));
   return { spacingM, cellM, reachM, frame, solved };
+}
+
+/** What is thrown where bounds leave all readings out. */
+export function noneInside(): UserError {
+  return new UserError({ code: 'no_data', where: 'grid', found: 'no reading inside the bounds of the grid', wanted: 'at least one', advice: 'check the bounds' });
 }
 
 function meanDistance({ x, y, value }: Samples, bounds: Bounds): number {

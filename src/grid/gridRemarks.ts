@@ -7,24 +7,34 @@ const COARSEST = 1 / 2;
 
 /** What there is to say of a grid in tension, in words; `tolerance` is the share of the range that the solver was to reach. */
 export function gridRemarks(grid: Omit<GridResult, 'values' | keyof GridRemarks>, tolerance: number): GridRemarks {
-  const { width, height, cellM, spacingM, reachM, tension, filled, pinned, iterations, remainingShare, converged } = grid;
+  const { width, height, cellM, spacingM, tension, iterations, remainingShare, converged } = grid;
   const left = `${remainingShare.toExponential(1)} of the readings' range`;
-  const advised = short(spacingM / CELLS_PER_SPACING);
-  const share = cellM / spacingM;
-  const warnings: string[] = [];
-  if (share < FINEST) warnings.push(`Cells of ${short(cellM)} m are finer than the readings bear: lines ${short(spacingM)} m apart support ${advised} m; what stands between lines is interpolation.`);
-  if (share > COARSEST) warnings.push(`Cells of ${short(cellM)} m are coarse for lines ${short(spacingM)} m apart: ${advised} m would keep narrow anomalies.`);
+  const warnings = cellWarnings(cellM, spacingM);
   if (!converged) warnings.push(`The grid's solver stopped after ${iterations} steps at about ${left}; ${tolerance.toExponential(0)} was wanted.`);
   return {
     warnings,
     notes: [
       `Grid of ${width} × ${height} cells of ${short(cellM)} m, by minimum curvature in tension ${short(tension)} (line spacing taken as ${short(spacingM)} m).`,
-      `${filled} cells are filled, all within ${short(reachM)} m of a reading; ${pinned} of them hold readings.`,
+      filledNote(grid),
       `The surface was solved in ${iterations} steps to about ${left}.`,
     ],
   };
 }
 
-function short(value: number): string {
+/** What the user has to know of the size of the cells. */
+export function cellWarnings(cellM: number, spacingM: number): string[] {
+  const advised = short(spacingM / CELLS_PER_SPACING);
+  const share = cellM / spacingM;
+  if (share < FINEST) return [`Cells of ${short(cellM)} m are finer than the readings bear: lines ${short(spacingM)} m apart support ${advised} m; what stands between lines is interpolation.`];
+  if (share > COARSEST) return [`Cells of ${short(cellM)} m are coarse for lines ${short(spacingM)} m apart: ${advised} m would keep narrow anomalies.`];
+  return [];
+}
+
+export function filledNote({ filled, reachM, pinned }: Pick<GridResult, 'filled' | 'reachM' | 'pinned'>): string {
+  return `${filled} cells are filled, all within ${short(reachM)} m of a reading; ${pinned} of them hold readings.`;
+}
+
+/** Three digits are enough for a sentence. */
+export function short(value: number): string {
   return String(Number(value.toPrecision(3)));
 }

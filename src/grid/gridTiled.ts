@@ -4,7 +4,7 @@ import { bucketSamples, samplesWithin, type Buckets } from './buckets.js';
 import { cellMeans } from './cellMeans.js';
 import { coarseSurface, surfaceAt, type CoarseSurface } from './coarseSurface.js';
 import { anyGap, gapsOf, type Gaps } from './gaps.js';
-import { gridLayout, type GridLayout } from './gridLayout.js';
+import { gridLayout, noneInside, type GridLayout } from './gridLayout.js';
 import { GRID_DEFAULTS, type GridOptions } from './gridOptions.js';
 import { gridRemarks } from './gridRemarks.js';
 import { rimNodes } from './pins.js';
@@ -83,9 +83,7 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const { frame, solved, spacingM, reachM, cellM } = layout;
   const coarseFrame = coarseOf(solved);
   const means = cellMeans(samples, coarseFrame);
-  if (means.cell.length === 0) {
-    throw new UserError({ code: 'no_data', where: 'grid', found: 'no reading inside the bounds of the grid', wanted: 'at least one', advice: 'check the bounds' });
-  }
+  if (means.cell.length === 0) throw noneInside();
   const trend = fitTrend(means, cellM);
   const tension = trend.onLine ? Math.max(wanted, TENSION_ON_LINE) : wanted;
   const range = robustRange(samples.value);

@@ -22,6 +22,7 @@ export interface GridResult extends Grid, GridRemarks {
   readonly reachM: number;
   /** Line spacing (or mean distance of readings) that cell, reach and tension were judged by, metres. */
   readonly spacingM: number;
+  /** NaN where no plate was solved; then there were no steps and nothing was left. */
   readonly tension: number;
   /** Cells with a value. */
   readonly filled: number;

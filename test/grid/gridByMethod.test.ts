@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { gridByMethod } from '../../src/grid/gridByMethod.js';
 import { gridReadings } from '../../src/grid/gridReadings.js';
+import { solveTile, type TileTask } from '../../src/grid/solveTile.js';
 import { UserError } from '../../src/errors.js';
 import type { Grid } from '../../src/raster/types.js';
 import { madeSurvey, type MadeSurvey } from './support/madeSurvey.js';
@@ -54,9 +55,22 @@ describe('gridByMethod', () => {
     for (const value of level.error!.values) if (!Number.isNaN(value)) expect(value).toBeCloseTo(0, 5);
   });
 
-  it('leaves the same cells empty as the plate does', async () => {
-    const [plate, sources] = await Promise.all((['tension', 'sources'] as const).map(async (method) => (await gridByMethod(flat, { ...OPTIONS, method })).grid.values));
-    expect(Array.from(sources!, Number.isNaN)).toEqual(Array.from(plate!, Number.isNaN));
+  it.each([null, { west: -10, south: -30, east: 11, north: 2 }])('fills the cells that the plate does and solves none, in bounds %j', async (bounds) => {
+    const plate = (await gridByMethod(flat, { ...OPTIONS, bounds, method: 'tension' })).grid;
+    let solved = 0;
+    const tiled = { ...OPTIONS, bounds, tileCells: 8, overlapSpacings: 1, solve: (task: TileTask) => (solved++, solveTile(task)) };
+    const sources = (await gridByMethod(flat, { ...tiled, method: 'sources' })).grid;
+    expect(solved).toBe(0);
+    expect(Array.from(sources.values, Number.isNaN)).toEqual(Array.from(plate.values, Number.isNaN));
+    expect(sources).toMatchObject({ width: plate.width, height: plate.height, west: plate.west, north: plate.north, filled: plate.filled, pinned: plate.pinned, reachM: plate.reachM, spacingM: plate.spacingM, converged: true });
+    expect(sources.notes[1]).toBe(plate.notes[1]);
+    await gridByMethod(flat, { ...tiled, method: 'tension' });
+    expect(solved).toBeGreaterThan(0);
+  });
+
+  it('complains where the bounds leave all readings out', async () => {
+    const bounds = { west: 900, south: 900, east: 950, north: 950 };
+    for (const method of ['tension', 'sources'] as const) await expect(gridByMethod(flat, { ...OPTIONS, bounds, method })).rejects.toMatchObject({ code: 'no_data' });
   });
 
   it('refuses a method that it does not know', async () => {
