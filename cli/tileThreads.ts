@@ -26,8 +26,8 @@ export function tileThreads(count: number = availableParallelism()): TileThreads
   let end: Error | null = null;
   const give = (worker: Worker, one: Waiting): void => {
     busy.set(worker, one);
-    const { x, y, value, rimNode, rimValue } = one.task;
-    worker.postMessage(one.task, [x, y, value, rimNode, rimValue].map(({ buffer }) => buffer as ArrayBuffer));
+    const { x, y, value, weight, rimNode, rimValue } = one.task;
+    worker.postMessage(one.task, [x, y, value, weight, rimNode, rimValue].map(({ buffer }) => buffer as ArrayBuffer));
   };
   const start = (): Worker => {
     const worker = new Worker(new URL('./tileWorker.js', import.meta.url));

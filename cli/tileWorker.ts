@@ -26,7 +26,7 @@ function madeTile(): TileTask {
   const rimNode = Int32Array.from({ length: 2 * SIDE }, (_, n) => n);
   return {
     frame: { width: SIDE, height: SIDE, west: 0, north: SIDE, cellM: 1 }, own: { left: 5, top: 5, width: SIDE - 10, height: SIDE - 10 },
-    x, y, value: x.map((at, n) => 100 * Math.sin(at / 5) * Math.cos(y[n]! / 7)),
+    x, y, value: x.map((at, n) => 100 * Math.sin(at / 5) * Math.cos(y[n]! / 7)), weight: new Float64Array(0),
     trend: { x: 0, y: 0, level: 0.5, perEastM: 0.01, perNorthM: 0.01, onLine: false }, rimNode, rimValue: new Float64Array(rimNode.length),
     tension: 0.25, spacingM: APART, reachM: 0.75 * APART, tolerance: 1e-3, maxSteps: 20,
   };

@@ -1,12 +1,10 @@
-import { emptyPins, type Pins } from './pins.js';
+import { meansOf, middles, type Groups } from './middles.js';
+import type { Pins } from './pins.js';
 import { runningSum } from './runningSum.js';
 import type { GridFrame, Samples } from './types.js';
 
-/** Samples sorted by the cell that they lie in. */
-export interface CellIndex {
-  /** Samples of cell k are order[start[k]] … order[start[k + 1] − 1]. */
-  readonly start: Int32Array;
-  readonly order: Int32Array;
+/** Samples sorted by the cell that they lie in: a group for each cell, row-major. */
+export interface CellIndex extends Groups {
   /** Place in cells: (0, 0) is the centre of the north-western cell; columns east, rows south. */
   readonly column: Float64Array;
   readonly row: Float64Array;
@@ -40,59 +38,22 @@ function orderByCell(cell: Int32Array, start: Int32Array): Int32Array {
 }
 
 /**
- * One value for each cell that holds samples: the mean of the middle half of its values (from three samples on), at the
- * mean place of those same samples. So a quarter of wild values on either side does no harm, and a slope inside the cell
- * moves value and place alike.
- * Source: Tukey (1977), Exploratory Data Analysis (midmean).
+ * One value for each cell that holds samples: the mean of the middle half of its values, at the mean place of those same
+ * samples, so that a slope inside the cell moves value and place alike. `weight` is that of each sample; empty: all alike.
+ * The weight of a pin is the sum of those that it stands for.
  */
-export function binSamples({ start, order, column, row }: CellIndex, value: ArrayLike<number>, width: number): Pins {
-  let count = 0;
-  for (let k = 0; k + 1 < start.length; k++) if (start[k + 1]! > start[k]!) count++;
-  const pins = emptyPins(count);
-  for (let k = 0, n = 0; k + 1 < start.length; k++) {
-    const from = start[k]!;
-    const to = start[k + 1]!;
-    if (to === from) continue;
-    // Three give their median, four and more lose a quarter at either end.
-    const cut = (to - from + 1) >> 2;
-    if (cut > 0) sortByValue(order, value, [from, to]);
-    let sum = 0;
-    let u = 0;
-    let v = 0;
-    for (let s = from + cut; s < to - cut; s++) {
-      const sample = order[s]!;
-      sum += value[sample]!;
-      u += column[sample]!;
-      v += row[sample]!;
-    }
-    const used = to - from - 2 * cut;
-    const j = Math.floor(k / width);
-    pins.node[n] = k;
-    pins.value[n] = sum / used;
-    pins.dx[n] = u / used - (k - j * width);
-    pins.dy[n] = v / used - j;
-    pins.weight[n] = used;
-    n++;
-  }
+export function binSamples({ start, order, column, row }: CellIndex, { value, weight }: { readonly value: ArrayLike<number>; readonly weight: ArrayLike<number> }, width: number): Pins {
+  const middle = middles({ start, order }, value, weight);
+  const pins = { node: middle.group, value: meansOf(value, middle), dx: meansOf(column, middle), dy: meansOf(row, middle), weight: middle.total };
+  fromNodes(pins, width);
   return pins;
 }
 
-/** By insertion: a cell holds few samples as a rule. A cell that holds very many is sorted at large. */
-function sortByValue(order: Int32Array, value: ArrayLike<number>, [from, to]: readonly [number, number]): void {
-  if (to - from > INSERTION_LIMIT) {
-    order.subarray(from, to).sort((a, b) => value[a]! - value[b]! || a - b);
-    return;
-  }
-  for (let s = from + 1; s < to; s++) {
-    const sample = order[s]!;
-    let at = s;
-    while (at > from && value[order[at - 1]!]! > value[sample]!) {
-      order[at] = order[at - 1]!;
-      at--;
-    }
-    order[at] = sample;
+/** Places in cells to offsets from the pins' nodes. */
+function fromNodes({ node, dx, dy }: Pins, width: number): void {
+  for (let n = 0; n < node.length; n++) {
+    const j = Math.floor(node[n]! / width);
+    dx[n]! -= node[n]! - j * width;
+    dy[n]! -= j;
   }
 }
-
-/** Beyond this, insertion's square costs more than a call for each comparison. */
-const INSERTION_LIMIT = 64;

@@ -4,6 +4,8 @@ import type { GridFrame, Samples } from './types.js';
 /** Readings sorted by squares of ground, so that those of any rectangle are found without looking at all. */
 export interface Buckets {
   readonly samples: Samples;
+  /** Of each reading; empty: all alike. */
+  readonly weight: Float64Array;
   /** The squares; row-major like the cells of a grid. */
   readonly frame: GridFrame;
   /** Readings of square b are order[start[b]] … order[start[b + 1] − 1]. */
@@ -12,7 +14,7 @@ export interface Buckets {
 }
 
 /** Sorts in two passes, in the order of readings within a square; readings without place or value, or outside, are left out. */
-export function bucketSamples(samples: Samples, frame: GridFrame): Buckets {
+export function bucketSamples(samples: Samples, weight: Float64Array, frame: GridFrame): Buckets {
   const { x, y } = samples;
   const start = new Int32Array(frame.width * frame.height + 1);
   for (let n = 0; n < x.length; n++) {
@@ -26,7 +28,7 @@ export function bucketSamples(samples: Samples, frame: GridFrame): Buckets {
     const b = squareOf(samples, frame, n);
     if (b >= 0) order[next[b]!++] = n;
   }
-  return { samples, frame, start, order };
+  return { samples, weight, frame, start, order };
 }
 
 function squareOf({ x, y, value }: Samples, { width, height, west, north, cellM }: GridFrame, n: number): number {
@@ -40,10 +42,12 @@ export interface Taken {
   readonly x: Float64Array;
   readonly y: Float64Array;
   readonly value: Float64Array;
+  /** Empty: all alike. */
+  readonly weight: Float64Array;
 }
 
 /** Copies of the readings in a rectangle, its edges included. */
-export function samplesWithin({ samples, frame, start, order }: Buckets, { width, height, west, north, cellM }: GridFrame): Taken {
+export function samplesWithin({ samples, weight: weights, frame, start, order }: Buckets, { width, height, west, north, cellM }: GridFrame): Taken {
   const east = west + width * cellM;
   const south = north - height * cellM;
   const clamp = (at: number, last: number): number => Math.min(last, Math.max(0, Math.floor(at)));
@@ -56,6 +60,7 @@ export function samplesWithin({ samples, frame, start, order }: Buckets, { width
   const x = new Float64Array(most);
   const y = new Float64Array(most);
   const value = new Float64Array(most);
+  const weight = new Float64Array(weights.length > 0 ? most : 0);
   let to = 0;
   for (let j = top; j <= bottom; j++) {
     for (let s = start[j * frame.width + left]!; s < start[j * frame.width + right + 1]!; s++) {
@@ -65,8 +70,9 @@ export function samplesWithin({ samples, frame, start, order }: Buckets, { width
       if (atX < west || atX > east || atY < south || atY > north) continue;
       x[to] = atX;
       y[to] = atY;
+      if (weights.length > 0) weight[to] = weights[n]!;
       value[to++] = samples.value[n]!;
     }
   }
-  return { x: x.slice(0, to), y: y.slice(0, to), value: value.slice(0, to) };
+  return { x: x.slice(0, to), y: y.slice(0, to), value: value.slice(0, to), weight: weight.slice(0, to) };
 }

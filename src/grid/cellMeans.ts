@@ -9,10 +9,10 @@ export interface CellMeans {
   readonly value: Float64Array;
 }
 
-/** Plain means in one pass; readings without place or value, or outside the frame, are left out. */
-export function cellMeans({ x, y, value }: Samples, { width, height, west, north, cellM }: GridFrame): CellMeans {
+/** Weighted means in one pass, all alike where `weight` is empty; readings without place or value, or outside the frame, are left out. */
+export function cellMeans({ x, y, value }: Samples, weight: ArrayLike<number>, { width, height, west, north, cellM }: GridFrame): CellMeans {
   const size = width * height;
-  const count = new Float64Array(size);
+  const total = new Float64Array(size);
   const sumX = new Float64Array(size);
   const sumY = new Float64Array(size);
   const sum = new Float64Array(size);
@@ -22,20 +22,21 @@ export function cellMeans({ x, y, value }: Samples, { width, height, west, north
     const v = value[n]!;
     if (!(i >= 0 && i < width && j >= 0 && j < height && v - v === 0)) continue;
     const k = j * width + i;
-    count[k]!++;
+    const w = weight.length > 0 ? weight[n]! : 1;
+    total[k]! += w;
     // Places from the corner, so that sums keep their digits.
-    sumX[k]! += x[n]! - west;
-    sumY[k]! += north - y[n]!;
-    sum[k]! += v;
+    sumX[k]! += w * (x[n]! - west);
+    sumY[k]! += w * (north - y[n]!);
+    sum[k]! += w * v;
   }
   const cells: number[] = [];
-  for (let k = 0; k < size; k++) if (count[k]! > 0) cells.push(k);
+  for (let k = 0; k < size; k++) if (total[k]! > 0) cells.push(k);
   const cell = Int32Array.from(cells);
   const mean = (of: (k: number) => number): Float64Array => Float64Array.from(cell, of);
   return {
     cell,
-    x: mean((k) => west + sumX[k]! / count[k]!),
-    y: mean((k) => north - sumY[k]! / count[k]!),
-    value: mean((k) => sum[k]! / count[k]!),
+    x: mean((k) => west + sumX[k]! / total[k]!),
+    y: mean((k) => north - sumY[k]! / total[k]!),
+    value: mean((k) => sum[k]! / total[k]!),
   };
 }

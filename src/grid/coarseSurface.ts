@@ -20,7 +20,7 @@ export async function coarseSurface(means: CellMeans, { frame, trend, tension, s
   const { width, height, west, north, cellM } = frame;
   const { values } = await solve({
     // Copies, since a thread takes what it is given.
-    frame, own: { left: 0, top: 0, width, height }, x: means.x.slice(), y: means.y.slice(), value: means.value.slice(),
+    frame, own: { left: 0, top: 0, width, height }, x: means.x.slice(), y: means.y.slice(), value: means.value.slice(), weight: new Float64Array(0),
     trend, rimNode: new Int32Array(0), rimValue: new Float64Array(0), tension, spacingM, reachM: Infinity,
     tolerance: COARSE_TOLERANCE * range, maxSteps: COARSE_STEPS,
   });

@@ -38,3 +38,8 @@ export function filledNote({ filled, reachM, pinned }: Pick<GridResult, 'filled'
 export function short(value: number): string {
   return String(Number(value.toPrecision(3)));
 }
+
+/** Lowest to highest, or the one number that both are. */
+export function range([least, most]: readonly [number, number]): string {
+  return short(least) === short(most) ? short(least) : `${short(least)} to ${short(most)}`;
+}

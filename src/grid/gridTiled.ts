@@ -9,6 +9,7 @@ import { GRID_DEFAULTS, type GridOptions } from './gridOptions.js';
 import { gridRemarks } from './gridRemarks.js';
 import { rimNodes } from './pins.js';
 import { robustRange } from './robustRange.js';
+import { sampleWeights } from './sampleErrors.js';
 import { solveTile, type SolveTile, type TileTask } from './solveTile.js';
 import { fitTrend } from './trend.js';
 import type { GridFrame, GridRemarks, GridResult, Samples } from './types.js';
@@ -82,7 +83,8 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const layout = gridLayout(samples, { ...sizes, bounds, maxCells });
   const { frame, solved, spacingM, reachM, cellM } = layout;
   const coarseFrame = coarseOf(solved);
-  const means = cellMeans(samples, coarseFrame);
+  const weight = sampleWeights(samples);
+  const means = cellMeans(samples, weight, coarseFrame);
   if (means.cell.length === 0) throw noneInside();
   const trend = fitTrend(means, cellM);
   const tension = trend.onLine ? Math.max(wanted, TENSION_ON_LINE) : wanted;
@@ -99,7 +101,7 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const tiler: Tiler = {
     layout, tileCells: single ? Infinity : tileCells, overlapCells, gapOverlapCells: Math.max(overlapCells, cellsOf(gapOverlapSpacings)),
     gaps: gapsOf(means, coarseFrame, reachM), surface,
-    buckets: bucketSamples(samples, widened(solved, BUCKET_CELLS)),
+    buckets: bucketSamples(samples, weight, widened(solved, BUCKET_CELLS)),
     common: { trend, tension, spacingM, reachM, tolerance: tolerance * Math.max(range, Math.abs(trend.level) * 1e-12, 1e-300), maxSteps },
   };
   const totals = { filled: 0, pinned: 0, iterations: 0, remaining: 0, converged: true };

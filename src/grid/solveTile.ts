@@ -15,6 +15,8 @@ export interface TileTask {
   readonly x: Float64Array;
   readonly y: Float64Array;
   readonly value: Float64Array;
+  /** Of each reading, where several share a cell; empty: all alike. */
+  readonly weight: Float64Array;
   readonly trend: Trend;
   /** Nodes, ascending, that take a value where no readings are: the rim, from the surface of the whole ground. Less the trend. */
   readonly rimNode: Int32Array;
@@ -46,7 +48,7 @@ export function solveTile(task: TileTask): TileSolution {
   const { frame, own, tension, spacingM, reachM } = task;
   const { width, height, cellM } = frame;
   const index = indexByCell(task, frame);
-  const data = binSamples(index, task.value, width);
+  const data = binSamples(index, task, width);
   takeTrend(data, task);
   const mask = reachMask(index, frame, reachM);
   const inside = keepOwn(mask, task);

@@ -6,6 +6,8 @@ export interface Samples {
   readonly x: ArrayLike<number>;
   readonly y: ArrayLike<number>;
   readonly value: ArrayLike<number>;
+  /** Standard error of each value, in its unit: where several share a cell, they count by its inverse square. Absent: all alike. */
+  readonly sd?: ArrayLike<number>;
 }
 
 /** What there is to say of a grid, in words. */

@@ -1,6 +1,7 @@
 import { estimateLineSpacing } from '../grid/estimateLineSpacing.js';
 import { GRID_METHODS, gridByMethod, METHOD_DEFAULTS, type MethodOptions } from '../grid/gridByMethod.js';
 import { GRID_DEFAULTS } from '../grid/gridOptions.js';
+import { lineErrors } from '../grid/lineErrors.js';
 import { streamByMethod } from '../grid/streamByMethod.js';
 import type { Readings } from '../readings/types.js';
 import { camelKeys } from './camelKeys.js';
@@ -12,9 +13,10 @@ export const grid: Operation = {
   id: 'grid',
   version: '1.2.0',
   title: 'Readings to a residual grid',
-  summary: 'Lays a surface of minimum curvature in tension through the reduced readings, or explains them by a layer of sources below; cells beyond a stated reach from readings stay empty. On request each cell has its standard error.',
+  summary: 'Lays a surface of minimum curvature in tension through the reduced readings, explains them by a layer of sources below, or joins them by triangles; cells beyond a stated reach from readings stay empty. On request each cell has its standard error.',
   parameters: objectSchema({
-    method: { type: 'string', enum: [...GRID_METHODS], default: METHOD_DEFAULTS.method, description: '"tension" is quickest and takes no notice of the sensor\'s height; "sources" allows for it and keeps nearer to the field between lines further apart than the sources are deep; "auto" takes tension only where lines are closer than 0.8 times that depth and the sensor kept its height.' },
+    method: { type: 'string', enum: [...GRID_METHODS], default: METHOD_DEFAULTS.method, description: '"tension" is quickest and takes no notice of the sensor\'s height; "sources" allows for it and keeps nearer to the field between lines further apart than the sources are deep; "auto" takes tension only where lines are closer than 0.8 times that depth, the sensor kept its height and readings are about equally good, else sources; "linear" goes straight across Delaunay triangles of the readings and leaves cells outside their hull empty.' },
+    weights: { type: 'string', enum: ['equal', 'line'], default: 'equal', description: 'How readings count that share a cell, a place or a window: "equal", all alike; "line", by the noise of their own line (inverse variance, from fourth differences), for surveys with more than one sensor. Not with noise_nt.' },
     error: { type: 'boolean', default: METHOD_DEFAULTS.error, description: 'Also write a grid of the standard error of each cell, empty where the readings leave the field unknown.' },
     noise_nt: quantitySchema('nT', { minimum: 0, description: 'Standard deviation of the error of a reading, for sources and error; unsaid, it is taken from the readings.' }),
     cell_m: quantitySchema('m', { exclusiveMinimum: 0, description: 'Side of a cell; unsaid, a fifth of the line spacing, rounded.', examples: [1, '2 ft'] }),
@@ -34,6 +36,7 @@ export const grid: Operation = {
   sources: [
     'Briggs (1974), Machine contouring using minimum curvature, Geophysics 39, 39-48',
     'Smith & Wessel (1990), Gridding with continuous curvature splines in tension, Geophysics 55, 293-305',
+    'Delaunay (1934), Sur la sphère vide, Bulletin de l\'Académie des Sciences de l\'URSS 6, 793-800',
     'Dampney (1969), The equivalent source technique, Geophysics 34, 39-53',
     'Moritz (1980), Advanced Physical Geodesy, ch. 11 (least norm and collocation)',
     'Mardia & Marshall (1984), Maximum likelihood estimation of models for residual covariance in spatial regression, Biometrika 71, 135-146',
@@ -42,10 +45,12 @@ export const grid: Operation = {
   ],
   example: 'ironplat grid --survey survey.json --cell-m 1 --out delivery',
   async run({ parameters, inputs, solveTile, progress, warn }) {
-    const given = camelKeys<MethodOptions>(parameters);
+    const { weights, ...given } = camelKeys<MethodOptions & { readonly weights: 'equal' | 'line' }>(parameters);
     const { x, y, heightM, line, flag, residual } = inputs.readings as Readings;
     const value = residual.map((nT, n) => (flag[n] === 0 ? nT : NaN));
-    const samples = { x, y, up: heightM, line, value };
+    const errors = weights === 'line' ? lineErrors({ value, line }) : null;
+    if (errors) (errors.sd ? progress : warn)(errors.note);
+    const samples = { x, y, up: heightM, line, value, ...(errors?.sd ? { sd: errors.sd } : {}) };
     const spacingM = given.spacingM ?? estimateLineSpacing({ x, y, line, flag });
     const options = { ...given, spacingM, ...(solveTile ? { solve: solveTile } : {}) };
     const streamed = streamByMethod(samples, options);

@@ -13,12 +13,12 @@ import { builtProject } from '../support/built.js';
 const SIDE = 300;
 const OPTIONS = { cellM: 1, spacingM: 5, bounds: { west: 0, south: 0, east: SIDE, north: SIDE }, tileCells: 100, overlapSpacings: 4, gapOverlapSpacings: 4 } satisfies TiledOptions;
 
-/** Lines 5 m apart with a gap, waves and noise of 1 nT. */
+/** Lines 5 m apart with a gap, two readings to a cell, waves and noise of 1 nT and, at every second reading, of 4 nT. */
 function samples(): Samples {
   const random = new Random(4);
-  const places = Array.from({ length: (SIDE * SIDE) / 5 }, (_, n) => [(n % SIDE) + 0.5, 5 * Math.floor(n / SIDE) + 2.5] as const)
+  const places = Array.from({ length: (2 * SIDE * SIDE) / 5 }, (_, n) => [(n % (2 * SIDE)) / 2 + 0.25, 5 * Math.floor(n / (2 * SIDE)) + 2.5, 1 + 3 * (n % 2)] as const)
     .filter(([x, y]) => Math.hypot(x - 100, y - 180) > 20);
-  return { x: places.map(([x]) => x), y: places.map(([, y]) => y), value: places.map(([x, y]) => 50 * Math.sin(x / 20) * Math.cos(y / 30) + random.normal()) };
+  return { x: places.map(([x]) => x), y: places.map(([, y]) => y), value: places.map(([x, y, sd]) => 50 * Math.sin(x / 20) * Math.cos(y / 30) + sd * random.normal()), sd: places.map(([, , sd]) => sd) };
 }
 
 describe('tileThreads', () => {
@@ -40,7 +40,8 @@ describe('tileThreads', () => {
     settled.map((each) => (each.status === 'rejected' ? (each.reason as Error).message : null));
 
   it.each([1, 2, 3])('solves on %i threads what the main thread solves, to the bit', async (count) => {
-    expect(tasks).toHaveLength(9);
+    // The wide surface that the tiles' rims rest on, and the tiles.
+    expect(tasks).toHaveLength(1 + 9);
     const threads = tileThreads(count);
     try {
       expect(await gridReadings(samples(), { ...OPTIONS, solve: threads.solve })).toEqual(await gridReadings(samples(), OPTIONS));

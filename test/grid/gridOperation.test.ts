@@ -4,7 +4,9 @@ import { solveTile, type TileTask } from '../../src/grid/solveTile.js';
 import type { GridResult } from '../../src/grid/types.js';
 import type { Grid } from '../../src/raster/types.js';
 import type { StreamedGrid, Task } from '../../src/operations/types.js';
+import { Random } from '../../src/numerics/random.js';
 import type { Readings } from '../../src/readings/types.js';
+import { madeSurvey } from './support/madeSurvey.js';
 
 /** Ten lines 6 m apart, a reading a metre; every tenth reading flagged and wild. */
 function readings(): Readings {
@@ -56,12 +58,59 @@ describe('the grid operation', () => {
     for (let k = 0; k < residual.values.length; k++) if (Number.isNaN(residual.values[k]!)) expect(error!.values[k]).toBeNaN();
   });
 
+  it('says where no line is long enough to weigh its readings by', async () => {
+    const still = await run({ ...defaults, weights: 'line' });
+    expect(still.warnings).toEqual([expect.stringMatching(/No line is long enough/)]);
+    expect(still.residual.values).toEqual((await run(defaults)).residual.values);
+  });
+
   it('takes what it is told', async () => {
     const { residual, warnings } = await run({ ...defaults, cell_m: 0.5, reach_m: 2, tension: 0, spacing_m: 6 });
     expect(residual.cellM).toBe(0.5);
     expect(residual.reachM).toBe(2);
     expect(residual.tension).toBe(0);
     expect(warnings.join()).toMatch(/finer/);
+  });
+});
+
+describe('the grid operation with weights', () => {
+  /** Ground walked with two sensors, one ten times noisier, on lines of their own in the same places. */
+  const made = madeSurvey({ seed: 21, spacingM: 6, depthM: 12, noiseNT: 0 });
+  const half = made.x.length;
+  const count = 2 * half;
+  const random = new Random(40);
+  const readings = {
+    count, x: Float64Array.from([...made.x, ...made.x]), y: Float64Array.from([...made.y, ...made.y]), heightM: new Float64Array(count).fill(2),
+    line: Int32Array.from([...made.line, ...made.line.map((line) => 10 + line)]), flag: new Uint8Array(count),
+    residual: Float64Array.from([...made.value, ...made.value], (value, n) => value + (n < half ? 0.5 : 5) * random.normal()),
+  };
+  async function rmse(parameters: object): Promise<{ nT: number; notes: string[] }> {
+    const notes: string[] = [];
+    const task = { parameters: { error: false, spacing_m: 6, cell_m: 1.5, ...parameters }, inputs: { readings }, warn: () => {}, progress: (note: string) => notes.push(note) } as unknown as Task;
+    const { residual: { width, west, north, cellM, values } } = await grid.run(task) as { residual: Grid };
+    let [sum, filled] = [0, 0];
+    values.forEach((value, k) => {
+      if (Number.isNaN(value)) return;
+      sum += (value - made.field(west + ((k % width) + 0.5) * cellM, north - (Math.floor(k / width) + 0.5) * cellM)) ** 2;
+      filled++;
+    });
+    return { nT: Math.sqrt(sum / filled), notes };
+  }
+
+  it.each([['auto', 0.7], ['sources', 0.9]])('lets a noisy line count little, and says so, with method %s', async (method, gain) => {
+    const equal = await rmse({ method, weights: 'equal' });
+    const line = await rmse({ method, weights: 'line' });
+    expect(line.nT / equal.nT).toBeLessThan(gain);
+    expect(equal.notes.join()).not.toMatch(/noise of their line/);
+    const [, least, most] = line.notes[0]!.match(/^Readings count by the noise of their line, ([\d.]+) to ([\d.]+) nT\.$/)!;
+    expect(Number(least)).toBeGreaterThan(0.3);
+    expect(Number(least)).toBeLessThan(0.6);
+    expect(Number(most)).toBeGreaterThan(4.5);
+    expect(Number(most)).toBeLessThan(8);
+  });
+
+  it('does not take a noise for all beside them', async () => {
+    await expect(rmse({ method: 'sources', weights: 'line', noise_nt: 1 })).rejects.toThrow(/grid, noise_nt: found 1 and an error of each reading/);
   });
 });
 
@@ -82,6 +131,7 @@ describe('the grid operation beyond what fits into memory', () => {
 
   it.each([
     [{ method: 'sources', error: false }, /grid, method: found "sources" for a grid of 8127 × 8108 cells, wanted at most 64 million cells with it; state a larger cell_m, .*take "tension"/],
+    [{ method: 'linear', error: false }, /grid, method: found "linear" for a grid of .*take "tension"/],
     [{ method: 'auto', error: true }, /grid, error: found true for a grid of 8127 × 8108 cells, .*leave it out/],
     [{ method: 'auto', error: false, cell_m: 0.1 }, /grid: found 81\d+ × 81\d+ cells .* wanted at most 4000 million cells/],
   ])('refuses %o', async (parameters, says) => {

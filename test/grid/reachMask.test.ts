@@ -48,14 +48,14 @@ describe('reachMask', () => {
 /** Pins of readings in one cell, a tenth of a cell apart. */
 const bin = (value: number[]) => {
   const samples = { x: value.map((_, n) => 3.1 + n / 10), y: value.map(() => 2.5), value };
-  return binSamples(indexByCell(samples, frame), samples.value, frame.width);
+  return binSamples(indexByCell(samples, frame), { value: samples.value, weight: [] }, frame.width);
 };
 
 describe('binSamples', () => {
   it('takes value and place from the same middle half', () => {
     const x = [10.1, 10.2, 10.3, 10.4, 10.5, 10.6, 10.7, 10.9];
     const samples = { x, y: x.map(() => 5.5), value: x.map((v) => 100 * v) };
-    const pins = binSamples(indexByCell(samples, frame), samples.value, frame.width);
+    const pins = binSamples(indexByCell(samples, frame), { value: samples.value, weight: [] }, frame.width);
     expect([...pins.node]).toEqual([17 * 37 + 10]);
     expect(pins.value[0]).toBeCloseTo(100 * (10.5 + pins.dx[0]!), 9);
     expect(pins.weight[0]).toBe(4);
@@ -75,7 +75,7 @@ describe('binSamples', () => {
     const value = Array.from({ length: 500 }, () => random.normal());
     const samples = { x: value.map(() => 3.5), y: value.map(() => 2.5), value };
     const sorted = value.toSorted((a, b) => a - b).slice(125, 375);
-    expect(binSamples(indexByCell(samples, frame), samples.value, frame.width).value[0]).toBeCloseTo(sorted.reduce((sum, v) => sum + v, 0) / 250, 12);
+    expect(binSamples(indexByCell(samples, frame), { value: samples.value, weight: [] }, frame.width).value[0]).toBeCloseTo(sorted.reduce((sum, v) => sum + v, 0) / 250, 12);
   });
 });
 

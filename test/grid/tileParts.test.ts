@@ -19,7 +19,8 @@ const places = (count: number) => {
 describe('bucketSamples', () => {
   it('finds the readings of any rectangle, as looking at all does', () => {
     const samples = places(300);
-    const buckets = bucketSamples(samples, frame);
+    const buckets = bucketSamples(samples, new Float64Array(0), frame);
+    const weighted = bucketSamples(samples, samples.value.map((v) => v / 7), frame);
     for (let trial = 0; trial < 40; trial++) {
       const tile = { width: 1 + random.integer(30), height: 1 + random.integer(30), west: 990 + 60 * random.uniform(), north: 2020 + 60 * random.uniform(), cellM: 2.5 };
       const inside = [...samples.x.keys()].filter((n) => {
@@ -30,6 +31,8 @@ describe('bucketSamples', () => {
       const { x, y, value } = samplesWithin(buckets, tile);
       expect([...x].toSorted()).toEqual(inside.map((n) => samples.x[n]!).toSorted());
       x.forEach((v, n) => expect(value[n]).toBe(3 + 2 * (v - 1000) - y[n]!));
+      expect(samplesWithin(buckets, tile).weight.length).toBe(0);
+      expect(samplesWithin(weighted, tile)).toEqual({ x, y, value, weight: value.map((v) => v / 7) });
     }
   });
 });
@@ -37,11 +40,16 @@ describe('bucketSamples', () => {
 describe('cellMeans', () => {
   it('are the means of values and of places', () => {
     const samples = { x: [1001, 1003, 1085, NaN, 1002, 1000], y: [2069, 2067, 2001, 2001, 2068, 1900], value: [4, 6, 9, 5, NaN, 1] };
-    const means = cellMeans(samples, frame);
+    const means = cellMeans(samples, [], frame);
     expect([...means.cell]).toEqual([0, 6 * 9 + 8]);
     expect([...means.value]).toEqual([5, 9]);
     expect(means.x[0]).toBeCloseTo(1002, 9);
     expect(means.y[0]).toBeCloseTo(2068, 9);
+    const weighted = cellMeans(samples, [3, 1, 0.01, 1, 1, 1], frame);
+    expect(weighted.value[0]).toBeCloseTo((3 * 4 + 6) / 4, 12);
+    expect(weighted.x[0]).toBeCloseTo(1001.5, 9);
+    expect(weighted.y[0]).toBeCloseTo(2068.5, 9);
+    expect(weighted.value[1]).toBe(9);
   });
 });
 
@@ -57,7 +65,7 @@ describe('fitTrend', () => {
 
 describe('coarseSurface', () => {
   it('passes through the means at their own places, and through a plane between', async () => {
-    const means = cellMeans(places(400), frame);
+    const means = cellMeans(places(400), [], frame);
     const level = { x: 0, y: 0, level: 0, perEastM: 0, perNorthM: 0, onLine: false };
     const surface = await coarseSurface(means, { frame, trend: level, tension: 0, spacingM: 20, range: 250, solve: solveTile });
     for (let trial = 0; trial < 20; trial++) {
@@ -70,7 +78,7 @@ describe('coarseSurface', () => {
 
 describe('gaps', () => {
   it('are the wide cells that no reading reaches', () => {
-    const means = cellMeans({ x: [1005, 1015], y: [2065, 2065], value: [1, 1] }, frame);
+    const means = cellMeans({ x: [1005, 1015], y: [2065, 2065], value: [1, 1] }, [], frame);
     const gaps = gapsOf(means, frame, 20);
     // The readings' cells are columns 0 and 1 of the first row; (2 + √2) cells further nothing is reached.
     expect([...gaps.gap.subarray(0, 9)]).toEqual([0, 0, 0, 0, 0, 1, 1, 1, 1]);

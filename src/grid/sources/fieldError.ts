@@ -1,9 +1,10 @@
-/** By cell: what patchOpenness says, variance NaN where it was not asked; and 1 where the cell holds readings. */
+/** By cell: what patchOpenness says, variance NaN where it was not asked; 1 where the cell holds readings; and there the inverse variance of a reading's error, 1 for the most accurate. */
 export interface OpennessMaps {
   readonly variance: Float32Array;
   readonly strength: Float32Array;
   readonly expected: Float32Array;
   readonly occupied: Float32Array;
+  readonly accuracy: Float32Array;
 }
 
 export interface ErrorScale {
@@ -12,7 +13,7 @@ export interface ErrorScale {
   /** Line spacing and depth of the layer, in cells. */
   readonly spacing: number;
   readonly depth: number;
-  /** Standard deviation of a reading's error. */
+  /** Standard deviation of the most accurate reading's error. */
   readonly noiseNT: number;
 }
 
@@ -46,13 +47,14 @@ const CUT = 3;
  * beside a strong source and small over quiet ground at the same distance from readings. NaN where more than a third of
  * the layer's variance is left open.
  */
-export function fieldError({ variance, strength, expected, occupied }: OpennessMaps, { width, height, spacing, depth, noiseNT }: ErrorScale): Float32Array {
+export function fieldError({ variance, strength, expected, occupied, accuracy }: OpennessMaps, { width, height, spacing, depth, noiseNT }: ErrorScale): Float32Array {
   const sigma = STRENGTH_RADIUS * Math.sqrt(depth * spacing);
   const shown = blur(strength, { width, height, sigma });
   const unit = blur(expected, { width, height, sigma });
   const least = (NOISE_LEFT * noiseNT) ** 2;
   const around = AROUND_SPACINGS * spacing;
   const readings = blur(occupied, { width, height, sigma: around });
+  const accurate = blur(accuracy, { width, height, sigma: around });
   return variance.map((open, k) => {
     if (!(open <= UNKNOWN_SHARE)) return NaN;
     // A Gaussian mean's slope over the mean is the distance to the readings' middle over the radius squared.
@@ -61,7 +63,7 @@ export function fieldError({ variance, strength, expected, occupied }: OpennessM
     const south = k >= width && k < width * (height - 1) ? (readings[k + width]! - readings[k - width]!) / 2 : 0;
     const aside = (Math.hypot(east, south) / readings[k]!) * around;
     const between = Math.min(1, Math.max(0, (ONE_SIDE - aside) / (ONE_SIDE - AROUND)));
-    return Math.sqrt(((OWN * (between + OUTSIDE * (1 - between)) * open ** DULLED) / (1 + (between * open) / FEW)) * (shown[k]! / unit[k]!) + least);
+    return Math.sqrt(((OWN * (between + OUTSIDE * (1 - between)) * open ** DULLED) / (1 + (between * open) / FEW)) * (shown[k]! / unit[k]!) + least * (readings[k]! / accurate[k]!));
   });
 }
 

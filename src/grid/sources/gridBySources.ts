@@ -9,7 +9,7 @@ import { placeReadings, readingsWithin, type HighSamples, type PlacedReadings } 
 export interface SourcesOptions {
   /** Distance between lines, metres. */
   readonly spacingM: number;
-  /** Standard deviation of a reading's error. */
+  /** Standard deviation of a reading's error; of the most accurate where the samples have errors of their own. */
   readonly noiseNT: number;
   /** Likeliest depth of the layer below the level of the readings' heights; NaN: from the readings. */
   readonly depthM?: number;
@@ -77,7 +77,7 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
   const sum = new Float64Array(width * height);
   const parts = new Float64Array(width * height);
   const maps: OpennessMaps | null = error ? {
-    variance: new Float32Array(sum.length).fill(NaN), strength: new Float32Array(sum.length), expected: new Float32Array(sum.length), occupied: occupiedCells(readings, frame),
+    variance: new Float32Array(sum.length).fill(NaN), strength: new Float32Array(sum.length), expected: new Float32Array(sum.length), ...occupiedCells(readings, frame),
   } : null;
   const is = (k: number): boolean => wanted === null || wanted[k] === 1;
   for (let bj = 0; (bj - 1) * side < height; bj++) {
@@ -97,15 +97,18 @@ export function gridBySources(samples: HighSamples, frame: GridFrame, options: S
   return { values, error: maps && fieldError(maps, { width, height, spacing: spacingM / cellM, depth: depthM / cellM, noiseNT }), depthM };
 }
 
-/** 1 at cells that hold readings. */
-function occupiedCells({ x, y }: PlacedReadings, { width, height, west, north, cellM }: GridFrame): Float32Array {
-  const occupied = new Float32Array(width * height);
+/** 1 at cells that hold readings, and what a reading there is worth of the most accurate. */
+function occupiedCells({ x, y, weight, count }: PlacedReadings, { width, height, west, north, cellM }: GridFrame): Pick<OpennessMaps, 'occupied' | 'accuracy'> {
+  const weights = new Float64Array(width * height);
+  const counts = new Float64Array(width * height);
   for (let n = 0; n < x.length; n++) {
     const i = Math.floor((x[n]! - west) / cellM);
     const j = Math.floor((north - y[n]!) / cellM);
-    if (i >= 0 && i < width && j >= 0 && j < height) occupied[j * width + i] = 1;
+    if (!(i >= 0 && i < width && j >= 0 && j < height)) continue;
+    weights[j * width + i]! += weight[n]!;
+    counts[j * width + i]! += count[n]!;
   }
-  return occupied;
+  return { occupied: Float32Array.from(counts, (held) => (held > 0 ? 1 : 0)), accuracy: Float32Array.from(counts, (held, k) => (held > 0 ? weights[k]! / held : 0)) };
 }
 
 /** A block's middle, at a corner of cells, and the number of cells to the next block's. */

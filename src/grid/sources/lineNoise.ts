@@ -17,8 +17,18 @@ export function lineNoise(value: ArrayLike<number>, line?: ArrayLike<number>): n
   const stride = Math.max(1, Math.floor(value.length / LOOKED_AT));
   for (let n = 4; n < value.length; n += stride) {
     if (line && line[n] !== line[n - 4]) continue;
-    const difference = value[n]! - 4 * value[n - 1]! + 6 * value[n - 2]! - 4 * value[n - 3]! + value[n - 4]!;
+    const difference = fourthDifference(value, n);
     if (Number.isFinite(difference)) differences.push(difference);
   }
-  return differences.length === 0 ? NaN : madSd(differences) / FOURTH_DIFFERENCE;
+  return noiseOf(differences);
+}
+
+/** Of the reading at `n` and the four before it. */
+export function fourthDifference(value: ArrayLike<number>, n: number): number {
+  return value[n]! - 4 * value[n - 1]! + 6 * value[n - 2]! - 4 * value[n - 3]! + value[n - 4]!;
+}
+
+/** Noise that makes such fourth differences; NaN where there are none. */
+export function noiseOf(differences: ArrayLike<number>): number {
+  return madSd(differences) / FOURTH_DIFFERENCE;
 }

@@ -22,7 +22,7 @@ const LEAST_NOISE = 1e-3;
 /** The noise grows by this until the covariance has a factor; it has one at the first try save for readings in the same place. */
 const NOISE_GROWTH = 10;
 
-/** `noiseNT`: standard deviation of a reading's error. */
+/** `noiseNT`: standard deviation of the error of the most accurate reading. */
 export function solvePatch(readings: PlacedReadings, chosen: Int32Array, { layer, noiseNT }: { readonly layer: Layer; readonly noiseNT: number }): Patch {
   const count = chosen.length;
   const pick = (from: Float64Array): Float64Array => Float64Array.from(chosen, (n) => from[n]!);

@@ -1,5 +1,8 @@
-import { binSamples, indexByCell } from '../binSamples.js';
+import { indexByCell } from '../binSamples.js';
 import { gridFrame } from '../gridFrame.js';
+import { meansOf, middles } from '../middles.js';
+import { runningSum } from '../runningSum.js';
+import { sampleWeights } from '../sampleErrors.js';
 import type { Bounds, Samples } from '../types.js';
 
 /** Readings with the height of the sensor above a common level, metres; level readings where it is absent. */
@@ -13,8 +16,10 @@ export interface PlacedReadings {
   readonly y: Float64Array;
   readonly up: Float64Array;
   readonly value: Float64Array;
-  /** How many readings each stands for. */
+  /** How many readings of the smallest error each is worth: its error's variance is that of one over this. */
   readonly weight: Float64Array;
+  /** How many readings each stands for. */
+  readonly count: Float64Array;
   readonly north: number;
   readonly cellM: number;
   /** Readings of lattice row j are start[j] … start[j + 1] − 1. */
@@ -24,24 +29,18 @@ export interface PlacedReadings {
 /** One value for each square of side `cellM` that holds readings: the mean of their middle half, at its own place and height. */
 export function placeReadings(samples: HighSamples, bounds: Bounds, cellM: number): PlacedReadings {
   const frame = gridFrame(bounds, cellM);
-  const index = indexByCell(samples, frame);
-  const { node, dx, dy, value, weight } = binSamples(index, samples.value, frame.width);
-  const count = node.length;
-  const placed = { x: new Float64Array(count), y: new Float64Array(count), up: new Float64Array(count), start: new Int32Array(frame.height + 1) };
-  for (let n = 0; n < count; n++) {
-    const j = Math.floor(node[n]! / frame.width);
-    placed.x[n] = frame.west + (node[n]! - j * frame.width + dx[n]! + 0.5) * cellM;
-    placed.y[n] = frame.north - (j + dy[n]! + 0.5) * cellM;
-    placed.start[j + 1]!++;
-    if (!samples.up) continue;
-    // The binning has sorted a cell's readings by value, so the middle ones are those that it took the mean of.
-    const from = index.start[node[n]!]!;
-    const to = index.start[node[n]! + 1]!;
-    const cut = (to - from + 1) >> 2;
-    for (let s = from + cut; s < to - cut; s++) placed.up[n]! += samples.up[index.order[s]!]! / weight[n]!;
-  }
-  for (let j = 0; j < frame.height; j++) placed.start[j + 1]! += placed.start[j]!;
-  return { ...placed, value, weight, north: frame.north, cellM };
+  const { start: startOfCell, order, column, row } = indexByCell(samples, frame);
+  const middle = middles({ start: startOfCell, order }, samples.value, sampleWeights(samples));
+  const { group, from, until } = middle;
+  const start = new Int32Array(frame.height + 1);
+  for (const cell of group) start[Math.floor(cell / frame.width) + 1]!++;
+  return {
+    x: meansOf(column, middle).map((u) => frame.west + (u + 0.5) * cellM),
+    y: meansOf(row, middle).map((v) => frame.north - (v + 0.5) * cellM),
+    up: samples.up ? meansOf(samples.up, middle) : new Float64Array(group.length),
+    value: meansOf(samples.value, middle), weight: middle.total, count: Float64Array.from(from, (first, n) => until[n]! - first),
+    north: frame.north, cellM, start: runningSum(start),
+  };
 }
 
 /** Indices of the readings inside `bounds`; the `most` nearest to its middle where there are more. */
