@@ -26,7 +26,7 @@ function readings(): Readings {
   const at = (n: number): { line: number; end: number; along: number } => ({ line: Math.floor(n / 40), end: Math.floor(n / 200), along: n % 40 });
   const column = (of: (n: number) => number): Float64Array => Float64Array.from({ length: count }, (_, n) => of(n));
   // A whole number of thousandths, as the CSV keeps it.
-  const values = column((n) => Math.round(20_000 * Math.sin(at(n).along / 6)) / 1000 + at(n).line);
+  const values = column((n) => Math.round(20_000 * Math.sin(at(n).along / 6) + 1000 * at(n).line) / 1000);
   return {
     count, x: column((n) => WEST + APART * at(n).end + at(n).along), y: column((n) => SOUTH + APART * at(n).end + 4 * (at(n).line % 5)),
     heightM: column(() => 2), timeS: column((n) => 1.776e9 + n), line: Int32Array.from({ length: count }, (_, n) => at(n).line),
