@@ -88,22 +88,27 @@ interface Rectangle {
 }
 
 /** The pins of a rectangle of nodes, by the rectangle's own nodes. `width` is that of the whole. */
-export function pinsWithin(pins: Pins, width: number, window: Rectangle): Pins {
-  const within = emptyPins(pins.node.reduce((count, node) => count + (nodeWithin(node, width, window) < 0 ? 0 : 1), 0));
-  for (let n = 0, to = 0; n < pins.node.length; n++) {
-    const node = nodeWithin(pins.node[n]!, width, window);
-    if (node < 0) continue;
-    copyPin(pins, n, within, to);
-    within.node[to++] = node;
+export function pinsWithin({ pins, start }: PinRows, width: number, { left, top, ...size }: Rectangle): Pins {
+  let count = 0;
+  for (let j = 0; j < size.height; j++) count += countBetween(pins.node, [start[top + j]!, start[top + j + 1]!], (top + j) * width + left, size.width);
+  const within = emptyPins(count);
+  for (let j = 0, to = 0; j < size.height; j++) {
+    const west = (top + j) * width + left;
+    for (let n = start[top + j]!; n < start[top + j + 1]!; n++) {
+      const i = pins.node[n]! - west;
+      if (i < 0 || i >= size.width) continue;
+      copyPin(pins, n, within, to);
+      within.node[to++] = j * size.width + i;
+    }
   }
   return within;
 }
 
-/** −1 outside. */
-function nodeWithin(node: number, width: number, window: Rectangle): number {
-  const j = Math.floor(node / width) - window.top;
-  const i = node % width - window.left;
-  return i >= 0 && i < window.width && j >= 0 && j < window.height ? j * window.width + i : -1;
+/** How many of the nodes in a span of the list lie in a stretch of nodes. */
+function countBetween(node: Int32Array, [from, to]: readonly [number, number], first: number, length: number): number {
+  let count = 0;
+  for (let n = from; n < to; n++) if (node[n]! >= first && node[n]! < first + length) count++;
+  return count;
 }
 
 /** The same values on a grid of half the resolution: those that fall to one node become their weighted mean. */

@@ -121,7 +121,7 @@ function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64
     // What is left outside adds to what is left inside.
     const windows = moves.unsettled(tolerance / 2);
     if (windows.reduce((sum, { width, height }) => sum + width * height, 0) > SPOTS_SHARE * z.length) continue;
-    const solved = windows.map((window) => improveWindow(problem, { z, window }, { tolerance: tolerance / 2, maxSteps: maxSteps - step }));
+    const solved = windows.map((window) => improveWindow(problem, { z, pins: grids.pins[0]!, window }, { tolerance: tolerance / 2, maxSteps: maxSteps - step }));
     return {
       iterations: step + Math.max(...solved.map(({ iterations }) => iterations)),
       remaining: tolerance / 2 + Math.max(...solved.map((each) => each.remaining)),
@@ -132,7 +132,7 @@ function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64
 }
 
 /** Goes on with the cycles in a window of the surface alone, whose rim rests on the surface around. */
-function improveWindow(problem: PlateProblem, { z, window }: { z: Float64Array; window: Window }, goal: Goal): Omit<PlateSolution, 'z'> {
+function improveWindow(problem: PlateProblem, { z, pins, window }: { z: Float64Array; pins: PinRows; window: Window }, goal: Goal): Omit<PlateSolution, 'z'> {
   const { left, top, width, height } = window;
   const cut = <T extends Float64Array | Uint8Array>(whole: T, part: T): T => {
     for (let j = 0; j < height; j++) part.set(whole.subarray((top + j) * problem.width + left, (top + j) * problem.width + left + width), j * width);
@@ -142,7 +142,7 @@ function improveWindow(problem: PlateProblem, { z, window }: { z: Float64Array; 
   const node = rimNodes(window, { west: left > 0, east: left + width < problem.width, north: top > 0, south: top + height < problem.height });
   const rim = nodePins(node, Float64Array.from(node, (k) => own[k]!));
   const part = {
-    ...problem, width, height, pins: joinPins(rim, pinsWithin(problem.pins, problem.width, window)),
+    ...problem, width, height, pins: joinPins(rim, pinsWithin(pins, problem.width, window)),
     watch: problem.watch && cut(problem.watch, new Uint8Array(width * height)),
   };
   const grids = buildGrids(part);

@@ -22,18 +22,30 @@ export function axisTransfer(fine: number): AxisTransfer {
   const weights = new Float64Array(fine * 4);
   for (let i = 0; i < fine; i++) {
     const below = i >> 1;
-    let entries: ReadonlyArray<readonly [node: number, weight: number]>;
-    if (i % 2 === 0) entries = [[below, 1]];
-    else if (below >= 1 && below + 2 < coarse) entries = [[below - 1, -1 / 16], [below, 9 / 16], [below + 1, 9 / 16], [below + 2, -1 / 16]];
-    else if (below + 2 < coarse) entries = [[below, 3 / 8], [below + 1, 6 / 8], [below + 2, -1 / 8]];
-    else if (below >= 1) entries = [[below - 1, -1 / 8], [below, 6 / 8], [below + 1, 3 / 8]];
-    else entries = [[below, 1 / 2], [below + 1, 1 / 2]];
+    const stencil = i % 2 === 0 ? ON_NODE : stencilBetween(below, coarse);
+    const first = below + stencil.first;
     // Four weights from a start that keeps all four inside where the axis is long enough.
-    const start = Math.max(0, Math.min(entries[0]![0], coarse - 4));
-    from[i] = start;
-    for (const [node, weight] of entries) weights[i * 4 + node - start] = weight;
+    from[i] = Math.max(0, Math.min(first, coarse - 4));
+    weights.set(stencil.weights, i * 4 + first - from[i]!);
   }
   return { fine, coarse, from, weights };
+}
+
+/** Weights of neighbouring coarse nodes, the first of them so many from the node below or at the fine one. */
+interface Stencil {
+  readonly first: number;
+  readonly weights: readonly number[];
+}
+
+const ON_NODE: Stencil = { first: 0, weights: [1] };
+const BETWEEN: Stencil = { first: -1, weights: [-1 / 16, 9 / 16, 9 / 16, -1 / 16] };
+const NEAR_START: Stencil = { first: 0, weights: [3 / 8, 6 / 8, -1 / 8] };
+const NEAR_END: Stencil = { first: -1, weights: [-1 / 8, 6 / 8, 3 / 8] };
+const BETWEEN_TWO: Stencil = { first: 0, weights: [1 / 2, 1 / 2] };
+
+function stencilBetween(below: number, coarse: number): Stencil {
+  if (below + 2 < coarse) return below >= 1 ? BETWEEN : NEAR_START;
+  return below >= 1 ? NEAR_END : BETWEEN_TWO;
 }
 
 export interface Transfer {

@@ -27,10 +27,6 @@ export function halve(level: Level): Level {
   const width = Math.ceil(level.width / 2);
   const height = Math.ceil(level.height / 2);
   const values = new Float32Array(width * height);
-  let row = 0;
-  new RowHalver(level.width, level.height).push(level.values, (half) => {
-    values.set(half, row * width);
-    row += 1;
-  });
+  new RowHalver(level.width, level.height).push(level.values, values, 0);
   return { width, height, values };
 }

@@ -19,7 +19,6 @@ export class RowHalver {
   readonly #share: Float64Array;
   readonly #sums: Float64Array;
   readonly #weights: Float64Array;
-  readonly #half: Float32Array;
   /** Rows taken so far, and rows made. */
   #taken = 0;
   #made = 0;
@@ -34,20 +33,21 @@ export class RowHalver {
     this.#share = share;
     this.#sums = new Float64Array(this.width);
     this.#weights = new Float64Array(this.width);
-    this.#half = new Float32Array(this.width);
   }
 
-  /** Takes whole rows; hands on each row that is finished. The row is only lent: it is overwritten by the next. */
-  push(rows: Float32Array | Float64Array, finished: (row: Float32Array) => void): void {
+  /** Takes whole rows, and writes those that are finished to `out` from row `at` of it on; returns how many there are. */
+  push(rows: Float32Array | Float64Array, out: Float32Array, at: number): number {
+    const before = this.#made;
     for (let start = 0; start < rows.length; start += this.#fromWidth) {
       const top = this.#taken;
       this.#taken += 1;
       const end = ((this.#made + 1) * this.#fromHeight) / this.height;
       this.#add(rows, start, Math.min(end, this.#taken) - Math.max(top, (this.#made * this.#fromHeight) / this.height));
       if (this.#taken < end - NO_OVERLAP) continue;
-      this.#finish(finished);
+      this.#finish(out, (at + this.#made - before) * this.width);
       if (this.#taken - end > NO_OVERLAP) this.#add(rows, start, this.#taken - end);
     }
+    return this.#made - before;
   }
 
   #add(rows: Float32Array | Float64Array, start: number, high: number): void {
@@ -85,14 +85,13 @@ export class RowHalver {
     }
   }
 
-  #finish(finished: (row: Float32Array) => void): void {
-    for (let column = 0; column < this.width; column += 1) {
-      // 0/0 where nothing had a value: NaN, as it should be.
-      this.#half[column] = this.#sums[column]! / this.#weights[column]!;
-    }
-    finished(this.#half);
-    this.#sums.fill(0);
-    this.#weights.fill(0);
+  #finish(out: Float32Array, from: number): void {
+    const sums = this.#sums;
+    const weights = this.#weights;
+    // 0/0 where nothing had a value: NaN, as it should be.
+    for (let column = 0; column < sums.length; column += 1) out[from + column] = sums[column]! / weights[column]!;
+    sums.fill(0);
+    weights.fill(0);
     this.#made += 1;
   }
 }

@@ -147,11 +147,9 @@ async function addStrip(pass: Pass, index: number, values: Float32Array | Float6
   const next = levels[index + 1];
   if (!next) return;
   // Half as many rows come out as went in, never more than the next level's row of tiles still has room for.
-  level.halver!.push(samples instanceof Float32Array ? samples : values, (row) => {
-    next.strip.set(row, next.rowsInStrip * next.width);
-    next.rowsInStrip += 1;
-    next.rowsMade += 1;
-  });
+  const made = level.halver!.push(samples instanceof Float32Array ? samples : values, next.strip, next.rowsInStrip);
+  next.rowsInStrip += made;
+  next.rowsMade += made;
   if (next.rowsInStrip < tileSize && next.rowsMade < next.height) return;
   await addStrip(pass, index + 1, next.strip.subarray(0, next.rowsInStrip * next.width));
   next.rowsInStrip = 0;
