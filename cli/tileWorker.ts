@@ -8,7 +8,7 @@ if (!port) throw new Error('This file is the body of a worker thread');
 /** Side of the made tile, in cells, its lines apart, and how often it is solved. */
 const SIDE = 60;
 const APART = 4;
-const TIMES = 2;
+const TIMES = 5;
 
 // A thread begins with code that is not compiled and takes twice as long for its first tile. So it solves a small one
 // first, which costs little, and no time at all while the readings are still being read.

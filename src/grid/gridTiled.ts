@@ -161,9 +161,11 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
   const tiles = Array.from({ length: Math.ceil(frame.width / side) }, (_, c) => c * side);
   await Promise.all(tiles.map(async (left) => {
     const width = Math.min(side, frame.width - left);
-    const task = tileTask(tiler, await tiler.surface(), { left, top, width, height });
-    if (task === null) return;
-    const solution = await solve(task);
+    const surface = tiler.surface();
+    // The readings are gathered while the wide surface is being solved.
+    const tile = cutTile(tiler, { left, top, width, height });
+    if (tile === null) return;
+    const solution = await solve({ ...tile.task, ...rimOf(tile, await surface) });
     for (let j = 0; j < height; j++) values.set(solution.values.subarray(j * width, (j + 1) * width), j * frame.width + left);
     totals.filled += solution.filled;
     totals.pinned += solution.pinned;
@@ -174,29 +176,36 @@ async function solveRow(tiler: Tiler, r: number, { solve, totals }: {
   return values;
 }
 
-/** Null where no reading is near. */
-function tileTask({ layout: { frame, solved, cellM }, buckets, common, ...tiler }: Tiler, surface: CoarseSurface | null, kept: TileTask['own']): TileTask | null {
+/** A tile with its readings, but for its rim; null where no reading is near. */
+function cutTile({ layout: { frame, solved, cellM }, buckets, common, ...tiler }: Tiler, kept: TileTask['own']): CutTile | null {
   // Of the frame that is solved, in whose cells all that follows counts.
   const left = kept.left + Math.round((frame.west - solved.west) / cellM);
   const top = kept.top + Math.round((solved.north - frame.north) / cellM);
   const wide = tiler.gapOverlapCells;
   const hasGap = anyGap(tiler.gaps, [left - wide, top - wide, left + kept.width + wide, top + kept.height + wide], cellM);
-  const overlapCells = hasGap ? wide : tiler.overlapCells;
-  const from = surface ? Math.max(0, left - overlapCells) : 0;
-  const until = surface ? Math.min(solved.width, left + kept.width + overlapCells) : solved.width;
-  const above = surface ? Math.max(0, top - overlapCells) : 0;
-  const below = surface ? Math.min(solved.height, top + kept.height + overlapCells) : solved.height;
+  // The only tile takes all there is.
+  const overlapCells = tiler.tileCells === Infinity ? Infinity : hasGap ? wide : tiler.overlapCells;
+  const from = Math.max(0, left - overlapCells);
+  const until = Math.min(solved.width, left + kept.width + overlapCells);
+  const above = Math.max(0, top - overlapCells);
+  const below = Math.min(solved.height, top + kept.height + overlapCells);
   const tile: GridFrame = { width: until - from, height: below - above, west: solved.west + from * cellM, north: solved.north - above * cellM, cellM };
   const taken = samplesWithin(buckets, tile);
   if (taken.x.length === 0) return null;
   const open = { west: from > 0, east: until < solved.width, north: above > 0, south: below < solved.height };
-  return { ...common, ...taken, frame: tile, own: { ...kept, left: left - from, top: top - above }, ...rimOf(tile, { open, surface }) };
+  return { task: { ...common, ...taken, frame: tile, own: { ...kept, left: left - from, top: top - above } }, open };
+}
+
+interface CutTile {
+  readonly task: Omit<TileTask, 'rimNode' | 'rimValue'>;
+  /** Sides where the ground goes on. */
+  readonly open: Parameters<typeof rimNodes>[1];
 }
 
 /** Nodes along the sides where the ground goes on, with the value of the wide surface there. */
-function rimOf(tile: GridFrame, { open, surface }: { open: Parameters<typeof rimNodes>[1]; surface: CoarseSurface | null }): Pick<TileTask, 'rimNode' | 'rimValue'> {
-  const { width, west, north, cellM } = tile;
-  const rimNode = surface ? rimNodes(tile, open) : new Int32Array(0);
+function rimOf({ task: { frame }, open }: CutTile, surface: CoarseSurface | null): Pick<TileTask, 'rimNode' | 'rimValue'> {
+  const { width, west, north, cellM } = frame;
+  const rimNode = surface ? rimNodes(frame, open) : new Int32Array(0);
   const rimValue = Float64Array.from(rimNode, (node) => {
     const j = Math.floor(node / width);
     return surfaceAt(surface!, west + (node - j * width + 0.5) * cellM, north - (j + 0.5) * cellM);

@@ -16,6 +16,8 @@ const EXACT_INTEGER = 2 ** 53;
 const EXACT_POWER = 22;
 const POWERS = Float64Array.from({ length: EXACT_POWER + 1 }, (_, n) => Number(`1e${n}`));
 const FIRST_ROWS = 1 << 16;
+/** Room beyond what the rows so far let expect. */
+const SPARE_SHARE = 1.02;
 
 export interface NumberColumns {
   readonly rows: number;
@@ -32,6 +34,9 @@ export class NumberReader {
   readonly #names: readonly string[];
   readonly #source: string;
   readonly #allowEmpty: boolean;
+  readonly #bytes: number;
+  /** Bytes of whole lines before those at hand. */
+  #seen = 0;
   #columns: Float64Array[];
   /** Which of the columns a cell of a row goes to, −1 for none; empty before the header. */
   #targets: Int32Array = new Int32Array(0);
@@ -40,10 +45,12 @@ export class NumberReader {
   /** Bytes of a line that is not complete. */
   #rest: Uint8Array = new Uint8Array(0);
 
-  constructor(names: readonly string[], { source, allowEmpty = false }: { source: string; allowEmpty?: boolean }) {
+  /** `bytes`: size of the whole text, where it is known; then columns need not grow step by step. */
+  constructor(names: readonly string[], { source, allowEmpty = false, bytes = 0 }: { source: string; allowEmpty?: boolean; bytes?: number }) {
     this.#names = names;
     this.#source = source;
     this.#allowEmpty = allowEmpty;
+    this.#bytes = bytes;
     this.#columns = names.map(() => new Float64Array(FIRST_ROWS));
   }
 
@@ -87,6 +94,13 @@ export class NumberReader {
       if (blank > at) at = blank;
       else at = this.#row(bytes, at);
     }
+    this.#seen += bytes.length;
+  }
+
+  #grow(seen: number): void {
+    const rows = this.#rows;
+    const room = Math.max(rows + (rows >> 1), Math.ceil((SPARE_SHARE * rows * this.#bytes) / seen));
+    this.#columns = this.#columns.map((column) => larger(column, room));
   }
 
   #header(bytes: Uint8Array): number {
@@ -115,7 +129,7 @@ export class NumberReader {
     const targets = this.#targets;
     const delimiter = this.#delimiter;
     const row = this.#rows;
-    if (row === this.#columns[0]?.length) this.#columns = this.#columns.map(larger);
+    if (row === this.#columns[0]?.length) this.#grow(this.#seen + from);
     let at = from;
     for (let c = 0; ; c++) {
       if (c === targets.length) throw this.#ragged(bytes, from);
@@ -186,13 +200,13 @@ export class NumberReader {
 
 /** Columns of numbers of a whole file. */
 export function readNumberColumns(bytes: Uint8Array, names: readonly string[], options: { source: string; allowEmpty?: boolean }): NumberColumns {
-  const reader = new NumberReader(names, options);
+  const reader = new NumberReader(names, { ...options, bytes: bytes.length });
   reader.push(bytes);
   return reader.end();
 }
 
-function larger(column: Float64Array): Float64Array {
-  const more = new Float64Array(column.length + (column.length >> 1));
+function larger(column: Float64Array, rows: number): Float64Array {
+  const more = new Float64Array(rows);
   more.set(column);
   return more;
 }

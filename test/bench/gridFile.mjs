@@ -18,8 +18,8 @@ const threads = Number(count ?? availableParallelism());
 const begin = performance.now();
 const pool = threads > 0 ? tileThreads(threads) : null;
 pool?.start();
-const reader = new NumberReader(['x', 'y', 'z'], { source: input });
 const file = await open(input, 'r');
+const reader = new NumberReader(['x', 'y', 'z'], { source: input, bytes: (await file.stat()).size });
 const piece = new Uint8Array(PIECE_BYTES);
 for (;;) {
   const { bytesRead } = await file.read(piece, 0, PIECE_BYTES);
