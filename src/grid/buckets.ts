@@ -74,5 +74,5 @@ export function samplesWithin({ samples, weight: weights, frame, start, order }:
       value[to++] = samples.value[n]!;
     }
   }
-  return { x: x.slice(0, to), y: y.slice(0, to), value: value.slice(0, to), weight: weight.slice(0, to) };
+  return { x: x.subarray(0, to), y: y.subarray(0, to), value: value.subarray(0, to), weight: weight.subarray(0, to) };
 }

@@ -120,21 +120,30 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
     ...frame, spacingM, reachM, tension, range, tileCells, overlapCells, summary,
     remarks: () => gridRemarks({ ...frame, spacingM, reachM, tension, ...summary() }, tolerance),
     async readRows(first, count) {
-      const rows = new Float32Array(count * frame.width);
+      const rows: Float32Array[] = [];
       for (let j = first; j < first + count;) {
         const r = Math.floor(j / perRow);
         for (const done of rowsOfTiles.keys()) if (done < r) rowsOfTiles.delete(done);
         const begun = rowOfTiles(r);
         // So that no thread waits for the last tile of a row.
         if ((r + 1) * perRow < frame.height) void rowOfTiles(r + 1);
-        const values = await begun;
         const until = Math.min(first + count, (r + 1) * perRow);
-        rows.set(values.subarray((j - r * perRow) * frame.width, (until - r * perRow) * frame.width), (j - first) * frame.width);
+        rows.push((await begun).subarray((j - r * perRow) * frame.width, (until - r * perRow) * frame.width));
         j = until;
       }
-      return rows;
+      return rows.length === 1 ? rows[0]! : joined(rows, count * frame.width);
     },
   };
+}
+
+function joined(parts: readonly Float32Array[], length: number): Float32Array {
+  const whole = new Float32Array(length);
+  let at = 0;
+  for (const part of parts) {
+    whole.set(part, at);
+    at += part.length;
+  }
+  return whole;
 }
 
 interface Tiler {
