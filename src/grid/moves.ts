@@ -74,7 +74,7 @@ export class Moves {
   unsettled(tolerance: number): Window[] {
     const windows: Square[] = [];
     for (let square = 0; square < this.#all.now.length; square++) {
-      if (left(this.#all, square) <= tolerance) continue;
+      if (Math.max(left(this.#all, square), left(this.#watched, square)) <= tolerance) continue;
       const [i, j] = [square % this.#across, Math.floor(square / this.#across)];
       addJoined(windows, {
         left: Math.max(0, i - MARGIN), top: Math.max(0, j - MARGIN),

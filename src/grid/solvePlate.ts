@@ -152,7 +152,6 @@ function improveWindow(problem: PlateProblem, { z, pins, window }: { z: Float64A
   return solved;
 }
 
-
 /** One V-cycle on the surface of level `l` itself, by a fixed share where `path` is null. */
 function cycle({ levels, transfers, pins }: Grids, { l, z }: { l: number; z: Float64Array }, path: Path | null): void {
   const level = levels[l]!;

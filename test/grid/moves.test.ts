@@ -1,16 +1,17 @@
 import { describe, expect, it } from 'vitest';
 import { Moves } from '../../src/grid/moves.js';
 
+type Falling = readonly [i: number, j: number, rate: number, first?: number];
 const SIZE = { width: 200, height: 140, watch: null };
 
 describe('Moves', () => {
-  /** A surface that nears zero by `rate` in each cycle, from 1 at the nodes given. */
-  const after = (cycles: number, nodes: ReadonlyArray<readonly [i: number, j: number, rate: number]>): Float64Array => {
+  /** A surface that nears zero by `rate` in each cycle, from `first` (or 1) at the nodes given. */
+  const after = (cycles: number, nodes: readonly Falling[]): Float64Array => {
     const z = new Float64Array(SIZE.width * SIZE.height);
-    for (const [i, j, rate] of nodes) z[j * SIZE.width + i] = rate ** cycles;
+    for (const [i, j, rate, first = 1] of nodes) z[j * SIZE.width + i] = first * rate ** cycles;
     return z;
   };
-  const followed = (nodes: ReadonlyArray<readonly [number, number, number]>, cycles: number, size: ConstructorParameters<typeof Moves>[1] = SIZE): Moves => {
+  const followed = (nodes: readonly Falling[], cycles: number, size: ConstructorParameters<typeof Moves>[1] = SIZE): Moves => {
     const moves = new Moves(after(0, nodes), size);
     for (let cycle = 1; cycle <= cycles; cycle++) moves.note(after(cycle, nodes));
     return moves;
@@ -32,6 +33,14 @@ describe('Moves', () => {
     expect(moves.remaining).toBe(0);
     // What nobody watches pulls on what lies beside.
     expect(moves.unsettled(0.1)).toHaveLength(1);
+  });
+
+  it('lays a window around a slow spot that is watched, though a fast one beside it is not', () => {
+    const watch = new Uint8Array(SIZE.width * SIZE.height);
+    watch[61 * SIZE.width + 51] = 1;
+    const moves = followed([[50, 60, 0.05], [51, 61, 0.9, 0.01]], 3, { ...SIZE, watch });
+    expect(moves.remaining).toBeCloseTo(0.01 * 0.9 ** 3, 9);
+    expect(moves.unsettled(0.001)).toHaveLength(1);
   });
 
   it('lays windows with a margin around what still moves, joins those that overlap, and keeps them inside', () => {
