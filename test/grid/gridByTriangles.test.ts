@@ -142,3 +142,27 @@ describe.skipIf(!hasPythonModule('scipy.interpolate'))('the grid operation with 
     expect(compared).toBeGreaterThan(500);
   });
 });
+
+describe.skipIf(!hasPythonModule('scipy.interpolate'))('linearOnTriangles', () => {
+  it.each([40, 300, 2000])('equals SciPy\'s LinearNDInterpolator within 1e-9 inside the hull of %i places in general position', (count) => {
+    const random = new Random(count);
+    const samples = { x: new Float64Array(count), y: new Float64Array(count), value: new Float64Array(count) };
+    for (let n = 0; n < count; n++) {
+      samples.x[n] = 100 * random.uniform();
+      samples.y[n] = 80 * random.uniform();
+      samples.value[n] = random.normal();
+    }
+    const frame = { width: 100, height: 80, west: 0, north: 80, cellM: 1 };
+    const { values } = linearOnTriangles(samples, frame);
+    // Places closer than a sixteenth of a cell become one; SciPy gets what is left, so that both see the same triangles.
+    const { x, y, value } = triangulate(samples, frame.cellM);
+    const cells = Array.from(values, (_, k) => centre({ ...frame, values }, k));
+    const input = { x: [...x], y: [...y], value: [...value], cx: cells.map(([cx]) => cx), cy: cells.map(([, cy]) => cy) };
+    const run = runPython(['-c', SCRIPT, '{case.json}'], { 'case.json': new TextEncoder().encode(JSON.stringify(input)) });
+    expect(run.stderr).toBe('');
+    const theirs = JSON.parse(run.stdout) as Array<number | null>;
+    expect([...values.keys()].filter((k) => Number.isNaN(values[k]!) !== (theirs[k] === null))).toEqual([]);
+    expect([...values.keys()].filter((k) => Math.abs(values[k]! - (theirs[k] ?? NaN)) > 1e-9)).toEqual([]);
+    expect(theirs.filter((each) => each !== null).length).toBeGreaterThan(5000);
+  });
+});
