@@ -67,7 +67,7 @@ describe('a grid of more cells than fit into memory, from the command line', () 
     expect([here.width, here.height]).toEqual([width, height]);
     const window = await readWindow({ column: 0, row: 0, width, height: 200 });
     expect(window.values.filter((value) => !Number.isNaN(value)).length).toBeGreaterThan(500);
-    expect(Buffer.compare(Buffer.from(window.values.buffer), Buffer.from((await here.readRows(0, 200)).buffer))).toBe(0);
+    expect(window.values).toEqual(await here.readRows(0, 200));
     expect(command('grid', ...PARAMETERS, '--method', 'sources')).toMatchObject({ status: 1, err: expect.stringContaining('take "tension"') as string });
   });
 
