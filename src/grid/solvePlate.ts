@@ -57,6 +57,8 @@ const SHARE = 0.8;
 const SLOW_RATE = 0.3;
 /** Spots that still move are solved by themselves where they take no more than this share of the nodes. */
 const SPOTS_SHARE = 0.25;
+/** Share of the tolerance that what lies outside them may use up: inside, one cycle more costs little. */
+const OUTSIDE_SHARE = 0.8;
 
 interface Grids {
   readonly levels: readonly PlateLevel[];
@@ -119,12 +121,13 @@ function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64
     if (moves.rate > SLOW_RATE) path ??= { step: new Float32Array(z.length), image: new Float32Array(z.length) };
     if (!spots || step === maxSteps) continue;
     // What is left outside adds to what is left inside.
-    const windows = moves.unsettled(tolerance / 2);
+    const outside = OUTSIDE_SHARE * tolerance;
+    const windows = moves.unsettled(outside);
     if (windows.reduce((sum, { width, height }) => sum + width * height, 0) > SPOTS_SHARE * z.length) continue;
-    const solved = windows.map((window) => improveWindow(problem, { z, pins: grids.pins[0]!, window }, { tolerance: tolerance / 2, maxSteps: maxSteps - step }));
+    const solved = windows.map((window) => improveWindow(problem, { z, pins: grids.pins[0]!, window }, { tolerance: tolerance - outside, maxSteps: maxSteps - step }));
     return {
       iterations: step + Math.max(...solved.map(({ iterations }) => iterations)),
-      remaining: tolerance / 2 + Math.max(...solved.map((each) => each.remaining)),
+      remaining: outside + Math.max(...solved.map((each) => each.remaining)),
       converged: solved.every(({ converged }) => converged),
     };
   }
