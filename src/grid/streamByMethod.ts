@@ -28,7 +28,7 @@ export function streamByMethod(samples: WalkedSamples, options: MethodOptions = 
   const why = `With more than ${MAX_CELLS / 1e6} million cells the grid is made in tension, tile by tile, whatever the depth of the sources.`;
   const remarks = (): GridRemarks => {
     const { notes, warnings } = tiled.remarks();
-    return { notes: [...notes, why], warnings };
+    return { notes, warnings: [...warnings, why] };
   };
   return { ...tiled, remarks };
 }

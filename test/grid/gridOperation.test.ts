@@ -143,7 +143,7 @@ describe('the grid operation beyond what fits into memory', () => {
     const { residual, residual_error: error } = await grid.run(task({ method: 'auto', error: false, spacing_m: 10 }, said, solved)) as { residual: StreamedGrid; residual_error: undefined };
     expect(error).toBeUndefined();
     expect('values' in residual).toBe(false);
-    expect(said).toEqual([expect.stringMatching(/finer/)]);
+    expect(said).toEqual([expect.stringMatching(/finer/), expect.stringMatching(/more than 64 million cells .* in tension/)]);
     expect(solved).toEqual([]);
     let filled = 0;
     for (let first = 0; first < residual.height; first += 1024) {
@@ -153,9 +153,8 @@ describe('the grid operation beyond what fits into memory', () => {
     // The wide surface that the tiles' rims rest on, then the tiles with readings.
     expect(solved).toEqual(['1017 × 1014', '959 × 1024', '1024 × 940']);
     const { notes, warnings } = residual.remarks!();
-    expect(warnings).toEqual([...said, expect.stringMatching(/stopped after 2 steps/)]);
+    expect(warnings).toEqual([said[0], expect.stringMatching(/stopped after 2 steps/), said[1]]);
     expect(notes.join(' ')).toContain(`${filled} cells are filled`);
-    expect(notes.at(-1)).toMatch(/more than 64 million cells .* in tension/);
     expect(filled).toBeGreaterThan(2 * 20 * 8);
   });
 });
