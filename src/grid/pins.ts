@@ -205,16 +205,19 @@ export function movePinsOfRow(z: Float64Array, { pins, start }: PinRows, { width
 }
 
 /**
- * Makes a correction vanish at the pins' own places: each pinned node takes the value that does it, given the nodes around
- * (pins on the rim hold their node itself). What is added to the surface then leaves the data met as they were.
+ * Makes a surface meet the pins' values at their own places, or a correction vanish there (`values`: false): each pinned
+ * node takes the value that does it, given the nodes around. Pins on the rim hold their node itself.
  */
-export function pinCorrection(correction: Float64Array, { node, dx, dy }: Pins, { width, height }: { width: number; height: number }): void {
+export function meetPins(z: Float64Array, { node, value, dx, dy }: Pins, { width, height, values }: { width: number; height: number; values: boolean }): void {
   for (let n = 0; n < node.length; n++) {
     const k = node[n]!;
     const j = Math.floor(k / width);
     const i = k - j * width;
-    correction[k] = 0;
-    if (i === 0 || j === 0 || i === width - 1 || j === height - 1) continue;
+    const wanted = values ? value[n]! : 0;
+    if (i === 0 || j === 0 || i === width - 1 || j === height - 1) {
+      z[k] = wanted;
+      continue;
+    }
     const x = dx[n]!;
     const y = dy[n]!;
     const west = (x * (x - 1)) / 2;
@@ -222,9 +225,9 @@ export function pinCorrection(correction: Float64Array, { node, dx, dy }: Pins, 
     const east = (x * (x + 1)) / 2;
     const north = k - width;
     const south = k + width;
-    const around = ((y * (y - 1)) / 2) * (west * correction[north - 1]! + middle * correction[north]! + east * correction[north + 1]!)
-      + (1 - y * y) * (west * correction[k - 1]! + east * correction[k + 1]!)
-      + ((y * (y + 1)) / 2) * (west * correction[south - 1]! + middle * correction[south]! + east * correction[south + 1]!);
-    correction[k] = -around / (middle * (1 - y * y));
+    const around = ((y * (y - 1)) / 2) * (west * z[north - 1]! + middle * z[north]! + east * z[north + 1]!)
+      + (1 - y * y) * (west * z[k - 1]! + east * z[k + 1]!)
+      + ((y * (y + 1)) / 2) * (west * z[south - 1]! + middle * z[south]! + east * z[south + 1]!);
+    z[k] = (wanted - around) / (middle * (1 - y * y));
   }
 }

@@ -22,7 +22,7 @@ export interface PlateLevel {
   /** What the pins of a finer grid add to the operator when a correction is sought here. */
   readonly hold: Hold;
   /**
-   * Correction that is sought, its right side (none on the finest grid), work space. 32 bits do for what is added to a
+   * Correction that is sought and its right side (none on the finest grid), work space. 32 bits do for what is added to a
    * solution in 64.
    */
   readonly correction: Float64Array;
@@ -99,7 +99,7 @@ export function plateLevel(size: { width: number; height: number; alpha: number;
     yAxis: axisTables(height),
     relaxation: new Float32Array(count),
     hold: emptyHold(finest ? 0 : count),
-    correction: new Float64Array(count),
+    correction: new Float64Array(finest ? 0 : count),
     right: new Float32Array(finest ? 0 : count),
     scratch: new Float32Array(count),
   };

@@ -1,7 +1,7 @@
 import { holdPins } from './hold.js';
 import { heldResidualRow, heldSmoothRow } from './heldKernels.js';
 import { Moves, type Window } from './moves.js';
-import { coarsenPins, joinPins, movePinsOfRow, nodePins, pinCorrection, pinRows, pinsWithin, rimNodes, type PinRows, type Pins } from './pins.js';
+import { coarsenPins, joinPins, meetPins, movePinsOfRow, nodePins, pinRows, pinsWithin, rimNodes, type PinRows, type Pins } from './pins.js';
 import { plateResidual, plateResidualRow, smoothRow } from './plateKernels.js';
 import { fillRelaxation, plateLevel, type PlateLevel } from './plateLevel.js';
 import { spikeWeights } from './spikeWeights.js';
@@ -81,7 +81,7 @@ export function solvePlate(problem: PlateProblem, goal: Goal): PlateSolution {
   for (let l = last; l > 0; l--) {
     cycle(grids, { l, z }, null);
     const finer = new Float64Array(levels[l - 1]!.width * levels[l - 1]!.height);
-    prolong(transfers[l - 1]!, [z, finer], { add: false });
+    prolong(transfers[l - 1]!, [z, finer], null);
     z = finer;
     // From here on only corrections are sought on this grid.
     fillRelaxation(levels[l]!, null);
@@ -118,7 +118,7 @@ function improve(problem: PlateProblem, { grids, z }: { grids: Grids; z: Float64
     moves.note(z);
     const { remaining } = moves;
     if (remaining <= tolerance) return { iterations: step, remaining, converged: true };
-    if (moves.rate > SLOW_RATE) path ??= { step: new Float32Array(z.length), image: new Float32Array(z.length) };
+    if (moves.rate > SLOW_RATE) path ??= newPath(z.length);
     if (!spots || step === maxSteps) continue;
     // What is left outside adds to what is left inside.
     const outside = OUTSIDE_SHARE * tolerance;
@@ -162,32 +162,37 @@ function cycle({ levels, transfers, pins }: Grids, { l, z }: { l: number; z: Flo
   sweeps(level, pins[l]!, { z, count: last ? LAST_SWEEPS : SWEEPS, residual: !last });
   if (last) return;
   const coarse = levels[l + 1]!;
-  const { correction, scratch } = level;
-  restrict(transfers[l]!, [scratch, coarse.right]);
+  restrict(transfers[l]!, [level.scratch, coarse.right]);
   correct({ levels, transfers }, l + 1);
-  prolong(transfers[l]!, [coarse.correction, correction], { add: false });
-  pinCorrection(correction, pins[l]!.pins, level);
-  if (path) advance(level, z, path);
-  else addShare(z, correction);
+  const { width, height } = level;
+  if (path) {
+    prolong(transfers[l]!, [coarse.correction, path.correction], null);
+    meetPins(path.correction, pins[l]!.pins, { width, height, values: false });
+    advance(level, z, path);
+  } else {
+    prolong(transfers[l]!, [coarse.correction, z], SHARE);
+    meetPins(z, pins[l]!.pins, { width, height, values: true });
+  }
   sweeps(level, pins[l]!, { z, count: SWEEPS, residual: false });
 }
 
-function addShare(z: Float64Array, correction: Float64Array): void {
-  for (let k = 0; k < z.length; k++) z[k]! += SHARE * correction[k]!;
-}
-
-/** The last coarse step and what the operator makes of it; zero before the first. */
+/** A coarse correction, the last coarse step and what the operator makes of that; step and image are zero before the first. */
 interface Path {
+  readonly correction: Float64Array;
   readonly step: Float32Array;
   readonly image: Float32Array;
+}
+
+function newPath(nodes: number): Path {
+  return { correction: new Float64Array(nodes), step: new Float32Array(nodes), image: new Float32Array(nodes) };
 }
 
 /**
  * Moves the surface along the correction and along the last step as far as lowers the energy most (conjugate directions:
  * what the hold only estimates is made good here). level.scratch holds the residual and is spoilt.
  */
-function advance(level: PlateLevel, z: Float64Array, { step, image }: Path): void {
-  const { correction, scratch } = level;
+function advance(level: PlateLevel, z: Float64Array, { correction, step, image }: Path): void {
+  const { scratch } = level;
   let gain = 0;
   let gainStep = 0;
   for (let k = 0; k < z.length; k++) {
@@ -249,7 +254,7 @@ function correct({ levels, transfers }: Pick<Grids, 'levels' | 'transfers'>, l: 
   if (last) return;
   restrict(transfers[l]!, [scratch, levels[l + 1]!.right]);
   correct({ levels, transfers }, l + 1);
-  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], { add: true });
+  prolong(transfers[l]!, [levels[l + 1]!.correction, correction], 1);
   heldSweeps(level, { count: HELD_SWEEPS, residual: false });
 }
 

@@ -61,10 +61,10 @@ export function transfer(width: number, height: number): Transfer {
   return { x, y, half: new Float64Array(width * y.coarse) };
 }
 
-/** fine += P coarse, or fine = P coarse where `add` is false. */
-export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], { add }: { add: boolean }): void {
+/** fine += share × P coarse, or fine = P coarse where `share` is null. */
+export function prolong({ x, y, half }: Transfer, [coarse, fine]: readonly [Float64Array, Float64Array], share: number | null): void {
   for (let row = 0; row < y.coarse; row++) prolongAcross(x, half, coarse, row);
-  for (let row = 0; row < y.fine; row++) prolongDown([x.fine, y], half, fine, { row, add });
+  for (let row = 0; row < y.fine; row++) prolongDown([x.fine, y], half, fine, { row, add: share !== null, share: share ?? 1 });
 }
 
 function prolongAcross(x: AxisTransfer, half: Float64Array, coarse: Float64Array, row: number): void {
@@ -85,7 +85,7 @@ function prolongAcross(x: AxisTransfer, half: Float64Array, coarse: Float64Array
   }
 }
 
-function prolongDown([width, y]: readonly [number, AxisTransfer], half: Float64Array, fine: Float64Array, { row, add }: { row: number; add: boolean }): void {
+function prolongDown([width, y]: readonly [number, AxisTransfer], half: Float64Array, fine: Float64Array, { row, add, share }: { row: number; add: boolean; share: number }): void {
   const f = row * width;
   const rows = Math.min(4, y.coarse - y.from[row]!);
   const w0 = y.weights[row * 4]!;
@@ -99,7 +99,7 @@ function prolongDown([width, y]: readonly [number, AxisTransfer], half: Float64A
   const h3 = rows > 3 ? h0 + 3 * width : h0;
   for (let i = 0; i < width; i++) {
     const value = w0 * half[h0 + i]! + w1 * half[h1 + i]! + w2 * half[h2 + i]! + w3 * half[h3 + i]!;
-    fine[f + i] = add ? fine[f + i]! + value : value;
+    fine[f + i] = add ? fine[f + i]! + share * value : value;
   }
 }
 

@@ -17,7 +17,7 @@ describe('transfer', () => {
     const coarse = noise(cw * ch);
     const fine = noise(width * height);
     const up = new Float64Array(width * height);
-    prolong(between, [coarse, up], { add: false });
+    prolong(between, [coarse, up], null);
     const down = new Float32Array(cw * ch);
     restrict(between, [Float32Array.from(fine), down]);
     expect(dot(up, fine)).toBeCloseTo(dot(coarse, down), 4);
@@ -29,7 +29,7 @@ describe('transfer', () => {
     const of = (f: (x: number, y: number) => number) => {
       const coarse = Float64Array.from({ length: cw * coarseCount(height) }, (_, k) => f(2 * (k % cw), 2 * Math.floor(k / cw)));
       const fine = new Float64Array(width * height);
-      prolong(between, [coarse, fine], { add: false });
+      prolong(between, [coarse, fine], null);
       return fine;
     };
     of((x, y) => 3 - x + 2 * y).forEach((v, k) => expect(v).toBeCloseTo(3 - (k % width) + 2 * Math.floor(k / width), 9));
