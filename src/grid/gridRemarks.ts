@@ -10,7 +10,7 @@ export function gridRemarks(grid: Omit<GridResult, 'values' | keyof GridRemarks>
   const { width, height, cellM, spacingM, tension, iterations, remainingShare, converged } = grid;
   const left = `${remainingShare.toExponential(1)} of the readings' range`;
   const warnings = cellWarnings(cellM, spacingM);
-  if (!converged) warnings.push(`The grid's solver stopped after ${iterations} steps at about ${left}; ${tolerance.toExponential(0)} was wanted.`);
+  if (!converged) warnings.push(`The grid's solver stopped after ${iterations} steps at about ${left}; ${tolerance.toExponential(1)} was wanted.`);
   return {
     warnings,
     notes: [

@@ -1,3 +1,4 @@
+import type { Window } from './moves.js';
 import { runningSum } from './runningSum.js';
 
 /**
@@ -80,15 +81,8 @@ function copyPin(from: Pins, n: number, to: Pins, m: number): void {
   to.weight[m] = from.weight[n]!;
 }
 
-interface Rectangle {
-  readonly left: number;
-  readonly top: number;
-  readonly width: number;
-  readonly height: number;
-}
-
-/** The pins of a rectangle of nodes, by the rectangle's own nodes. `width` is that of the whole. */
-export function pinsWithin({ pins, start }: PinRows, width: number, { left, top, ...size }: Rectangle): Pins {
+/** The pins of a window, by the window's own nodes. `width` is that of the whole. */
+export function pinsWithin({ pins, start }: PinRows, width: number, { left, top, ...size }: Window): Pins {
   let count = 0;
   for (let j = 0; j < size.height; j++) count += countBetween(pins.node, [start[top + j]!, start[top + j + 1]!], (top + j) * width + left, size.width);
   const within = emptyPins(count);
