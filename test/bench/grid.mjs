@@ -99,9 +99,9 @@ async function sideBySide(readings, cells, lines) {
   try {
     const spacing = cells / lines;
     writeReadings(join(folder, 'p.csv'), walked(readings, cells, lines));
-    // invdistnn spends its time on finding neighbours: how long depends on the radius, which has to bridge two lines at least.
+    // invdistnn spends its time on finding neighbours: how long depends on the radius; two lines are the least that bridges a gap.
     const nearest = (radius) => [`invdistnn within ${radius} m`, `invdistnn:power=2:radius=${radius}:max_points=12:nodata=0`];
-    const others = spawnSync('gdal_grid', ['--version']).status === 0 ? Object.fromEntries([['linear', 'linear:radius=-1:nodata=0'], nearest(2 * spacing), nearest(4 * spacing)]) : {};
+    const others = spawnSync('gdal_grid', ['--version']).status === 0 ? Object.fromEntries([['linear', 'linear:radius=-1:nodata=0'], nearest(2 * spacing), nearest(3.5 * spacing)]) : {};
     const runs = { ours: [], ...Object.fromEntries(Object.keys(others).map((name) => [name, []])) };
     const differences = {};
     // Turn by turn, so that a busy moment of the machine does not fall on one side alone.
