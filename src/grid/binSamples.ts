@@ -1,5 +1,5 @@
 import { meansOf, middles, type Groups } from './middles.js';
-import type { Pins } from './pins.js';
+import { pinsOf, type Pins } from './pins.js';
 import { runningSum } from './runningSum.js';
 import type { GridFrame, Samples } from './types.js';
 
@@ -44,7 +44,7 @@ function orderByCell(cell: Int32Array, start: Int32Array): Int32Array {
  */
 export function binSamples({ start, order, column, row }: CellIndex, { value, weight }: { readonly value: ArrayLike<number>; readonly weight: ArrayLike<number> }, width: number): Pins {
   const middle = middles({ start, order }, value, weight);
-  const pins = { node: middle.group, value: meansOf(value, middle), dx: meansOf(column, middle), dy: meansOf(row, middle), weight: middle.total };
+  const pins = pinsOf(middle.group, meansOf(value, middle), [meansOf(column, middle), meansOf(row, middle)], middle.total);
   fromNodes(pins, width);
   return pins;
 }

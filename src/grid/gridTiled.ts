@@ -93,10 +93,13 @@ export function gridTiled(samples: Samples, options: TiledOptions = {}): TiledGr
   const overlapCells = cellsOf(overlapSpacings);
   const tileCells = Math.max(least, Math.ceil((2 * overlapCells) / least) * least);
   const single = tileCells >= frame.width && tileCells >= frame.height;
-  let begun: Promise<CoarseSurface> | null = null;
+  let wide: Promise<CoarseSurface> | null = null;
   const surface = (): Promise<CoarseSurface> | null => {
-    if (!single) begun ??= coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM, range, solve });
-    return begun;
+    if (single || wide) return wide;
+    wide = coarseSurface(means, { frame: coarseFrame, trend, tension, spacingM, range, solve });
+    // A failure is thrown where a tile waits for it; a row without readings has none.
+    wide.catch(() => {});
+    return wide;
   };
   const tiler: Tiler = {
     layout, tileCells: single ? Infinity : tileCells, overlapCells, gapOverlapCells: Math.max(overlapCells, cellsOf(gapOverlapSpacings)),

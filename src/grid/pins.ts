@@ -12,15 +12,17 @@ export interface Pins {
   /** Offsets from the node in cells, −½ … ½, along the columns and down the rows. */
   readonly dx: Float64Array;
   readonly dy: Float64Array;
-  /** How many readings the value stands for. */
+  /** Sum of the weights of the readings that the value stands for; without weights their number. */
   readonly weight: Float64Array;
 }
 
+/** The only place where pins are made, so that all have one shape and the solver is compiled once. */
+export function pinsOf(node: Int32Array, value: Float64Array, [dx, dy]: readonly [Float64Array, Float64Array], weight: Float64Array): Pins {
+  return { node, value, dx, dy, weight };
+}
+
 export function emptyPins(count: number): Pins {
-  return {
-    node: new Int32Array(count), value: new Float64Array(count), dx: new Float64Array(count), dy: new Float64Array(count),
-    weight: new Float64Array(count),
-  };
+  return pinsOf(new Int32Array(count), new Float64Array(count), [new Float64Array(count), new Float64Array(count)], new Float64Array(count));
 }
 
 /** Rings of nodes that hold the value and the slope of the surface around. */

@@ -107,6 +107,12 @@ describe('gridTiled', () => {
     await expect(broken.readRows(0, 1)).rejects.toThrow('thread lost');
     expect(() => gridTiled(samples, { ...OPTIONS, tension: -0.1 })).toThrow('from 0 to 1');
     expect(() => gridTiled(samples, { ...OPTIONS, maxCells: SIDE * SIDE - 1 })).toThrow('million cells');
+    // In rows without readings nobody waits for the wide surface: its failure has to wait too, unhandled by none.
+    const south = { x: [10, 20, 30], y: [10, 10, 20], value: [1, 2, 3] };
+    const late = gridTiled(south, { ...OPTIONS, tileCells: 100, overlapSpacings: 3, gapOverlapSpacings: 3, solve: () => Promise.reject(new Error('thread lost')) });
+    expect((await late.readRows(0, 1)).every(Number.isNaN)).toBe(true);
+    await new Promise((done) => setTimeout(done, 0));
+    await expect(late.readRows(SIDE - 1, 1)).rejects.toThrow('thread lost');
     expect(() => gridTiled({ x: [NaN], y: [1], value: [1] }, {})).toThrow(UserError);
     expect(() => gridTiled(samples, { ...OPTIONS, bounds: { west: 900, south: 900, east: 950, north: 950 } })).toThrow(UserError);
   });
